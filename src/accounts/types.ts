@@ -1,0 +1,83 @@
+import type { DuckDBConnection } from '@duckdb/node-api';
+import type { Day } from '../days.ts';
+
+/*
+ * The nouns of an export.
+ *
+ * account   one paying customer; several rows may belong to one
+ * spell     an unbroken stretch of being a customer
+ * start     first day of the account's first spell
+ * end       first day on which it is no longer a customer; empty while it still is one
+ * asOf      data-through date: the last day the export is complete for
+ * returned  a second spell after a gap longer than bridgeDays; counted lost at the end of its first spell
+ */
+
+export type ColumnRole = 'id' | 'start' | 'end' | 'segment' | 'amount';
+export type ColumnMap = Partial<Record<ColumnRole, string>>;
+export type DateOrder = 'iso' | 'dmy' | 'mdy';
+
+export interface ReadOptions {
+  /** columns named by the user; they win over recognition */
+  readonly columns?: ColumnMap;
+  /** date order named by the user; wins over inference */
+  readonly dates?: DateOrder;
+  /** data-through date named by the user; wins over inference */
+  readonly asOf?: Day;
+  /** gap in days that still counts as one spell; default 30 */
+  readonly bridgeDays?: number;
+  /** key of the keyed hash that makes ids pseudonymous; default: none, plain hash (command line) */
+  readonly idKey?: string;
+  /** largest file read, in bytes */
+  readonly maxBytes?: number;
+  readonly onProgress?: (fraction: number) => void;
+}
+
+export interface Rejected {
+  /** stable code: 'start-missing', 'start-unreadable', 'end-unreadable', 'end-before-start', 'zero-length', 'trial', 'internal', 'duplicate', 'future-start', 'ragged', 'id-missing', … */
+  readonly code: string;
+  /** in words: 'the end date lies before the start date' */
+  readonly reason: string;
+  readonly rows: number;
+  /** line in the file (the header is line 1) of the first such row */
+  readonly firstLine: number;
+  /** up to three examples: line and the offending value, shortened */
+  readonly examples: readonly { readonly line: number; readonly value: string }[];
+}
+
+/** What was read, for the thread's first reply. */
+export interface ReadReport {
+  readonly rows: number;
+  readonly accounts: number;
+  readonly returned: number;
+  /** rows merged into another row's spell */
+  readonly mergedRows: number;
+  readonly asOf: Day;
+  /** 'given', or where it was inferred from: 'latest-date' (latest start or end in the file), 'file-column' … */
+  readonly asOfSource: string;
+  /** true when some date lies after asOf (scheduled cancellations, for instance): told to the user */
+  readonly futureEnds: number;
+  readonly firstStart: Day;
+  readonly lastStart: Day;
+  readonly columns: ColumnMap;
+  /** every header in the file, in order, for the mend selects */
+  readonly headers: readonly string[];
+  readonly dates: DateOrder;
+  /** how the order was settled: 'given', 'iso', 'values' (some value reads only one way) */
+  readonly datesSource: 'given' | 'iso' | 'values';
+  readonly encoding: string;
+  readonly delimiter: string;
+  readonly rejected: readonly Rejected[];
+  /** distinct values of the segment column with account counts, most first, at most 50 */
+  readonly segments: readonly { readonly value: string; readonly accounts: number }[];
+}
+
+/**
+ * Accounts ready to be counted: a table in an engine.
+ * Columns: key UBIGINT (stable pseudonymous hash of the id), start_day INTEGER (days since 1970-01-01), end_day INTEGER or NULL,
+ * segment VARCHAR or NULL, amount DOUBLE or NULL, returned BOOLEAN.
+ */
+export interface AccountTable {
+  readonly connection: DuckDBConnection;
+  readonly table: string;
+  readonly report: ReadReport;
+}

@@ -1,0 +1,82 @@
+/*
+ * The nouns of the charts.
+ *
+ * subgroup     consecutive accounts, ordered by start, counted together; one point of the chart
+ * accounts     number of accounts in a subgroup (its size n)
+ * lost         how many of them were lost by the tenure point
+ * centre line  the usual level: the baseline's pooled rate (JSON and code: `center`)
+ * sigma        standard deviation of a point's value if only chance acts, at that point's size
+ * limits       centre line -/+ 3 sigma, clipped to what is possible (`lower`, `upper`)
+ * zone         C within 1 sigma of the centre line, B from 1 to 2, A from 2 to 3
+ * baseline     the points the centre line and the limits are computed from
+ * signal       what one of the eight tests raises: a flag, not yet a verdict
+ * episode      the stretch over which one test's condition goes on holding; reported once
+ */
+
+/** One subgroup's count: `lost` of `accounts`, both whole numbers, 0 <= lost <= accounts, accounts >= 1. */
+export interface SubgroupCount {
+  readonly accounts: number;
+  readonly lost: number;
+}
+
+/** The chart kinds built so far. */
+export type ChartKind = 'p';
+
+/** Points are numbered from 1 in time order. */
+export interface ChartPoint {
+  readonly index: number;
+  readonly accounts: number;
+  readonly lost: number;
+  /** the plotted quantity: for a p chart lost / accounts, a fraction */
+  readonly value: number;
+  readonly sigma: number;
+  /** 3 sigma limits, clipped to [0, 1] for a rate */
+  readonly lower: number;
+  readonly upper: number;
+}
+
+export interface Baseline {
+  /** first and last point it spans, both counted */
+  readonly first: number;
+  readonly last: number;
+  /** points inside it that were left out by decision */
+  readonly excluded: readonly number[];
+  /** true when it has fewer than 25 points, or when it is every point there is */
+  readonly provisional: boolean;
+  /** pooled counts of the points used */
+  readonly accounts: number;
+  readonly lost: number;
+}
+
+export interface Chart {
+  readonly kind: ChartKind;
+  /** n when every subgroup has the same size, else null */
+  readonly subgroupSize: number | null;
+  readonly center: number;
+  readonly baseline: Baseline;
+  readonly points: readonly ChartPoint[];
+}
+
+/** Nelson (1984) numbering. */
+export type TestNumber = 1 | 2 | 3 | 4 | 5 | 6 | 7 | 8;
+
+/** Side of the centre line the members lie on; `rising`/`falling` trends report the side they move to. */
+export type Side = 'above' | 'below' | 'both';
+
+/** One episode of one test. */
+export interface TestEpisode {
+  readonly test: TestNumber;
+  readonly side: Side;
+  /** the point that completed the pattern */
+  readonly point: number;
+  /** first and last point of the whole stretch, extended for as long as the condition goes on holding */
+  readonly members: readonly [number, number];
+  /** `shift`: may raise a shift; `cut`: says something about how the data was cut */
+  readonly speaks: 'shift' | 'cut';
+}
+
+export interface Interval {
+  readonly estimate: number;
+  readonly low: number;
+  readonly high: number;
+}

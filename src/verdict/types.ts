@@ -1,0 +1,78 @@
+import type { Chart, Interval, Side, TestEpisode } from '../charts/types.ts';
+import type { Day } from '../days.ts';
+
+export type Outcome = 'risen' | 'fallen' | 'steady' | 'too-early' | 'cannot-say';
+
+/** standing: the last stretch differs beyond the calibrated threshold; watching: new and not standing yet; passed: no longer stands. */
+export type SignalState = 'standing' | 'watching' | 'passed';
+
+export interface Signal extends TestEpisode {
+  readonly state: SignalState;
+  /** the test in words: "nine points in a row below the usual level" */
+  readonly words: string;
+}
+
+export interface PooledRate {
+  readonly rate: number;
+  readonly low: number;
+  readonly high: number;
+  readonly lost: number;
+  readonly accounts: number;
+}
+
+export interface Since {
+  /** first point of the moved stretch */
+  readonly point: number;
+  /** first start date of that point; null for ready counts */
+  readonly start: Day | null;
+  /** first and last point the likelihood does not rule out as the first of the stretch */
+  readonly candidates: readonly [number, number];
+}
+
+export interface Trust {
+  /** points between two false flags of the shift tests when nothing changed */
+  readonly falseAlarmEvery: number | null;
+  readonly method: 'exact' | 'simulated';
+  readonly standardError: number | null;
+  readonly falseVerdictChance: number | null;
+  readonly wouldSee: { readonly rise: number | null; readonly fall: number | null; readonly chance: number } | null;
+}
+
+export interface Verdict {
+  readonly outcome: Outcome;
+  readonly headline: string;
+  readonly evidence: readonly string[];
+  readonly cautions: readonly string[];
+  readonly next: readonly string[];
+  readonly since: Since | null;
+  readonly before: PooledRate | null;
+  readonly after: PooledRate | null;
+  readonly difference: Interval | null;
+}
+
+/** A point with the dates of the accounts in it; null dates for ready counts. */
+export interface PointDates {
+  readonly firstStart: Day | null;
+  readonly lastStart: Day | null;
+  readonly asOf: Day | null;
+}
+
+/** All that the picture needs: finished numbers only, nothing left to compute. */
+export interface PictureInput {
+  readonly chart: Chart | null;
+  readonly dates: readonly PointDates[];
+  readonly signals: readonly Signal[];
+  readonly verdict: Verdict;
+  /** withheld subgroup: accounts it holds, its size, and when it can be plotted */
+  readonly waiting: { readonly accounts: number; readonly of: number; readonly on: Day | null } | null;
+  /** accounts too young to be counted */
+  readonly immature: number;
+  /** "lost within 3 months of starting" */
+  readonly measure: string;
+  /** what was counted: dataset name and filter, "Marrowby Seed Club export, Orchard plan" */
+  readonly subject: string;
+  /** data complete through this day; null for ready counts */
+  readonly asOf: Day | null;
+}
+
+export type { Side };
