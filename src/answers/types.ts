@@ -1,0 +1,50 @@
+import type { ReadOptions, ReadReport } from '../accounts/types.ts';
+import type { Census, CensusPlan, Tenure } from '../census/types.ts';
+import type { Chart } from '../charts/types.ts';
+import type { EbbError } from '../errors.ts';
+import type { Picture } from '../picture/picture.ts';
+import type { Question } from '../requests/types.ts';
+import type { Dataset, Upload, WorkspaceStore } from '../store/types.ts';
+import type { PointDates, Signal, Trust, Verdict } from '../verdict/types.ts';
+
+export interface Timing {
+  readonly readMs: number;
+  readonly censusMs: number;
+  readonly chartMs: number;
+  readonly pictureMs: number;
+  readonly totalMs: number;
+}
+
+/** A finished answer; what the command line prints as JSON and the channel posts. */
+export interface Answer {
+  readonly verdict: Verdict;
+  readonly chart: Chart | null;
+  readonly dates: readonly PointDates[];
+  readonly signals: readonly Signal[];
+  readonly trust: Trust;
+  readonly report: ReadReport | null;
+  readonly census: Census | null;
+  readonly plan: CensusPlan | null;
+  readonly tenure: Tenure | null;
+  readonly picture: Picture | null;
+  readonly timing: Timing;
+}
+
+export type Ingested =
+  | { readonly kind: 'read'; readonly dataset: Dataset; readonly upload: Upload }
+  /** the file is sound but a person must decide: how the dates read */
+  | { readonly kind: 'asks'; readonly error: EbbError; readonly upload: Upload }
+  | { readonly kind: 'refused'; readonly error: EbbError; readonly upload: Upload };
+
+/** The use cases the channel calls. It knows no statistics and no SQL. */
+export interface Answers {
+  /** reads a file already on disk, stores the dataset, moves the upload to its new state; never throws for a bad file */
+  ingest(workspace: WorkspaceStore, upload: Upload, path: string, options: ReadOptions): Promise<Ingested>;
+  /** answers from the channel's current dataset; throws EbbError DATASET_MISSING when there is none */
+  ask(workspace: WorkspaceStore, channelId: string, question: Question): Promise<Answer>;
+  /** answers for one dataset */
+  askDataset(workspace: WorkspaceStore, dataset: Dataset, question: Question): Promise<Answer>;
+  close(): Promise<void>;
+}
+
+export type { Question };

@@ -1,0 +1,90 @@
+import type { ColumnMap, DateOrder, ReadReport } from '../accounts/types.ts';
+import type { Day } from '../days.ts';
+
+/** How a file was told to be read: kept so that a mend changes one thing and keeps the rest. */
+export interface ReadChoices {
+  readonly columns?: ColumnMap;
+  readonly dates?: DateOrder;
+  readonly asOf?: Day;
+}
+
+/** A dataset as stored: accounts as compact Parquet with pseudonymous ids, and what was read. */
+export interface Dataset {
+  readonly id: string;
+  readonly channelId: string;
+  readonly name: string;
+  readonly fileId: string | null;
+  readonly uploadedBy: string;
+  readonly uploadedAt: Date;
+  readonly choices: ReadChoices;
+  readonly report: ReadReport;
+}
+
+export type UploadState = 'received' | 'asks' | 'read' | 'refused';
+
+/** One file handed in, from arrival to dataset; lives on so that its reading can be mended in its thread. */
+export interface Upload {
+  readonly id: string;
+  readonly channelId: string;
+  readonly fileId: string;
+  readonly fileName: string;
+  readonly uploadedBy: string;
+  readonly threadTs: string;
+  readonly state: UploadState;
+  readonly choices: ReadChoices;
+  readonly datasetId: string | null;
+  /** headers of the file, when they could be read, for the mend selects */
+  readonly headers: readonly string[];
+}
+
+export interface ChannelSettings {
+  readonly tenure?: string;
+  readonly subgroupSize?: number;
+  readonly segment?: string;
+  readonly settleDays?: number;
+}
+
+/** Everything one workspace may see; there is no way from here to another workspace's rows. */
+export interface WorkspaceStore {
+  readonly teamId: string;
+  /** secret of this workspace for the keyed hash of account ids; made on first use */
+  idKey(): Promise<string>;
+  settings(channelId: string): Promise<ChannelSettings>;
+  saveSettings(channelId: string, settings: ChannelSettings): Promise<void>;
+  saveUpload(upload: Omit<Upload, 'id'>): Promise<Upload>;
+  updateUpload(id: string, change: Partial<Omit<Upload, 'id' | 'channelId' | 'fileId'>>): Promise<Upload>;
+  upload(id: string): Promise<Upload | undefined>;
+  /** the upload whose conversation lives in this thread */
+  uploadInThread(channelId: string, threadTs: string): Promise<Upload | undefined>;
+  saveDataset(dataset: Omit<Dataset, 'id' | 'uploadedAt'>, parquet: Uint8Array): Promise<Dataset>;
+  dataset(id: string): Promise<Dataset | undefined>;
+  /** the newest dataset of a channel: the one questions are about */
+  currentDataset(channelId: string): Promise<Dataset | undefined>;
+  datasets(channelId: string): Promise<readonly Dataset[]>;
+  parquet(datasetId: string): Promise<Uint8Array>;
+  /** remembers that a step of a job already posted, so that a repeated job does not post twice */
+  postedTs(jobKey: string, step: string): Promise<string | undefined>;
+  recordPosted(jobKey: string, step: string, ts: string): Promise<void>;
+}
+
+/** One thing that came in from the chat service, written down before it is acknowledged. */
+export interface InboxEntry {
+  /** the platform's event id, or a key of our own for commands and presses */
+  readonly eventKey: string;
+  /** what it is about (team + channel + file + message), since one human action can arrive as several events */
+  readonly naturalKey: string;
+  readonly teamId: string;
+  readonly kind: string;
+  readonly payload: unknown;
+}
+
+export interface Store {
+  workspace(teamId: string, name?: string): Promise<WorkspaceStore>;
+  /** writes the entry and its queue job in one transaction; 'seen' when the event or what it is about is already there */
+  receive(entry: InboxEntry): Promise<'new' | 'seen'>;
+  /** works entries from the queue, `concurrency` at a time; a thrown error is retried a few times with growing pauses, then kept as failed */
+  work(handler: (entry: InboxEntry & { readonly attempt: number; readonly lastAttempt: boolean }) => Promise<void>, concurrency: number): Promise<void>;
+  /** resolves when every received entry has been worked (or has failed for good); event driven, for tests and shutdown */
+  drained(timeoutMs: number): Promise<void>;
+  close(): Promise<void>;
+}
