@@ -41,7 +41,7 @@ export interface Baseline {
   readonly last: number;
   /** points inside it that were left out by decision */
   readonly excluded: readonly number[];
-  /** true when it has fewer than 25 points, or when it is every point there is */
+  /** true when fewer than 25 points are used */
   readonly provisional: boolean;
   /** pooled counts of the points used */
   readonly accounts: number;
@@ -69,8 +69,10 @@ export interface TestEpisode {
   readonly side: Side;
   /** the point that completed the pattern */
   readonly point: number;
-  /** first and last point of the whole stretch, extended for as long as the condition goes on holding */
+  /** first and last point of the pattern as it was completed */
   readonly members: readonly [number, number];
+  /** last point at which the condition still held; the episode ends there */
+  readonly until: number;
   /** `shift`: may raise a shift; `cut`: says something about how the data was cut */
   readonly speaks: 'shift' | 'cut';
 }

@@ -1,0 +1,68 @@
+import { SHIFT_TESTS } from '../tests/nelsonTests.ts';
+import { PatternMachine, patternMask } from '../tests/patterns.ts';
+import { moveOf, zoneOf } from '../tests/zone.ts';
+import { type BlockDesign, type LastBlock, lastBlockFinder } from './lastBlock.ts';
+
+/** One direction's part of the question "does a flag stand?". */
+export interface StandingSide {
+  readonly block: LastBlock;
+  /** the block's ratio when a shift test on this side holds at some point inside the block, else 0: what is compared with the threshold */
+  readonly score: number;
+}
+
+export interface Standing {
+  readonly above: StandingSide;
+  readonly below: StandingSide;
+}
+
+const ABOVE = patternMask(SHIFT_TESTS, 'above');
+const BELOW = patternMask(SHIFT_TESTS, 'below');
+
+/**
+ * Prepares the judge of one design: the same function looks at the real counts and at every simulated history, so that the threshold is
+ * calibrated for exactly what is done.
+ *
+ * A flag stands when a shift test on one side holds inside the last block on that side, and the block's log likelihood ratio exceeds the
+ * threshold. Flags inside a baseline that is followed by judged points do not count: they were used to set the level.
+ */
+export function standingJudge(design: BlockDesign): (lost: ArrayLike<number>) => Standing {
+  const { accounts, baselineLast, excluded } = design;
+  const findBlocks = lastBlockFinder(design);
+  const machine = new PatternMachine();
+  const left = new Set(excluded);
+  const count = accounts.length;
+  const judgedFrom = baselineLast >= count ? 0 : baselineLast;
+
+  return (lost) => {
+    let n = 0;
+    let d = 0;
+    for (let i = 0; i < baselineLast; i++) {
+      if (left.has(i + 1)) continue;
+      n += accounts[i]!;
+      d += lost[i]!;
+    }
+    const center = d / n;
+    const spread = Math.sqrt(center * (1 - center));
+    machine.reset();
+    let lastAbove = 0;
+    let lastBelow = 0;
+    let previous = Number.NaN;
+    for (let i = 0; i < count; i++) {
+      const size = accounts[i]!;
+      const value = lost[i]! / size;
+      const holds = machine.push(
+        zoneOf(value, center, spread / Math.sqrt(size)),
+        i === 0 ? 0 : moveOf(previous, value),
+      );
+      previous = value;
+      if (i < judgedFrom) continue;
+      if ((holds & ABOVE) !== 0) lastAbove = i + 1;
+      if ((holds & BELOW) !== 0) lastBelow = i + 1;
+    }
+    const { above, below } = findBlocks(lost);
+    return {
+      above: { block: above, score: lastAbove >= above.first ? above.ratio : 0 },
+      below: { block: below, score: lastBelow >= below.first ? below.ratio : 0 },
+    };
+  };
+}

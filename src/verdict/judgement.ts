@@ -1,0 +1,160 @@
+import type { SegmentCounts } from '../census/types.ts';
+import { type Dispersion, dispersion } from '../charts/checks/dispersion.ts';
+import { type Homogeneity, homogeneity } from '../charts/checks/homogeneity.ts';
+import { type Steadiness, steadiness } from '../charts/checks/steadiness.ts';
+import { simulatedRunLength } from '../charts/runLength/simulatedRunLength.ts';
+import { smallestDetectable } from '../charts/standing/detectable.ts';
+import { LEAST_BEFORE } from '../charts/standing/lastBlock.ts';
+import { type Standing, standingJudge } from '../charts/standing/standing.ts';
+import { type StartCandidates, startCandidates } from '../charts/standing/startCandidates.ts';
+import { standingThreshold } from '../charts/standing/threshold.ts';
+import { SHIFT_TESTS } from '../charts/tests/nelsonTests.ts';
+import type { Chart, SubgroupCount } from '../charts/types.ts';
+import { type MixReading, readMix } from './mix.ts';
+import { readSignals } from './signals.ts';
+import type { Signal, Trust } from './types.ts';
+
+/** Fewest points on which anything is judged. Common practice, no source; below it the reply is "too early". */
+export const LEAST_POINTS = 12;
+
+/** A baseline this unlikely to come from one rate is not a level to judge by. */
+const UNSTEADY = 0.01;
+/** Spread this unlikely under the binomial is taken as real. */
+const OVERDISPERSED = 0.01;
+const WOULD_SEE_CHANCE = 0.8;
+
+export type Finding =
+  | 'too-few-points'
+  | 'no-level'
+  | 'unsteady-baseline'
+  | 'mix-change'
+  | 'mix-unclear'
+  | 'risen'
+  | 'fallen'
+  | 'steady';
+
+/** Everything the numbers say, before any words. */
+export interface Judgement {
+  readonly finding: Finding;
+  readonly signals: readonly Signal[];
+  readonly trust: Trust;
+  readonly start: StartCandidates | null;
+  /** first point from which a move is assumed in trust.wouldSee */
+  readonly wouldSeeFrom: number;
+  readonly steadiness: Steadiness | null;
+  readonly dispersion: Dispersion | null;
+  readonly segmentsDiffer: Homogeneity | null;
+  readonly mix: MixReading | null;
+}
+
+const NO_TRUST: Trust = {
+  falseAlarmEvery: null,
+  method: 'simulated',
+  standardError: null,
+  falseVerdictChance: null,
+  wouldSee: null,
+};
+
+/**
+ * Judges a chart: which flags stand, whether that is a verdict, and how far it can be trusted.
+ * @param segments  counts per segment value and point, or empty
+ */
+export function judge(chart: Chart, segments: readonly SegmentCounts[] = []): Judgement {
+  const counts: SubgroupCount[] = chart.points.map(({ accounts, lost }) => ({ accounts, lost }));
+  const lost = counts.map((count) => count.lost);
+  const design = {
+    accounts: counts.map((count) => count.accounts),
+    baselineLast: chart.baseline.last,
+    excluded: chart.baseline.excluded,
+  };
+  const newest = counts.length;
+  const trial = chart.baseline.last >= newest;
+  const wouldSeeFrom = trial ? Math.max(LEAST_BEFORE + 1, Math.floor((2 * newest) / 3) + 1) : chart.baseline.last + 1;
+  const nothing = {
+    trust: NO_TRUST,
+    start: null,
+    wouldSeeFrom,
+    steadiness: null,
+    dispersion: null,
+    segmentsDiffer: segmentTest(segments),
+    mix: null,
+  };
+  const quiet: Standing = {
+    above: { block: { first: newest, ratio: 0 }, score: 0 },
+    below: { block: { first: newest, ratio: 0 }, score: 0 },
+  };
+  if (chart.center <= 0 || chart.center >= 1) {
+    return { ...nothing, finding: newest < LEAST_POINTS ? 'too-few-points' : 'no-level', signals: [] };
+  }
+  if (newest < LEAST_POINTS) return { ...nothing, finding: 'too-few-points', signals: readSignals(chart, quiet, null) };
+
+  const standing = standingJudge(design)(lost);
+  const threshold = standingThreshold(design, chart.center);
+  const side = standing.above.score >= standing.below.score ? 'above' : 'below';
+
+  // On trial limits the block itself lies in the baseline: the level to check is what lies before it.
+  const blockFirst = standing[side].score > threshold.ratio ? standing[side].block.first : newest + 1;
+  const level = counts.filter(
+    (_, i) => i < Math.min(chart.baseline.last, blockFirst - 1) && !chart.baseline.excluded.includes(i + 1),
+  );
+  const spread = dispersion(level);
+  const split = steadiness(level);
+  // Quasi-likelihood: when the points vary more than the binomial allows, every log likelihood ratio shrinks by that factor.
+  // Source: McCullagh P and Nelder JA, Generalized Linear Models, 1989, section 4.5 (section from memory).
+  const shrink = spread && spread.pValue < OVERDISPERSED ? Math.max(1, spread.ratio) : 1;
+  const moved = standing[side].score / shrink > threshold.ratio ? side : null;
+
+  const base: Omit<Judgement, 'finding' | 'signals'> & { mix: MixReading | null } = {
+    ...nothing,
+    trust: {
+      ...runLengthTrust(design.accounts, chart.center),
+      falseVerdictChance: threshold.falseVerdictChance,
+      wouldSee: smallestDetectable(design, chart.center, wouldSeeFrom, threshold.ratio * shrink, WOULD_SEE_CHANCE),
+    },
+    steadiness: split,
+    dispersion: spread,
+  };
+  const judged = (
+    finding: Finding,
+    signalSide: 'above' | 'below' | null,
+    more: Partial<Judgement> = {},
+  ): Judgement => ({
+    ...base,
+    finding,
+    signals: readSignals(chart, standing, signalSide),
+    ...more,
+  });
+
+  if (split && split.pValue < UNSTEADY) {
+    const mix = readMix(segments, split.splitAfter + 1, level.length, split.splitAfter, threshold.ratio);
+    if (mix?.explains !== 'all') return judged('unsteady-baseline', null);
+    // Steady within the groups: the level moved with the mix, which is told, and the rest is judged as usual.
+    base.mix = mix;
+  }
+  if (moved === null) return judged('steady', null);
+  const start = startCandidates(design, lost, moved);
+  const mix = readMix(
+    segments,
+    start.first,
+    newest,
+    trial ? start.first - 1 : chart.baseline.last,
+    threshold.ratio * shrink,
+  );
+  if (mix?.explains === 'all') return judged('mix-change', null, { start, mix });
+  if (mix?.explains === 'unclear') return judged('mix-unclear', null, { start, mix });
+  return judged(moved === 'above' ? 'risen' : 'fallen', moved, { start, mix });
+}
+
+function runLengthTrust(sizes: readonly number[], center: number) {
+  const length = simulatedRunLength(sizes, center, center, SHIFT_TESTS);
+  return {
+    falseAlarmEvery: length?.mean ?? null,
+    method: 'simulated' as const,
+    standardError: length?.standardError ?? null,
+  };
+}
+
+function segmentTest(segments: readonly SegmentCounts[]): Homogeneity | null {
+  const total = (values: readonly number[]): number => values.reduce((sum, value) => sum + value, 0);
+  return homogeneity(segments.map(({ accounts, lost }) => ({ accounts: total(accounts), lost: total(lost) })));
+}

@@ -1,0 +1,32 @@
+import type { Standing } from '../charts/standing/standing.ts';
+import { nelsonTests } from '../charts/tests/nelsonTests.ts';
+import { TEST_SPAN } from '../charts/tests/patterns.ts';
+import type { Chart } from '../charts/types.ts';
+import type { Signal, SignalState } from './types.ts';
+import { testWords } from './words/testWords.ts';
+
+/** A flag is new while it was completed within the longest shift pattern's span of the newest point. */
+const NEW_WITHIN = TEST_SPAN[2];
+
+/**
+ * All flags of a chart, each told apart: standing, watching (new, not standing yet) or passed.
+ * @param moved  side on which the verdict found a standing shift, or null
+ */
+export function readSignals(chart: Chart, standing: Standing, moved: 'above' | 'below' | null): Signal[] {
+  const newest = chart.points.length;
+  const judgedFrom = chart.baseline.last >= newest ? 1 : chart.baseline.last + 1;
+  const values = chart.points.map(({ value, sigma }) => ({ value, center: chart.center, sigma }));
+  return nelsonTests(values).map((episode) => {
+    let state: SignalState;
+    const recent = newest - episode.until < NEW_WITHIN;
+    if (episode.speaks === 'cut' || episode.side === 'both') {
+      state = recent ? 'watching' : 'passed';
+    } else {
+      const inBlock = episode.until >= Math.max(judgedFrom, standing[episode.side].block.first);
+      if (moved === episode.side && inBlock) state = 'standing';
+      else if (moved === null && inBlock && recent) state = 'watching';
+      else state = 'passed';
+    }
+    return { ...episode, state, words: testWords(episode) };
+  });
+}
