@@ -1,0 +1,82 @@
+import type { PictureInput } from '../verdict/types.ts';
+import { countOf, heldDate, percent, percentRange } from './figures.ts';
+import { shortTitle } from './header.ts';
+import { candidateWords, immatureWords, waitingWords } from './notes.ts';
+import { stretches } from './stretches.ts';
+
+/** Longest alternative text, in characters. */
+const MOST = 1000;
+
+/**
+ * What the picture shows, for those who cannot see it: the finding first, then the levels, the points and what is marked, then what is
+ * still waiting. Sentences that would pass 1000 characters are left out from the end.
+ */
+export function altText(input: PictureInput): string {
+  let text = '';
+  for (const sentence of sentences(input)
+    .map(tidy)
+    .filter((one) => one !== '')) {
+    const longer = text === '' ? sentence : `${text} ${sentence}`;
+    if (longer.length <= MOST) text = longer;
+  }
+  return text;
+}
+
+function sentences(input: PictureInput): string[] {
+  const { chart, verdict, dates } = input;
+  const said: string[] = [finding(input)];
+  said.push(
+    `Counted: ${input.measure}; ${input.subject}${input.asOf === null ? '' : `; data to ${heldDate(input.asOf)}`}`,
+  );
+  if (chart && chart.points.length > 0) {
+    const first = dates[0]?.firstStart ?? null;
+    const last = dates[chart.points.length - 1]?.firstStart ?? null;
+    const span =
+      first === null || last === null ? '' : `, for accounts that started from ${heldDate(first)} to ${heldDate(last)}`;
+    const { baseline } = chart;
+    said.push(`The chart shows ${countOf(chart.points.length, 'point')}${span}`);
+    const end = chart.points.at(-1);
+    const band = end ? `; chance alone keeps points between ${percentRange(end.lower, end.upper)}` : '';
+    said.push(
+      `The usual level is ${percent(chart.center)}, set from points ${baseline.first} to ${baseline.last}${baseline.provisional ? ', provisional' : ''}${band}`,
+    );
+  } else said.push('There is no point to draw yet');
+  const marked = stretches(input.signals);
+  for (const stretch of marked.slice(0, 3)) {
+    const state = { standing: 'Marked as standing', watching: 'Marked as one to watch', passed: 'Marked as passed' }[
+      stretch.state
+    ];
+    const where = stretch.from === stretch.to ? `point ${stretch.from}` : `points ${stretch.from} to ${stretch.to}`;
+    said.push(`${state}, ${where}: ${stretch.words}`);
+  }
+  if (marked.length > 3) said.push(`${countOf(marked.length - 3, 'more marked stretch', 'more marked stretches')}`);
+  if (chart && marked.length === 0) said.push('No point is flagged');
+  said.push(capitalised(candidateWords(input)));
+  if (verdict.after && verdict.before && verdict.since)
+    said.push(
+      `Before: ${verdict.before.lost} of ${countOf(verdict.before.accounts, 'account')} lost; since: ${verdict.after.lost} of ${countOf(verdict.after.accounts, 'account')}`,
+    );
+  said.push(capitalised(waitingWords(input)), immatureWords(input));
+  return said;
+}
+
+function finding(input: PictureInput): string {
+  const { outcome, since, before, after, headline } = input.verdict;
+  const title = shortTitle(input);
+  if ((outcome !== 'risen' && outcome !== 'fallen') || !after || !before) return `${title}: ${headline}`;
+  const from = since
+    ? since.start === null
+      ? `from about point ${since.point}`
+      : `for accounts starting from about ${heldDate(since.start)}`
+    : '';
+  return `${title} ${from}: about ${percent(after.rate)} (${percentRange(after.low, after.high)}), against ${percent(before.rate)} (${percentRange(before.low, before.high)}) before`;
+}
+
+function tidy(text: string): string {
+  const plain = text.replace(/\s+/g, ' ').trim();
+  return plain === '' || /[.!?]$/.test(plain) ? plain : `${plain}.`;
+}
+
+function capitalised(text: string): string {
+  return text.charAt(0).toUpperCase() + text.slice(1);
+}

@@ -1,0 +1,109 @@
+import type { PictureInput } from '../verdict/types.ts';
+import { percent } from './figures.ts';
+import { EMBER, INK, LEVEL, TEXT_SIZE, WATER_EDGE } from './palette.ts';
+import { type Frame, type PlacedText, type Stroke, yAt } from './scene.ts';
+import { textWidth } from './textWidth.ts';
+
+interface EndLabel {
+  readonly lines: readonly string[];
+  readonly value: number;
+  readonly color: string;
+  readonly line: string;
+  readonly role: string;
+}
+
+const ROW = 23;
+const GAP = 9;
+
+/** The labels at the right ends of the lines, in plain words: usual level, both limits, and the level since it moved. */
+export function endLabels(input: PictureInput): EndLabel[] {
+  const chart = input.chart;
+  const last = chart?.points.at(-1);
+  if (!chart || !last) return [];
+  const labels: EndLabel[] = [];
+  const spread = last.upper > last.lower;
+  if (spread && last.upper < 1)
+    labels.push({
+      lines: ['chance alone', 'stays below', percent(last.upper)],
+      value: last.upper,
+      color: INK,
+      line: WATER_EDGE,
+      role: 'limit',
+    });
+  labels.push({
+    lines: ['usual level', percent(chart.center)],
+    value: chart.center,
+    color: LEVEL,
+    line: LEVEL,
+    role: 'center',
+  });
+  if (spread && last.lower > 0)
+    labels.push({
+      lines: last.upper < 1 ? ['and above', percent(last.lower)] : ['chance alone', 'stays above', percent(last.lower)],
+      value: last.lower,
+      color: INK,
+      line: WATER_EDGE,
+      role: 'limit',
+    });
+  const { after, outcome } = input.verdict;
+  if (after && (outcome === 'risen' || outcome === 'fallen'))
+    labels.push({
+      lines: ['since then', `about ${percent(after.rate)}`],
+      value: after.rate,
+      color: EMBER,
+      line: EMBER,
+      role: 'after',
+    });
+  return labels;
+}
+
+/** Room the labels need to the right of the plot, in px. */
+export function endLabelsWidth(labels: readonly EndLabel[]): number {
+  return Math.max(0, ...labels.flatMap((label) => label.lines.map((line) => textWidth(line, TEXT_SIZE, 700))));
+}
+
+/**
+ * Sets the labels at the height of their lines, pushed apart as little as needed so that none touches another, with a thin line
+ * back to the end of what each one names.
+ */
+export function placeEndLabels(labels: readonly EndLabel[], frame: Frame): { texts: PlacedText[]; strokes: Stroke[] } {
+  const sorted = [...labels].sort((a, b) => b.value - a.value);
+  const heights = sorted.map((label) => label.lines.length * ROW);
+  const tops = sorted.map((label, i) => yAt(frame, label.value) - (heights[i] ?? 0) / 2);
+  // Down from the top, then back up from the bottom: two passes settle a one-dimensional stack.
+  const bottomMost = frame.bottom + 14;
+  for (let i = 0; i < tops.length; i++) {
+    const floor = i === 0 ? frame.top - 10 : (tops[i - 1] ?? 0) + (heights[i - 1] ?? 0) + GAP;
+    tops[i] = Math.max(tops[i] ?? 0, floor);
+  }
+  for (let i = tops.length - 1; i >= 0; i--) {
+    const ceiling = (i === tops.length - 1 ? bottomMost : (tops[i + 1] ?? 0) - GAP) - (heights[i] ?? 0);
+    tops[i] = Math.min(tops[i] ?? 0, ceiling);
+  }
+  const texts: PlacedText[] = [];
+  const strokes: Stroke[] = [];
+  const x = frame.right + 24;
+  for (const [i, label] of sorted.entries()) {
+    const top = tops[i] ?? 0;
+    for (const [row, text] of label.lines.entries())
+      texts.push({
+        text,
+        x,
+        y: top + row * ROW + 17,
+        size: TEXT_SIZE,
+        weight: row === label.lines.length - 1 || label.role === 'after' ? 700 : 400,
+        color: label.color,
+        align: 'left',
+        role: label.role,
+      });
+    strokes.push({
+      x: frame.right + 1,
+      y: yAt(frame, label.value),
+      x2: x - 5,
+      y2: top + (heights[i] ?? 0) / 2,
+      color: label.line,
+      width: 1.6,
+    });
+  }
+  return { texts, strokes };
+}

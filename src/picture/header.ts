@@ -1,0 +1,80 @@
+import type { PictureInput } from '../verdict/types.ts';
+import { countOf, grouped, heldDate, percent, percentRange } from './figures.ts';
+import { EMBER, INK, LEAD_SIZE, LEVEL, LINE, MARGIN, QUIET, TEXT_SIZE, TITLE_SIZE, WIDTH } from './palette.ts';
+import type { PlacedText, Stroke } from './scene.ts';
+import { drawable, textWidth } from './textWidth.ts';
+import { wrapText } from './wrapText.ts';
+
+/** The verdict in a few words. */
+export function shortTitle(input: PictureInput): string {
+  switch (input.verdict.outcome) {
+    case 'risen':
+      return 'Churn has risen';
+    case 'fallen':
+      return 'Churn has fallen';
+    case 'steady':
+      return input.signals.some((signal) => signal.state === 'watching' && signal.speaks === 'shift')
+        ? 'Steady so far, one to watch'
+        : 'No sign that churn has moved';
+    case 'too-early':
+      return 'Too early to tell';
+    case 'cannot-say':
+      return 'These figures cannot tell';
+  }
+}
+
+/** What is counted, in the order a reader asks: what, of whom, how many a point, up to when. */
+export function countedLine(input: PictureInput): string {
+  const parts = [capitalised(input.measure), input.subject];
+  if (input.chart) {
+    const sizes = input.chart.points.map((point) => point.accounts);
+    const smallest = Math.min(...sizes);
+    const largest = Math.max(...sizes);
+    if (smallest === largest) parts.push(`each point: ${countOf(smallest, 'account')}`);
+    else if (sizes.length > 0) parts.push(`each point: ${grouped(smallest)} to ${countOf(largest, 'account')}`);
+  }
+  if (input.asOf !== null) parts.push(`data to ${heldDate(input.asOf)}`);
+  return parts.filter((part) => part.trim() !== '').join(' · ');
+}
+
+/**
+ * Title, headline, what is counted and, when churn moved, the level before and since with their marks.
+ * @returns the texts, and `bottom`, the px below which the rest may begin
+ */
+export function header(input: PictureInput): { texts: PlacedText[]; strokes: Stroke[]; bottom: number } {
+  const texts: PlacedText[] = [];
+  const strokes: Stroke[] = [];
+  const room = WIDTH - 2 * MARGIN;
+  let y = MARGIN - 8;
+  const block = (text: string, size: number, weight: 400 | 700, color: string, role: string): void => {
+    for (const line of wrapText(drawable(text), room, size, weight)) {
+      y += size * LINE;
+      texts.push({ text: line, x: MARGIN, y: y - size * 0.2, size, weight, color, align: 'left', role });
+    }
+  };
+  const moved = input.verdict.outcome === 'risen' || input.verdict.outcome === 'fallen';
+  block(shortTitle(input), TITLE_SIZE, 700, moved ? EMBER : INK, 'title');
+  y += 4;
+  block(input.verdict.headline, LEAD_SIZE, 400, INK, 'headline');
+  y += 6;
+  block(countedLine(input), TEXT_SIZE, 400, QUIET, 'counted');
+  const { before, after } = input.verdict;
+  if (moved && before && after) {
+    y += 12 + TEXT_SIZE * LINE;
+    let x = MARGIN;
+    for (const [word, level, color] of [
+      ['before', before, LEVEL],
+      ['since', after, EMBER],
+    ] as const) {
+      const text = `${word} ${word === 'since' ? 'about ' : ''}${percent(level.rate)} (${percentRange(level.low, level.high)})`;
+      strokes.push({ x, y: y - 11, x2: x + 30, y2: y - 11, color, width: 5 });
+      texts.push({ text, x: x + 40, y: y - 4, size: TEXT_SIZE, weight: 700, color, align: 'left', role: 'level' });
+      x += 40 + textWidth(text, TEXT_SIZE, 700) + 34;
+    }
+  }
+  return { texts, strokes, bottom: y + 6 };
+}
+
+function capitalised(text: string): string {
+  return text.charAt(0).toUpperCase() + text.slice(1);
+}

@@ -1,0 +1,204 @@
+import type { Chart } from '../charts/types.ts';
+import type { PictureInput } from '../verdict/types.ts';
+import { collectionScene } from './collection.ts';
+import { dateAxis } from './dateAxis.ts';
+import { endLabels, endLabelsWidth, placeEndLabels } from './endLabels.ts';
+import { placeFlagLane, planFlagLane } from './flagLane.ts';
+import { header } from './header.ts';
+import { notes } from './notes.ts';
+import {
+  EMBER,
+  EMBER_TINT,
+  GHOST,
+  HAIRLINE,
+  LEVEL,
+  MARGIN,
+  QUIET,
+  SAND,
+  SAND_INK,
+  TEXT_SIZE,
+  WIDTH,
+} from './palette.ts';
+import { domains, HEADROOM, PLOT_HEIGHT, tickLabels } from './plotFrame.ts';
+import { GHOST_MARK, pointMarks } from './pointMarks.ts';
+import {
+  type Frame,
+  type LevelLine,
+  type PlacedMark,
+  type PlacedText,
+  type Scene,
+  type Slab,
+  type Stroke,
+  xAt,
+  yAt,
+} from './scene.ts';
+import { type Stretch, stretches } from './stretches.ts';
+import { textWidth } from './textWidth.ts';
+
+/** Places everything the picture shows. Draws what it is given: no limit, level or verdict is computed here. */
+export function layout(input: PictureInput): Scene {
+  const { chart } = input;
+  if (!chart || chart.points.length === 0) return collectionScene(input);
+  const head = header(input);
+  const ends = endLabels(input);
+  const range = domains(input);
+  const tickWords = tickLabels(range.ticks);
+  const across = {
+    left: MARGIN + Math.max(...tickWords.map((words) => textWidth(words, TEXT_SIZE, 400))) + 12,
+    right: WIDTH - MARGIN - endLabelsWidth(ends) - 24,
+    xDomain: range.x,
+  };
+  const marked = markedStretches(input, chart);
+  const lane = planFlagLane(marked, input, across);
+  const top = head.bottom + 14 + lane.height;
+  const frame: Frame = { ...across, top, bottom: top + PLOT_HEIGHT, yDomain: range.y };
+
+  const axis = dateAxis(chart.points.length, input.dates, frame);
+  const below = notes(input, lane.unlabelled, axis.bottom + 12, range.ticks[0] ?? 0);
+  const flags = placeFlagLane(lane, marked, frame);
+  const limits = placeEndLabels(ends, frame);
+  const ground = baselineGround(chart, frame);
+  const start = startMark(input, frame);
+  const ghost = ghostMark(input, chart, frame);
+  const slotPx = (frame.right - frame.left) / (range.x[1] - range.x[0]);
+
+  const yTexts = tickWords.map(
+    (text, i): PlacedText => ({
+      text,
+      x: frame.left - 10,
+      y: yAt(frame, range.ticks[i] ?? 0) + 7,
+      size: TEXT_SIZE,
+      weight: 400,
+      color: QUIET,
+      align: 'right',
+      role: 'rate',
+    }),
+  );
+  const gridlines = range.ticks.map((tick): Stroke => {
+    const y = yAt(frame, tick);
+    return { x: frame.left, y, x2: frame.right, y2: y, color: HAIRLINE, width: 1.2 };
+  });
+  const floor: Stroke = { x: frame.left, y: frame.bottom, x2: frame.right, y2: frame.bottom, color: QUIET, width: 1.6 };
+  return {
+    widthPx: WIDTH,
+    heightPx: Math.ceil(below.bottom + MARGIN - 6),
+    frame,
+    slabs: [...ground.slabs, ...start.slabs],
+    under: gridlines,
+    band: bandRows(chart),
+    levels: levelLines(input, chart),
+    points: pointMarks(chart, marked, slotPx),
+    lineWidth: slotPx < 3 ? 1 : 1.6,
+    over: [
+      floor,
+      ...ghost.strokes,
+      ...axis.strokes,
+      ...start.strokes,
+      ...head.strokes,
+      ...limits.strokes,
+      ...flags.strokes,
+      ...below.strokes,
+    ],
+    marks: [...ghost.marks, ...start.marks, ...below.marks],
+    texts: [...head.texts, ...flags.texts, ...ground.texts, ...yTexts, ...limits.texts, ...axis.texts, ...below.texts],
+  };
+}
+
+/** The flagged stretches; a verdict of a move whose flag is not among the signals still gets its stretch marked. */
+function markedStretches(input: PictureInput, chart: Chart): Stretch[] {
+  const marked = stretches(input.signals);
+  const { outcome, since } = input.verdict;
+  const moved = outcome === 'risen' || outcome === 'fallen';
+  if (!moved || !since || marked.some((stretch) => stretch.state === 'standing')) return marked;
+  const words = outcome === 'risen' ? 'points above the usual level' : 'points below the usual level';
+  return [{ from: since.point, to: chart.points.length, state: 'standing', words, flags: 1 }, ...marked];
+}
+
+/** Steps half a slot to either side of each point; neighbours with equal limits share one step. */
+function bandRows(chart: Chart): Scene['band'] {
+  const rows: { x: number; lower: number; center: number; upper: number }[] = [];
+  const { points, center } = chart;
+  for (const [i, point] of points.entries()) {
+    const { lower, upper } = point;
+    const before = points[i - 1];
+    const after = points[i + 1];
+    if (!before || before.lower !== lower || before.upper !== upper)
+      rows.push({ x: point.index - 0.5, lower, center, upper });
+    if (!after || after.lower !== lower || after.upper !== upper)
+      rows.push({ x: point.index + 0.5, lower, center, upper });
+  }
+  return rows;
+}
+
+function levelLines(input: PictureInput, chart: Chart): LevelLine[] {
+  const { baseline, center, points } = chart;
+  const end = points.length + 0.5;
+  const lines: LevelLine[] = [
+    { x: 0.5, x2: Math.min(baseline.last + 0.5, end), value: center, color: LEVEL, width: 2.4, dash: [] },
+  ];
+  if (baseline.last + 0.5 < end)
+    lines.push({ x: baseline.last + 0.5, x2: end, value: center, color: LEVEL, width: 2.4, dash: [9, 5] });
+  const { before, after, since, outcome } = input.verdict;
+  if (since && (outcome === 'risen' || outcome === 'fallen')) {
+    if (before) lines.push({ x: 0.5, x2: since.point - 0.5, value: before.rate, color: LEVEL, width: 4.5, dash: [] });
+    if (after) lines.push({ x: since.point - 0.5, x2: end, value: after.rate, color: EMBER, width: 4.5, dash: [] });
+  }
+  return lines;
+}
+
+/** The stretch the usual level was set from: its own ground, and words in the strip kept free above the data. */
+function baselineGround(chart: Chart, frame: Frame): { slabs: Slab[]; texts: PlacedText[] } {
+  const { first, last, provisional } = chart.baseline;
+  const x = xAt(frame, first - 0.5);
+  const x2 = xAt(frame, Math.min(last, chart.points.length) + 0.5);
+  const slab: Slab = { x, y: frame.top, x2, y2: frame.bottom, color: SAND };
+  const y = frame.top + HEADROOM - 12;
+  const base = { y, size: TEXT_SIZE, weight: 400 as const, role: 'ground' };
+  const words = provisional ? 'usual level set here (provisional)' : 'usual level set here';
+  const width = textWidth(words, TEXT_SIZE, 400);
+  const left = Math.min(x + 9, frame.right - width - 4);
+  const texts: PlacedText[] = [{ ...base, text: words, x: left, color: SAND_INK, align: 'left' }];
+  const judged = 'judged against it';
+  const from = Math.max(x2, left + width + 12) + 9;
+  if (last < chart.points.length && from + textWidth(judged, TEXT_SIZE, 400) < frame.right)
+    texts.push({ ...base, text: judged, x: from, color: QUIET, align: 'left' });
+  return { slabs: [slab], texts };
+}
+
+/** The most likely start as a line up to its words, and the range of starts not ruled out as a tinted strip with a bar on the axis. */
+function startMark(input: PictureInput, frame: Frame): { slabs: Slab[]; strokes: Stroke[]; marks: PlacedMark[] } {
+  const { since, outcome } = input.verdict;
+  if (!since || (outcome !== 'risen' && outcome !== 'fallen')) return { slabs: [], strokes: [], marks: [] };
+  const x = xAt(frame, since.point - 0.5);
+  const from = xAt(frame, since.candidates[0] - 0.5);
+  const to = xAt(frame, since.candidates[1] - 0.5);
+  const wide = to - from >= 4;
+  const mark: PlacedMark = {
+    x,
+    y: frame.bottom + 6,
+    shape: 'triangle-up',
+    area: 150,
+    fill: EMBER,
+    stroke: EMBER,
+    strokeWidth: 0,
+  };
+  return {
+    slabs: wide ? [{ x: from, y: frame.top + HEADROOM - 2, x2: to, y2: frame.bottom, color: EMBER_TINT }] : [],
+    strokes: [
+      { x, y: frame.top + HEADROOM - 2, x2: x, y2: frame.bottom, color: EMBER, width: 2 },
+      ...(wide ? [{ x: from, y: frame.bottom, x2: to, y2: frame.bottom, color: EMBER, width: 8 }] : []),
+    ],
+    marks: [mark],
+  };
+}
+
+/** The withheld subgroup: an empty slot after the last point, its mark resting on the axis because it has no value yet. */
+function ghostMark(input: PictureInput, chart: Chart, frame: Frame): { strokes: Stroke[]; marks: PlacedMark[] } {
+  if (!input.waiting) return { strokes: [], marks: [] };
+  const x = xAt(frame, chart.points.length + 1);
+  const y = frame.bottom - 11;
+  return {
+    strokes: [{ x, y: y - 10, x2: x, y2: frame.top + HEADROOM, color: GHOST, width: 1.5, dash: [3, 5] }],
+    marks: [{ ...GHOST_MARK, x, y }],
+  };
+}

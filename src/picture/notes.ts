@@ -1,0 +1,129 @@
+import type { PictureInput } from '../verdict/types.ts';
+import { countOf, dateShort, grouped, heldDate, percent } from './figures.ts';
+import { EMBER, INK, LINE, MARGIN, QUIET, TEXT_SIZE, WIDTH } from './palette.ts';
+import { EXCLUDED_MARK, GHOST_MARK, PASSED_MARK, WATCHING_MARK } from './pointMarks.ts';
+import type { MarkStyle, PlacedMark, PlacedText, Stroke } from './scene.ts';
+import type { Stretch } from './stretches.ts';
+import { drawable } from './textWidth.ts';
+import { wrapText } from './wrapText.ts';
+
+interface Note {
+  readonly text: string;
+  readonly color: string;
+  readonly mark?: MarkStyle | 'bar' | 'heed';
+}
+
+const INDENT = 30;
+const MOST_STRETCHES = 2;
+const MOST_CAUTIONS = 2;
+
+/** "next point: 37 of 85 accounts so far, due about 3 July 2025" */
+export function waitingWords(input: PictureInput): string {
+  const waiting = input.waiting;
+  if (!waiting) return '';
+  const due = waiting.on === null ? 'due when enough accounts have started' : `due about ${heldDate(waiting.on)}`;
+  return `next point: ${grouped(waiting.accounts)} of ${countOf(waiting.of, 'account')} so far, ${due}`;
+}
+
+export function immatureWords(input: PictureInput): string {
+  if (input.immature <= 0) return '';
+  return `${countOf(input.immature, 'account')} ${input.immature === 1 ? 'is' : 'are'} too young to be counted`;
+}
+
+/** "start could lie anywhere from 3 February to 20 April 2025"; empty when only one start is possible. */
+export function candidateWords(input: PictureInput): string {
+  const since = input.verdict.since;
+  if (!since || since.candidates[0] === since.candidates[1]) return '';
+  const [first, last] = since.candidates.map((point) => {
+    const day = input.dates[point - 1]?.firstStart ?? null;
+    return day === null ? `point\u00a0${point}` : dateShort(day);
+  });
+  return `the start could lie anywhere from ${first} to ${last}`;
+}
+
+function planNotes(input: PictureInput, unlabelled: readonly Stretch[], floor: number): Note[] {
+  const notes: Note[] = [];
+  const candidates = candidateWords(input);
+  if (input.chart && candidates) notes.push({ text: candidates, color: EMBER, mark: 'bar' });
+  for (const stretch of unlabelled.slice(0, MOST_STRETCHES)) {
+    const when = input.dates[stretch.from - 1]?.firstStart ?? null;
+    const where = when === null ? `point ${stretch.from}` : heldDate(when);
+    const state =
+      stretch.state === 'passed' ? 'did not last' : stretch.state === 'watching' ? 'one to watch' : 'flagged';
+    const mark = stretch.state === 'passed' ? PASSED_MARK : WATCHING_MARK;
+    notes.push({ text: `${state}: ${stretch.words} (from ${where})`, color: QUIET, mark });
+  }
+  const more = unlabelled.length - MOST_STRETCHES;
+  if (more > 0)
+    notes.push({ text: `and ${countOf(more, 'more marked stretch', 'more marked stretches')}`, color: QUIET });
+  const excluded = input.chart?.baseline.excluded.length ?? 0;
+  if (excluded > 0)
+    notes.push({
+      text: `${countOf(excluded, 'point')} left out of the usual level by decision`,
+      color: QUIET,
+      mark: EXCLUDED_MARK,
+    });
+  if (input.chart && input.waiting) notes.push({ text: waitingWords(input), color: INK, mark: GHOST_MARK });
+  if (input.chart && input.immature > 0) notes.push({ text: immatureWords(input), color: INK });
+  if (floor > 0) notes.push({ text: `the scale starts at ${percent(floor)}, not at zero`, color: QUIET });
+  notes.push(...cautionNotes(input));
+  return notes;
+}
+
+function cautionNotes(input: PictureInput): Note[] {
+  const cautions = [...input.verdict.cautions];
+  const baseline = input.chart?.baseline;
+  if (baseline?.provisional && !cautions.some((caution) => /provisional/i.test(caution))) {
+    const used = baseline.last - baseline.first + 1 - baseline.excluded.length;
+    cautions.unshift(`provisional usual level: only ${countOf(used, 'point')}`);
+  }
+  const notes: Note[] = cautions.slice(0, MOST_CAUTIONS).map((text) => ({ text, color: QUIET, mark: 'heed' as const }));
+  const more = cautions.length - MOST_CAUTIONS;
+  if (more > 0) notes.push({ text: `${countOf(more, 'more caution')} in the message`, color: QUIET });
+  return notes;
+}
+
+/** What stands below the plot, a line or two each, with the mark it explains at its left. */
+export function notes(
+  input: PictureInput,
+  unlabelled: readonly Stretch[],
+  top: number,
+  floor: number,
+): { texts: PlacedText[]; marks: PlacedMark[]; strokes: Stroke[]; bottom: number } {
+  const texts: PlacedText[] = [];
+  const marks: PlacedMark[] = [];
+  const strokes: Stroke[] = [];
+  let y = top;
+  for (const note of planNotes(input, unlabelled, floor)) {
+    const middle = y + 15;
+    if (note.mark === 'bar')
+      strokes.push({ x: MARGIN, y: middle, x2: MARGIN + 20, y2: middle, color: EMBER, width: 8 });
+    else if (note.mark === 'heed') {
+      strokes.push({ x: MARGIN + 10, y: middle - 8, x2: MARGIN + 10, y2: middle + 2, color: QUIET, width: 3.5 });
+      marks.push({
+        x: MARGIN + 10,
+        y: middle + 7,
+        shape: 'circle',
+        area: 14,
+        fill: QUIET,
+        stroke: QUIET,
+        strokeWidth: 0,
+      });
+    } else if (note.mark) marks.push({ ...note.mark, x: MARGIN + 10, y: middle });
+    for (const text of wrapText(drawable(note.text), WIDTH - 2 * MARGIN - INDENT, TEXT_SIZE, 400)) {
+      texts.push({
+        text,
+        x: MARGIN + INDENT,
+        y: y + 21,
+        size: TEXT_SIZE,
+        weight: 400,
+        color: note.color,
+        align: 'left',
+        role: 'note',
+      });
+      y += TEXT_SIZE * LINE;
+    }
+    y += 5;
+  }
+  return { texts, marks, strokes, bottom: y };
+}

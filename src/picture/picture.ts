@@ -1,0 +1,51 @@
+import type { PictureInput } from '../verdict/types.ts';
+import { altText } from './altText.ts';
+import { useShippedFonts } from './fonts.ts';
+import { layout } from './layout.ts';
+import { spec } from './spec.ts';
+
+export interface Picture {
+  readonly png: Uint8Array;
+  readonly svg: string;
+  readonly altText: string;
+  readonly widthPx: number;
+  readonly heightPx: number;
+}
+
+/** Pixels of the PNG for one px of the drawing: crisp on dense screens. */
+const DENSITY = 2;
+
+type Renderer = typeof import('./render.ts');
+let renderer: Promise<Renderer> | undefined;
+
+/** The libraries behind the picture take a third of a second to load; they are loaded once, when first needed or warmed. */
+function loadRenderer(): Promise<Renderer> {
+  useShippedFonts();
+  renderer ??= import('./render.ts');
+  return renderer;
+}
+
+/** Loads everything the first picture needs, so that a caller can overlap it with other waiting. */
+export async function warmPicture(): Promise<void> {
+  await loadRenderer();
+}
+
+/**
+ * Draws a verdict's picture.
+ * @param input finished numbers: rates as fractions, days as day numbers; nothing is computed here but places
+ * @returns the PNG at twice the drawing's size (1440 px wide), the SVG it was made from, and the text for those who cannot see it
+ * @throws  Error when Vega warns: a warning would mean a part of the drawing is missing
+ */
+export async function drawPicture(input: PictureInput): Promise<Picture> {
+  const { renderPng, renderSvg } = await loadRenderer();
+  const scene = layout(input);
+  const svg = await renderSvg(spec(scene));
+  const png = await renderPng(svg, DENSITY);
+  return {
+    png,
+    svg,
+    altText: altText(input),
+    widthPx: scene.widthPx * DENSITY,
+    heightPx: scene.heightPx * DENSITY,
+  };
+}
