@@ -83,8 +83,19 @@ export interface Store {
   /** writes the entry and its queue job in one transaction; 'seen' when the event or what it is about is already there */
   receive(entry: InboxEntry): Promise<'new' | 'seen'>;
   /** works entries from the queue, `concurrency` at a time; a thrown error is retried a few times with growing pauses, then kept as failed */
-  work(handler: (entry: InboxEntry & { readonly attempt: number; readonly lastAttempt: boolean }) => Promise<void>, concurrency: number): Promise<void>;
+  work(
+    handler: (
+      entry: InboxEntry & {
+        readonly attempt: number;
+        readonly lastAttempt: boolean;
+      },
+    ) => Promise<void>,
+    concurrency: number,
+  ): Promise<void>;
   /** resolves when every received entry has been worked (or has failed for good); event driven, for tests and shutdown */
   drained(timeoutMs: number): Promise<void>;
+  /** removes entries older than 7 days with their payload, unless still to be worked, and tidies the queue; call it now and then, about hourly */
+  maintain(): Promise<{ readonly inbox: number; readonly posted: number }>;
+  /** stops taking up entries, waits for the running ones (a little: what takes longer is put back), and closes; the folder is free afterwards */
   close(): Promise<void>;
 }

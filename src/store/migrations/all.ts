@@ -1,0 +1,5 @@
+import { first } from './first.ts';
+import type { Migration } from './types.ts';
+
+/** All steps in order. Append only. */
+export const MIGRATIONS: readonly Migration[] = [first];
