@@ -41,7 +41,20 @@ export function addMonths(day: Day, months: number): Day {
   return Math.round(first.getTime() / DAY_MS) + Math.min(date.getUTCDate(), last) - 1;
 }
 
-const MONTHS = ['January', 'February', 'March', 'April', 'May', 'June', 'July', 'August', 'September', 'October', 'November', 'December'];
+const MONTHS = [
+  'January',
+  'February',
+  'March',
+  'April',
+  'May',
+  'June',
+  'July',
+  'August',
+  'September',
+  'October',
+  'November',
+  'December',
+];
 
 /** A day in words: "12 March 2025". The month is spelled out so that no reader takes the day for the month. */
 export function dayInWords(day: Day): string {

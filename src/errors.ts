@@ -15,8 +15,9 @@ export const ERROR_CODES = {
   COLUMN_SINGLE: 'there is only one column',
   COLUMN_UNKNOWN: 'a column was named that the file does not have',
   COLUMN_START_MISSING: 'no column looks like the start of a subscription',
-  COLUMN_END_MISSING: 'no column looks like the end of a subscription',
+  COLUMN_END_MISSING: 'no column says when a subscription ended',
   DATES_UNREADABLE: 'no value in a date column can be read',
+  DATES_MIXED: 'some dates read only day-first and others only month-first',
   DATES_AMBIGUOUS: 'the dates read both as day-first and as month-first',
   ACCOUNTS_NONE: 'no row is left to count',
   // the request

@@ -31,10 +31,18 @@ export interface Answer {
 }
 
 export type Ingested =
-  | { readonly kind: 'read'; readonly dataset: Dataset; readonly upload: Upload }
+  | {
+      readonly kind: 'read';
+      readonly dataset: Dataset;
+      readonly upload: Upload;
+    }
   /** the file is sound but a person must decide: how the dates read */
   | { readonly kind: 'asks'; readonly error: EbbError; readonly upload: Upload }
-  | { readonly kind: 'refused'; readonly error: EbbError; readonly upload: Upload };
+  | {
+      readonly kind: 'refused';
+      readonly error: EbbError;
+      readonly upload: Upload;
+    };
 
 /** The use cases the channel calls. It knows no statistics and no SQL. */
 export interface Answers {

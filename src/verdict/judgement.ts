@@ -60,7 +60,10 @@ const NO_TRUST: Trust = {
  * @param segments  counts per segment value and point, or empty
  */
 export function judge(chart: Chart, segments: readonly SegmentCounts[] = []): Judgement {
-  const counts: SubgroupCount[] = chart.points.map(({ accounts, lost }) => ({ accounts, lost }));
+  const counts: SubgroupCount[] = chart.points.map(({ accounts, lost }) => ({
+    accounts,
+    lost,
+  }));
   const lost = counts.map((count) => count.lost);
   const design = {
     accounts: counts.map((count) => count.accounts),
@@ -84,9 +87,18 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = []): Ju
     below: { block: { first: newest, ratio: 0 }, score: 0 },
   };
   if (chart.center <= 0 || chart.center >= 1) {
-    return { ...nothing, finding: newest < LEAST_POINTS ? 'too-few-points' : 'no-level', signals: [] };
+    return {
+      ...nothing,
+      finding: newest < LEAST_POINTS ? 'too-few-points' : 'no-level',
+      signals: [],
+    };
   }
-  if (newest < LEAST_POINTS) return { ...nothing, finding: 'too-few-points', signals: readSignals(chart, quiet, null) };
+  if (newest < LEAST_POINTS)
+    return {
+      ...nothing,
+      finding: 'too-few-points',
+      signals: readSignals(chart, quiet, null),
+    };
 
   const standing = standingJudge(design)(lost);
   const threshold = standingThreshold(design, chart.center);
@@ -104,7 +116,9 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = []): Ju
   const shrink = spread && spread.pValue < OVERDISPERSED ? Math.max(1, spread.ratio) : 1;
   const moved = standing[side].score / shrink > threshold.ratio ? side : null;
 
-  const base: Omit<Judgement, 'finding' | 'signals'> & { mix: MixReading | null } = {
+  const base: Omit<Judgement, 'finding' | 'signals'> & {
+    mix: MixReading | null;
+  } = {
     ...nothing,
     trust: {
       ...runLengthTrust(design.accounts, chart.center),
@@ -156,5 +170,10 @@ function runLengthTrust(sizes: readonly number[], center: number) {
 
 function segmentTest(segments: readonly SegmentCounts[]): Homogeneity | null {
   const total = (values: readonly number[]): number => values.reduce((sum, value) => sum + value, 0);
-  return homogeneity(segments.map(({ accounts, lost }) => ({ accounts: total(accounts), lost: total(lost) })));
+  return homogeneity(
+    segments.map(({ accounts, lost }) => ({
+      accounts: total(accounts),
+      lost: total(lost),
+    })),
+  );
 }

@@ -10,7 +10,11 @@ export interface MixReading {
   /** 'none': the move stands within groups; 'all': the groups are steady and only their shares moved; 'unclear': neither */
   readonly explains: 'none' | 'all' | 'unclear';
   /** group whose share of the accounts changed most, with its shares before and after */
-  readonly largest: { readonly segment: string; readonly before: number; readonly after: number };
+  readonly largest: {
+    readonly segment: string;
+    readonly before: number;
+    readonly after: number;
+  };
 }
 
 /** With less than this part of the pooled difference left within groups, the mix is the story. Our choice, no source. */
@@ -67,8 +71,14 @@ function sumOf(accounts: readonly number[], lost: readonly number[], first: numb
 }
 
 function pool(counts: readonly SubgroupCount[]): SubgroupCount {
-  return counts.reduce((sum, { accounts, lost }) => ({ accounts: sum.accounts + accounts, lost: sum.lost + lost }), {
-    accounts: 0,
-    lost: 0,
-  });
+  return counts.reduce(
+    (sum, { accounts, lost }) => ({
+      accounts: sum.accounts + accounts,
+      lost: sum.lost + lost,
+    }),
+    {
+      accounts: 0,
+      lost: 0,
+    },
+  );
 }

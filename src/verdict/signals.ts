@@ -15,7 +15,11 @@ const NEW_WITHIN = TEST_SPAN[2];
 export function readSignals(chart: Chart, standing: Standing, moved: 'above' | 'below' | null): Signal[] {
   const newest = chart.points.length;
   const judgedFrom = chart.baseline.last >= newest ? 1 : chart.baseline.last + 1;
-  const values = chart.points.map(({ value, sigma }) => ({ value, center: chart.center, sigma }));
+  const values = chart.points.map(({ value, sigma }) => ({
+    value,
+    center: chart.center,
+    sigma,
+  }));
   return nelsonTests(values).map((episode) => {
     let state: SignalState;
     const recent = newest - episode.until < NEW_WITHIN;

@@ -35,7 +35,11 @@ export interface Trust {
   readonly method: 'exact' | 'simulated';
   readonly standardError: number | null;
   readonly falseVerdictChance: number | null;
-  readonly wouldSee: { readonly rise: number | null; readonly fall: number | null; readonly chance: number } | null;
+  readonly wouldSee: {
+    readonly rise: number | null;
+    readonly fall: number | null;
+    readonly chance: number;
+  } | null;
 }
 
 export interface Verdict {
@@ -64,7 +68,11 @@ export interface PictureInput {
   readonly signals: readonly Signal[];
   readonly verdict: Verdict;
   /** withheld subgroup: accounts it holds, its size, and when it can be plotted */
-  readonly waiting: { readonly accounts: number; readonly of: number; readonly on: Day | null } | null;
+  readonly waiting: {
+    readonly accounts: number;
+    readonly of: number;
+    readonly on: Day | null;
+  } | null;
   /** accounts too young to be counted */
   readonly immature: number;
   /** "lost within 3 months of starting" */

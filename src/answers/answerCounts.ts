@@ -1,0 +1,83 @@
+import { recommendedBaseline } from '../charts/baseline.ts';
+import { pChart } from '../charts/kinds/pChart.ts';
+import type { SubgroupCount } from '../charts/types.ts';
+import { drawPicture } from '../picture/picture.ts';
+import { judge } from '../verdict/judgement.ts';
+import type { PictureInput, PointDates } from '../verdict/types.ts';
+import { writeVerdict } from '../verdict/verdict.ts';
+import type { Answer } from './types.ts';
+
+export interface CountsQuestion {
+  readonly counts: readonly SubgroupCount[];
+  readonly baseline?: number;
+  readonly excluded?: readonly number[];
+  readonly picture: boolean;
+  readonly clock: () => number;
+}
+
+/** Charts ready counts: for published tables and for people with a spreadsheet. Without dates, points are known by number. */
+export async function answerCounts(question: CountsQuestion): Promise<Answer> {
+  const { counts, clock } = question;
+  const begun = clock();
+  const chart = pChart(counts, {
+    baselineLast: Math.min(question.baseline ?? recommendedBaseline(counts.length), counts.length),
+    ...(question.excluded ? { excluded: question.excluded } : {}),
+  });
+  const judgement = judge(chart);
+  const dates: PointDates[] = counts.map(() => ({
+    firstStart: null,
+    lastStart: null,
+    asOf: null,
+  }));
+  const accounts = counts.reduce((sum, entry) => sum + entry.accounts, 0);
+  const verdict = writeVerdict(chart, judgement, {
+    tenure: null,
+    dates,
+    subgroupSize: chart.subgroupSize,
+    accounts,
+    matured: accounts,
+    waiting: 0,
+    immature: 0,
+    nextPointOn: null,
+    inflowPerWeek: 0,
+    asOf: null,
+    asOfInferred: false,
+    segmentColumn: null,
+    segment: null,
+    segmentValues: [],
+    readCautions: [],
+  });
+  const chartDone = clock();
+  const input: PictureInput = {
+    chart,
+    dates,
+    signals: judgement.signals,
+    verdict,
+    waiting: null,
+    immature: 0,
+    measure: 'share lost',
+    subject: 'ready counts',
+    asOf: null,
+  };
+  const picture = question.picture ? await drawPicture(input) : null;
+  const done = clock();
+  return {
+    verdict,
+    chart,
+    dates,
+    signals: judgement.signals,
+    trust: judgement.trust,
+    report: null,
+    census: null,
+    plan: null,
+    tenure: null,
+    picture,
+    timing: {
+      readMs: 0,
+      censusMs: 0,
+      chartMs: chartDone - begun,
+      pictureMs: done - chartDone,
+      totalMs: done - begun,
+    },
+  };
+}

@@ -1,0 +1,172 @@
+import type { AccountTable } from '../accounts/types.ts';
+import { takeCensus } from '../census/census.ts';
+import { planCensus } from '../census/plan.ts';
+import { tenureInWords } from '../census/tenure.ts';
+import type { Census } from '../census/types.ts';
+import { recommendedBaseline } from '../charts/baseline.ts';
+import { pChart } from '../charts/kinds/pChart.ts';
+import { dayInWords } from '../days.ts';
+import { EbbError } from '../errors.ts';
+import { drawPicture } from '../picture/picture.ts';
+import type { Question } from '../requests/types.ts';
+import type { VerdictContext } from '../verdict/context.ts';
+import { judge, LEAST_POINTS } from '../verdict/judgement.ts';
+import type { PictureInput, PointDates } from '../verdict/types.ts';
+import { writeVerdict } from '../verdict/verdict.ts';
+import { emptyJudgement } from './emptyJudgement.ts';
+import { readCautions } from './readCautions.ts';
+import type { Answer } from './types.ts';
+
+export interface AnswerOptions {
+  /** what the picture calls the data: the export's name */
+  readonly subject: string;
+  readonly picture: boolean;
+  /** a clock in milliseconds, for the timing figures only */
+  readonly clock: () => number;
+  /** time already spent on reading */
+  readonly readMs: number;
+}
+
+/**
+ * Answers "has churn moved?" from accounts ready to be counted.
+ * @throws EbbError SEGMENT_UNKNOWN, OPTION_INVALID when the question asks for what the data does not have
+ */
+export async function answerQuestion(table: AccountTable, question: Question, options: AnswerOptions): Promise<Answer> {
+  const { clock } = options;
+  const begun = clock();
+  const { report } = table;
+  const asOf = question.asOf ?? report.asOf;
+  const settleDays = question.settleDays ?? 0;
+  const segment = question.segment === undefined ? undefined : knownSegment(table, question.segment);
+  const narrowed = segment === undefined ? {} : { segment };
+
+  const plan = await planCensus(table, {
+    asOf,
+    settleDays,
+    ...(question.tenure ? { tenure: question.tenure } : {}),
+    ...(question.subgroupSize ? { subgroupSize: question.subgroupSize } : {}),
+    ...narrowed,
+  });
+  const { tenure } = plan;
+  const census = await takeCensus(table, {
+    tenure,
+    subgroupSize: plan.subgroupSize,
+    settleDays,
+    asOf,
+    view: 'start',
+    ...narrowed,
+  });
+  const censusDone = clock();
+
+  const dates: PointDates[] = census.subgroups.map(({ firstStart, lastStart, asOf: day }) => ({
+    firstStart,
+    lastStart,
+    asOf: day,
+  }));
+  const { baselineLast, caution } = chooseBaseline(question, census);
+  const chart = census.subgroups.length > 0 ? pChart(census.subgroups, { baselineLast }) : null;
+  const judgement = chart ? judge(chart, census.segments) : emptyJudgement();
+  const tenureWords = tenureInWords(tenure);
+  const context: VerdictContext = {
+    tenure: tenureWords,
+    dates,
+    subgroupSize: plan.subgroupSize,
+    accounts: report.accounts,
+    matured: census.matured,
+    waiting: census.waiting,
+    immature: census.immature,
+    nextPointOn: census.nextPointOn,
+    inflowPerWeek: census.inflowPerWeek,
+    asOf,
+    asOfInferred: question.asOf === undefined && report.asOfSource !== 'given',
+    segmentColumn: report.columns.segment ?? null,
+    segment: segment ?? null,
+    segmentValues: census.segments.map((entry) => entry.segment),
+    readCautions: [...caution, ...readCautions(report)],
+  };
+  const verdict = writeVerdict(chart, judgement, context);
+  const chartDone = clock();
+
+  const input: PictureInput = {
+    chart,
+    dates,
+    signals: judgement.signals,
+    verdict,
+    waiting: {
+      accounts: census.waiting,
+      of: plan.subgroupSize,
+      on: census.nextPointOn,
+    },
+    immature: census.immature,
+    measure: `lost within ${tenureWords} of starting`,
+    subject: segment === undefined ? options.subject : `${options.subject}, ${segment}`,
+    asOf,
+  };
+  const picture = options.picture ? await drawPicture(input) : null;
+  const done = clock();
+  return {
+    verdict,
+    chart,
+    dates,
+    signals: judgement.signals,
+    trust: judgement.trust,
+    report,
+    census,
+    plan,
+    tenure,
+    picture,
+    timing: {
+      readMs: options.readMs,
+      censusMs: censusDone - begun,
+      chartMs: chartDone - censusDone,
+      pictureMs: done - chartDone,
+      totalMs: options.readMs + done - begun,
+    },
+  };
+}
+
+function chooseBaseline(question: Question, census: Census): { baselineLast: number; caution: string[] } {
+  const count = census.subgroups.length;
+  if (question.baseline !== undefined)
+    return {
+      baselineLast: Math.min(question.baseline, Math.max(1, count)),
+      caution: [],
+    };
+  const usual = Math.max(1, recommendedBaseline(count));
+  const { since } = question;
+  if (since === undefined) return { baselineLast: usual, caution: [] };
+  const before = census.subgroups.filter((subgroup) => subgroup.lastStart < since).length;
+  if (before >= LEAST_POINTS && before < count) return { baselineLast: before, caution: [] };
+  const why =
+    before >= count
+      ? `No full point started since ${dayInWords(since)} yet`
+      : `Only ${before} full points lie before ${dayInWords(since)}, too few to set a usual level`;
+  return {
+    baselineLast: usual,
+    caution: [`${why}, so the usual split of the chart was kept.`],
+  };
+}
+
+function knownSegment(table: AccountTable, wanted: NonNullable<Question['segment']>): string {
+  const { report } = table;
+  const column = report.columns.segment;
+  if (column === undefined) {
+    throw new EbbError(
+      'SEGMENT_UNKNOWN',
+      'the export has no column that groups accounts',
+      'Name one with --columns segment=COLUMN, or in the Correct this form.',
+    );
+  }
+  const exact = report.segments.find((entry) => entry.value === wanted.value);
+  const folded = report.segments.find((entry) => entry.value.toLowerCase() === wanted.value.toLowerCase());
+  const found = exact ?? folded;
+  if (!found) {
+    const known = report.segments.slice(0, 8).map((entry) => entry.value);
+    throw new EbbError(
+      'SEGMENT_UNKNOWN',
+      `no account has "${wanted.value}" in column "${column}"`,
+      `It has ${known.map((value) => `"${value}"`).join(', ')}${report.segments.length > known.length ? ' and others' : ''}.`,
+    );
+  }
+  return found.value;
+}

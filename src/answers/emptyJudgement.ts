@@ -1,0 +1,22 @@
+import type { Judgement } from '../verdict/judgement.ts';
+
+/** What can be said without one full subgroup: nothing yet. */
+export function emptyJudgement(): Judgement {
+  return {
+    finding: 'too-few-points',
+    signals: [],
+    trust: {
+      falseAlarmEvery: null,
+      method: 'simulated',
+      standardError: null,
+      falseVerdictChance: null,
+      wouldSee: null,
+    },
+    start: null,
+    wouldSeeFrom: 1,
+    steadiness: null,
+    dispersion: null,
+    segmentsDiffer: null,
+    mix: null,
+  };
+}

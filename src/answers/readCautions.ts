@@ -1,0 +1,22 @@
+import type { ReadReport } from '../accounts/types.ts';
+import { counted } from '../verdict/words/format.ts';
+
+/** A share of unusable rows above which the answer itself should carry the warning. Our choice, no source. */
+const MANY_REJECTED = 0.02;
+
+/** What reading the file leaves the reader of the verdict to know. */
+export function readCautions(report: ReadReport): string[] {
+  const cautions: string[] = [];
+  const rejected = report.rejected.reduce((sum, entry) => sum + entry.rows, 0);
+  if (rejected > report.rows * MANY_REJECTED) {
+    cautions.push(
+      `${counted(rejected, 'row')} of ${counted(report.rows, 'row')} could not be used; the list of reasons is with what was read.`,
+    );
+  }
+  if (report.returned > 0) {
+    cautions.push(
+      `${counted(report.returned, 'account')} left and came back later; each counts once, as lost where it first left.`,
+    );
+  }
+  return cautions;
+}

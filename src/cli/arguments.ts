@@ -1,0 +1,196 @@
+import { parseArgs } from 'node:util';
+import type { ColumnMap, ColumnRole, DateOrder } from '../accounts/types.ts';
+import { parseTenure } from '../census/tenure.ts';
+import type { Tenure } from '../census/types.ts';
+import { type Day, dayFromIso } from '../days.ts';
+import { EbbError } from '../errors.ts';
+
+/** What the command line understood, each value checked. */
+export interface CliOptions {
+  readonly words: readonly string[];
+  readonly json: boolean;
+  readonly help: boolean;
+  readonly version: boolean;
+  readonly asOf?: Day;
+  readonly tenure?: Tenure;
+  readonly subgroupSize?: number;
+  readonly baseline?: number;
+  readonly segment?: { readonly column: string; readonly value: string };
+  readonly columns?: ColumnMap;
+  readonly dates?: DateOrder;
+  readonly picture?: string;
+  readonly points?: string;
+  readonly counts?: string;
+  readonly sizes?: string;
+}
+
+const KNOWN = {
+  'as-of': { type: 'string' },
+  tenure: { type: 'string' },
+  'subgroup-size': { type: 'string' },
+  baseline: { type: 'string' },
+  segment: { type: 'string' },
+  by: { type: 'string' },
+  chart: { type: 'string' },
+  columns: { type: 'string' },
+  dates: { type: 'string' },
+  picture: { type: 'string' },
+  points: { type: 'string' },
+  counts: { type: 'string' },
+  sizes: { type: 'string' },
+  json: { type: 'boolean' },
+  help: { type: 'boolean', short: 'h' },
+  version: { type: 'boolean' },
+} as const;
+
+const ROLES: readonly ColumnRole[] = ['id', 'start', 'end', 'segment', 'amount'];
+const ORDERS: readonly DateOrder[] = ['iso', 'dmy', 'mdy'];
+
+/**
+ * Reads the words after the command.
+ * @throws EbbError OPTION_UNKNOWN, OPTION_INVALID with the option and how to mend it
+ */
+export function readArguments(args: readonly string[]): CliOptions {
+  const { values, positionals } = parse(args);
+  onlyChoice('by', values.by, ['start'], ['renewal', 'calendar']);
+  onlyChoice('chart', values.chart, ['auto', 'p'], ['p-prime', 'g', 't', 'individuals', 'ewma', 'cusum']);
+  const segment = values.segment === undefined ? undefined : columnValue(values.segment);
+  const columns = values.columns === undefined ? undefined : columnMap(values.columns);
+  const named = segment ? { ...columns, segment: segment.column } : columns;
+  return {
+    words: positionals,
+    json: values.json ?? false,
+    help: values.help ?? false,
+    version: values.version ?? false,
+    ...(values['as-of'] === undefined ? {} : { asOf: isoDate('--as-of', values['as-of']) }),
+    ...(values.tenure === undefined ? {} : { tenure: tenure(values.tenure) }),
+    ...(values['subgroup-size'] === undefined
+      ? {}
+      : { subgroupSize: whole('--subgroup-size', values['subgroup-size'], 2) }),
+    ...(values.baseline === undefined ? {} : { baseline: whole('--baseline', values.baseline, 2) }),
+    ...(segment ? { segment } : {}),
+    ...(named ? { columns: named } : {}),
+    ...(values.dates === undefined ? {} : { dates: choice('--dates', values.dates, ORDERS) }),
+    ...(values.picture === undefined ? {} : { picture: values.picture }),
+    ...(values.points === undefined ? {} : { points: values.points }),
+    ...(values.counts === undefined ? {} : { counts: values.counts }),
+    ...(values.sizes === undefined ? {} : { sizes: values.sizes }),
+  };
+}
+
+function parse(args: readonly string[]) {
+  try {
+    return parseArgs({
+      args: [...args],
+      options: KNOWN,
+      allowPositionals: true,
+      strict: true,
+    });
+  } catch (error) {
+    const text = error instanceof Error ? error.message : String(error);
+    const unknown = /Unknown option '([^']+)'/.exec(text)?.[1];
+    if (unknown !== undefined) {
+      throw new EbbError(
+        'OPTION_UNKNOWN',
+        `there is no option ${unknown}`,
+        `The options are ${Object.keys(KNOWN)
+          .map((name) => `--${name}`)
+          .join(', ')}.`,
+      );
+    }
+    const option = /Option '([^' ]+)/.exec(text)?.[1] ?? 'an option';
+    throw new EbbError(
+      'OPTION_INVALID',
+      `${option} needs a value`,
+      'Put it right after the option, for example --tenure "3 months".',
+      { cause: error },
+    );
+  }
+}
+
+function isoDate(option: string, text: string): Day {
+  const day = dayFromIso(text);
+  if (day === undefined)
+    throw new EbbError(
+      'OPTION_INVALID',
+      `${option}: "${text}" is not a date`,
+      'Write it as YYYY-MM-DD, for example 2025-06-30.',
+    );
+  return day;
+}
+
+function tenure(text: string): Tenure {
+  const parsed = parseTenure(text);
+  if (!parsed)
+    throw new EbbError(
+      'OPTION_INVALID',
+      `--tenure: "${text}" is not an age`,
+      'Write a whole number of days, weeks or months, for example --tenure "3 months".',
+    );
+  return parsed;
+}
+
+function whole(option: string, text: string, least: number): number {
+  const value = Number(text);
+  if (!/^\d+$/.test(text) || value < least || value > 10_000_000) {
+    throw new EbbError(
+      'OPTION_INVALID',
+      `${option}: "${text}" is not a whole number of at least ${least}`,
+      `For example ${option} ${least === 2 ? 30 : least}.`,
+    );
+  }
+  return value;
+}
+
+function choice<T extends string>(option: string, text: string, allowed: readonly T[]): T {
+  const found = allowed.find((value) => value === text);
+  if (found === undefined)
+    throw new EbbError(
+      'OPTION_INVALID',
+      `${option}: "${text}" is not one of ${allowed.join(', ')}`,
+      `For example ${option} ${allowed[0]}.`,
+    );
+  return found;
+}
+
+function onlyChoice(name: string, text: string | undefined, now: readonly string[], later: readonly string[]): void {
+  if (text === undefined || now.includes(text)) return;
+  if (later.includes(text)) {
+    throw new EbbError(
+      'OPTION_INVALID',
+      `--${name} ${text} is not in this version`,
+      `Use --${name} ${now.join(' or ')}, or leave it out.`,
+    );
+  }
+  choice(`--${name}`, text, now);
+}
+
+function columnValue(text: string): { column: string; value: string } {
+  const at = text.indexOf('=');
+  if (at < 1 || at === text.length - 1) {
+    throw new EbbError(
+      'OPTION_INVALID',
+      `--segment: "${text}" does not name a column and a value`,
+      'Write COLUMN=VALUE, for example --segment plan=annual.',
+    );
+  }
+  return { column: text.slice(0, at), value: text.slice(at + 1) };
+}
+
+function columnMap(text: string): ColumnMap {
+  const map: ColumnMap = {};
+  for (const part of text.split(',')) {
+    const [role, ...rest] = part.split('=');
+    const column = rest.join('=').trim();
+    const known = ROLES.find((name) => name === role?.trim());
+    if (!known || column === '') {
+      throw new EbbError(
+        'OPTION_INVALID',
+        `--columns: "${part}" is not ROLE=COLUMN`,
+        `The roles are ${ROLES.join(', ')}; for example --columns start=joined,end=left.`,
+      );
+    }
+    map[known] = column;
+  }
+  return map;
+}

@@ -1,0 +1,92 @@
+import { basename } from 'node:path';
+import { openEngine } from '../accounts/engine.ts';
+import { readExport } from '../accounts/readExport.ts';
+import type { ReadReport } from '../accounts/types.ts';
+import { answerQuestion } from '../answers/answerQuestion.ts';
+import { EbbError } from '../errors.ts';
+import type { Question, Request, Understanding } from '../requests/types.ts';
+import { readText } from '../verdict/words/readText.ts';
+import { answerText } from './answerText.ts';
+import type { CliOptions } from './arguments.ts';
+import { contractJson, pointsCsv } from './contractJson.ts';
+import { progressBar } from './progressBar.ts';
+import type { CliSurroundings } from './runCli.ts';
+import { writeOutput } from './writeOutput.ts';
+
+/** ebb ask FILE [words]: reads the export, answers, writes what was asked for. */
+export async function askCommand(options: CliOptions, around: CliSurroundings): Promise<void> {
+  const [file, ...words] = options.words;
+  if (file === undefined)
+    throw new EbbError('FILE_MISSING', 'no file was named', 'For example: ebb ask accounts.csv has churn moved');
+  const begun = around.clock();
+  // The drawing parts load while the engine reads: together they take as long as the slower of the two.
+  const warm =
+    options.picture === undefined
+      ? undefined
+      : import('../picture/picture.ts').then(({ warmPicture }) => warmPicture());
+  warm?.catch(() => undefined);
+  const engine = await openEngine();
+  try {
+    const bar = await progressBar(around, file);
+    const table = await readExport(engine, file, {
+      ...(options.columns ? { columns: options.columns } : {}),
+      ...(options.dates ? { dates: options.dates } : {}),
+      ...(options.asOf === undefined ? {} : { asOf: options.asOf }),
+      ...(bar ? { onProgress: bar.update } : {}),
+    }).finally(() => bar?.stop());
+    const readMs = around.clock() - begun;
+    const understanding = words.length > 0 ? await understandWords(words.join(' '), table.report) : null;
+    const request: Request = understanding?.request ?? { kind: 'ask' };
+    const name = basename(file);
+    if (request.kind !== 'ask') {
+      around.stdout(
+        `${request.kind === 'data' ? readText(table.report, name).join('\n') : understanding!.understood}\n`,
+      );
+      return;
+    }
+    const answer = await answerQuestion(table, withOptions(request, options), {
+      subject: name,
+      picture: options.picture !== undefined,
+      clock: around.clock,
+      readMs,
+    });
+    if (options.picture !== undefined) await writeOutput('--picture', options.picture, answer.picture!.png);
+    if (options.points !== undefined) await writeOutput('--points', options.points, pointsCsv(answer));
+    if (options.json)
+      around.stdout(
+        `${JSON.stringify({ ...contractJson(answer), understood: understanding?.understood ?? null, notUnderstood: understanding?.notUnderstood ?? [] })}\n`,
+      );
+    else around.stdout(answerText(answer, name, understanding ? understandingLines(understanding) : []));
+  } finally {
+    await engine.close();
+  }
+}
+
+/** Options win over words: they are exact. */
+function withOptions(question: Question, options: CliOptions): Question {
+  return {
+    ...question,
+    ...(options.tenure ? { tenure: options.tenure } : {}),
+    ...(options.subgroupSize === undefined ? {} : { subgroupSize: options.subgroupSize }),
+    ...(options.baseline === undefined ? {} : { baseline: options.baseline }),
+    ...(options.segment ? { segment: options.segment } : {}),
+    ...(options.asOf === undefined ? {} : { asOf: options.asOf }),
+  };
+}
+
+async function understandWords(text: string, report: ReadReport): Promise<Understanding> {
+  const { understand } = await import('../requests/understand.ts');
+  return understand(text, {
+    today: report.asOf,
+    asOf: report.asOf,
+    segments: report.segments.map((entry) => entry.value),
+    ...(report.columns.segment === undefined ? {} : { segmentColumn: report.columns.segment }),
+  });
+}
+
+function understandingLines({ understood, notUnderstood }: Understanding): string[] {
+  return [
+    `I understood: ${understood}`,
+    ...notUnderstood.map(({ text, nearest }) => `I did not understand "${text}". ${nearest}`),
+  ];
+}

@@ -1,0 +1,69 @@
+import type { Answer } from '../answers/types.ts';
+import { type Day, isoDay } from '../days.ts';
+
+const iso = (day: Day | null | undefined): string | null => (day === null || day === undefined ? null : isoDay(day));
+
+/** The answer as the one JSON object other programs read; its names stay as they are. Rates are fractions, dates ISO 8601 days. */
+export function contractJson(answer: Answer): Record<string, unknown> {
+  const { verdict, chart, report, census, timing } = answer;
+  return {
+    verdict: {
+      ...verdict,
+      since: verdict.since ? { ...verdict.since, start: iso(verdict.since.start) } : null,
+      difference: verdict.difference,
+    },
+    chart: {
+      kind: chart?.kind ?? 'p',
+      subgroupSize: chart ? chart.subgroupSize : (census?.request.subgroupSize ?? null),
+      center: chart?.center ?? null,
+      baseline: chart ? chart.baseline : null,
+      points: (chart?.points ?? []).map((point, i) => ({
+        ...point,
+        firstStart: iso(answer.dates[i]?.firstStart),
+        lastStart: iso(answer.dates[i]?.lastStart),
+        asOf: iso(answer.dates[i]?.asOf),
+        restated: false,
+      })),
+      signals: answer.signals,
+    },
+    trust: answer.trust,
+    data: report
+      ? {
+          rows: report.rows,
+          accounts: report.accounts,
+          matured: census?.matured ?? 0,
+          waiting: census?.waiting ?? 0,
+          immature: census?.immature ?? 0,
+          returned: report.returned,
+          mergedRows: report.mergedRows,
+          asOf: iso(census?.request.asOf ?? report.asOf),
+          asOfSource: report.asOfSource,
+          tenure: answer.tenure,
+          nextPointOn: iso(census?.nextPointOn),
+          rejected: report.rejected,
+          columns: report.columns,
+          dates: report.dates,
+          segments: report.segments,
+        }
+      : null,
+    plan: answer.plan,
+    timing,
+  };
+}
+
+const POINT_COLUMNS = ['index', 'accounts', 'lost', 'value', 'sigma', 'lower', 'upper'] as const;
+
+/** The points as CSV, one line each, for a spreadsheet. */
+export function pointsCsv(answer: Answer): string {
+  const header = [...POINT_COLUMNS, 'firstStart', 'lastStart', 'asOf'].join(',');
+  const rows = (answer.chart?.points ?? []).map((point, i) => {
+    const dates = answer.dates[i];
+    return [
+      ...POINT_COLUMNS.map((name) => point[name]),
+      iso(dates?.firstStart) ?? '',
+      iso(dates?.lastStart) ?? '',
+      iso(dates?.asOf) ?? '',
+    ].join(',');
+  });
+  return `${[header, ...rows].join('\n')}\n`;
+}

@@ -1,0 +1,95 @@
+import { readFileSync } from 'node:fs';
+import { EbbError } from '../errors.ts';
+import { type CliOptions, readArguments } from './arguments.ts';
+
+export interface CliSurroundings {
+  readonly stdout: (text: string) => void;
+  readonly stderr: (text: string) => void;
+  /** milliseconds, for timing only */
+  readonly clock: () => number;
+  /** whether somebody is watching standard error */
+  readonly progressWanted: boolean;
+}
+
+const HELP = `Ebbline: has churn moved?
+
+  ebb ask FILE [words of the question ...]   read an export and answer
+  ebb chart --counts "12,15,8" --sizes 50    chart ready counts
+
+Options
+  --as-of YYYY-MM-DD         last day the data is complete for
+  --tenure "3 months"        age at which churn is read
+  --subgroup-size N          accounts a point
+  --baseline K               points that set the usual level
+  --segment COLUMN=VALUE     only these accounts
+  --columns start=COL,end=COL,id=COL,segment=COL,amount=COL
+  --dates iso|dmy|mdy        how dates are written
+  --picture OUT.png          draw the chart
+  --points OUT.csv           write the points
+  --json                     one JSON object on standard output
+
+A figure from here says that something changed, not why. For pay, forecasts,
+investors or auditors, your company's own written definitions and its finance
+and legal people decide.
+`;
+
+/**
+ * Runs one command.
+ * @returns the exit code: 0 answered, 2 the request or the file can't be used, 1 a fault of ours
+ */
+export async function runCli(args: readonly string[], around: CliSurroundings): Promise<number> {
+  const json = args.includes('--json');
+  try {
+    const [command, ...rest] = args;
+    if (command === undefined || command === 'help' || command === '--help' || command === '-h') {
+      around.stdout(HELP);
+      return 0;
+    }
+    if (command === '--version') {
+      around.stdout(`${version()}\n`);
+      return 0;
+    }
+    if (command !== 'ask' && command !== 'chart') {
+      throw new EbbError(
+        'COMMAND_UNKNOWN',
+        `there is no command "${command}"`,
+        'The commands are ask and chart; ebb --help shows how.',
+      );
+    }
+    const options: CliOptions = readArguments(rest);
+    if (options.help) {
+      around.stdout(HELP);
+      return 0;
+    }
+    const run =
+      command === 'ask'
+        ? (await import('./askCommand.ts')).askCommand
+        : (await import('./chartCommand.ts')).chartCommand;
+    await run(options, around);
+    return 0;
+  } catch (error) {
+    return report(error, json, around);
+  }
+}
+
+function report(error: unknown, json: boolean, around: CliSurroundings): number {
+  if (error instanceof EbbError) {
+    around.stderr(`${error.message}\n${error.hint}\n`);
+    if (json)
+      around.stdout(`${JSON.stringify({ error: { code: error.code, message: error.message, hint: error.hint } })}\n`);
+    return error.kind === 'bug' ? 1 : 2;
+  }
+  const text = error instanceof Error ? (error.stack ?? error.message) : String(error);
+  around.stderr(`Something went wrong inside Ebbline; this is a fault of ours, not of your file.\n${text}\n`);
+  if (json) {
+    around.stdout(
+      `${JSON.stringify({ error: { code: 'UNEXPECTED', message: 'something went wrong inside Ebbline', hint: 'Standard error holds the details; please report them.' } })}\n`,
+    );
+  }
+  return 1;
+}
+
+function version(): string {
+  const text = readFileSync(new URL('../../package.json', import.meta.url), 'utf8');
+  return (JSON.parse(text) as { version: string }).version;
+}

@@ -1,0 +1,27 @@
+import type { Day } from '../days.ts';
+import type { PointDates } from './types.ts';
+
+/** What the words need to know besides the chart: whose accounts, read at which age, and what is still to come. */
+export interface VerdictContext {
+  /** "3 months", or null for ready counts, whose meaning only their owner knows */
+  readonly tenure: string | null;
+  readonly dates: readonly PointDates[];
+  /** accounts in a full subgroup; null for ready counts of unequal size */
+  readonly subgroupSize: number | null;
+  readonly accounts: number;
+  readonly matured: number;
+  readonly waiting: number;
+  readonly immature: number;
+  readonly nextPointOn: Day | null;
+  /** matured accounts a week; 0 when unknown */
+  readonly inflowPerWeek: number;
+  readonly asOf: Day | null;
+  /** true when the data-through date was inferred and not given */
+  readonly asOfInferred: boolean;
+  /** name of the segment column, and the value looked at when the question named one */
+  readonly segmentColumn: string | null;
+  readonly segment: string | null;
+  readonly segmentValues: readonly string[];
+  /** cautions that reading the file gave rise to */
+  readonly readCautions: readonly string[];
+}

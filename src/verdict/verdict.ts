@@ -1,0 +1,116 @@
+import { newcombeInterval } from '../charts/intervals/newcombe.ts';
+import { wilsonInterval } from '../charts/intervals/wilson.ts';
+import type { Chart, SubgroupCount } from '../charts/types.ts';
+import type { VerdictContext } from './context.ts';
+import type { Finding, Judgement } from './judgement.ts';
+import type { Outcome, PooledRate, Since, Verdict } from './types.ts';
+import { cautions } from './words/cautions.ts';
+import { countSentence, signalSentence, sizeSentences, trustSentences } from './words/evidence.ts';
+import { headline } from './words/headline.ts';
+import { nextSteps } from './words/next.ts';
+
+const OUTCOME: Readonly<Record<Finding, Outcome>> = {
+  risen: 'risen',
+  fallen: 'fallen',
+  steady: 'steady',
+  'mix-change': 'steady',
+  'mix-unclear': 'cannot-say',
+  'unsteady-baseline': 'cannot-say',
+  'no-level': 'cannot-say',
+  'too-few-points': 'too-early',
+};
+
+/**
+ * Puts a judgement into a verdict with its words.
+ * @param chart  null when there is not one full subgroup
+ */
+export function writeVerdict(chart: Chart | null, judgement: Judgement, context: VerdictContext): Verdict {
+  const start = judgement.start;
+  const since: Since | null =
+    start && chart
+      ? {
+          point: start.first,
+          start: context.dates[start.first - 1]?.firstStart ?? null,
+          candidates: start.candidates,
+        }
+      : null;
+  const sides = chart && start ? sidesOf(chart, start.first) : null;
+  const before = sides ? pooledRate(sides.before) : null;
+  const after = sides ? pooledRate(sides.after) : null;
+  const difference = sides ? newcombeInterval(sides.after, sides.before) : null;
+  const moved = judgement.finding === 'risen' || judgement.finding === 'fallen';
+
+  const shiftSignals = judgement.signals.filter((signal) => signal.speaks === 'shift');
+  const standing = shiftSignals.filter((signal) => signal.state === 'standing');
+  const watching = shiftSignals.filter((signal) => signal.state === 'watching');
+  const judgedFrom = chart && chart.baseline.last < chart.points.length ? chart.baseline.last : 0;
+  const passed = shiftSignals.filter((signal) => signal.state === 'passed' && signal.point > judgedFrom);
+
+  const evidence: string[] = [
+    ...standing.map((signal) => signalSentence(signal, context)),
+    ...(moved ? sizeSentences({ before, after, difference }) : []),
+    ...(judgement.finding === 'mix-change' || judgement.finding === 'mix-unclear' ? mixSentences(judgement) : []),
+    ...watching.map(
+      (signal) =>
+        `To watch: ${signalSentence(signal, context)} On the whole the newest points do not yet differ enough from the usual level.`,
+    ),
+    ...passed.map((signal) => `Passed: ${signalSentence(signal, context)} The points since then do not bear it out.`),
+    ...trustSentences(judgement, context, judgement.finding === 'steady'),
+    ...(chart ? [countSentence(chart.points.length, context)] : []),
+  ];
+
+  return {
+    outcome: OUTCOME[judgement.finding],
+    headline: headline(judgement, context, {
+      since,
+      before,
+      after,
+      center: chart?.center ?? null,
+    }),
+    evidence,
+    cautions: cautions(chart, judgement, context),
+    next: nextSteps(judgement, context, since),
+    since: moved ? since : null,
+    before,
+    after,
+    difference,
+  };
+}
+
+/** Counts before and after the move: the baseline, or on trial limits everything before the start; and everything from the start on. */
+function sidesOf(chart: Chart, first: number): { before: SubgroupCount; after: SubgroupCount } {
+  const beforeLast = Math.min(chart.baseline.last, first - 1);
+  const pool = (from: number, to: number): SubgroupCount => {
+    let accounts = 0;
+    let lost = 0;
+    for (const point of chart.points) {
+      if (point.index < from || point.index > to || chart.baseline.excluded.includes(point.index)) continue;
+      accounts += point.accounts;
+      lost += point.lost;
+    }
+    return { accounts, lost };
+  };
+  return {
+    before: pool(1, beforeLast),
+    after: pool(first, chart.points.length),
+  };
+}
+
+function pooledRate(count: SubgroupCount): PooledRate {
+  const { estimate, low, high } = wilsonInterval(count.lost, count.accounts);
+  return {
+    rate: estimate,
+    low,
+    high,
+    lost: count.lost,
+    accounts: count.accounts,
+  };
+}
+
+function mixSentences(judgement: Judgement): string[] {
+  const { pooledDifference, within } = judgement.mix!;
+  const points = (x: number): string => `${x < 0 ? '−' : '+'}${Math.abs(x * 100).toFixed(1)}`;
+  return [
+    `The overall rate changed by ${points(pooledDifference)} percentage points; comparing each group with itself leaves ${points(within.difference)}.`,
+  ];
+}

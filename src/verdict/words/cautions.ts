@@ -1,0 +1,74 @@
+import type { Chart } from '../../charts/types.ts';
+import { dayInWords } from '../../days.ts';
+import type { VerdictContext } from '../context.ts';
+import type { Judgement } from '../judgement.ts';
+import { counted, listed, numberWord } from './format.ts';
+import { cutAdvice } from './testWords.ts';
+
+/** The limits of the answer, most particular first, the usual caution last. */
+export function cautions(chart: Chart | null, judgement: Judgement, context: VerdictContext): string[] {
+  const list: string[] = [];
+  if (chart) {
+    if (judgement.finding !== 'too-few-points' && chart.baseline.provisional) {
+      list.push(
+        `The usual level is provisional: it rests on ${counted(chart.baseline.last - chart.baseline.excluded.length, 'point')}, and 25 make it firm.`,
+      );
+    } else if (judgement.finding !== 'too-few-points' && chart.baseline.last >= chart.points.length) {
+      list.push('Every point helped to set the usual level, so a move had to stand out from its own effect on it.');
+    }
+    if (judgement.dispersion && judgement.dispersion.pValue < 0.01 && judgement.finding !== 'unsteady-baseline') {
+      list.push(
+        `The points vary about ${judgement.dispersion.ratio.toFixed(1)} times as much as chance alone would make them (overdispersion), so flags are raised too easily; the verdict asks for that much more evidence.`,
+      );
+    }
+    const deaf = deafDownward(chart);
+    if (deaf && judgement.finding !== 'no-level') list.push(deaf);
+  }
+  if (judgement.mix && judgement.finding === 'steady') {
+    list.push(
+      `While the usual level was set, the mix of groups moved: ${judgement.mix.largest.segment} changed its share. Look at one group at a time to be sure.`,
+    );
+  }
+  if (
+    judgement.segmentsDiffer &&
+    judgement.segmentsDiffer.pValue < 0.01 &&
+    judgement.finding !== 'mix-change' &&
+    judgement.finding !== 'mix-unclear' &&
+    context.segmentColumn !== null
+  ) {
+    list.push(
+      `Groups in "${context.segmentColumn}" differ in churn (${listed(context.segmentValues.slice(0, 4))}${context.segmentValues.length > 4 ? ' …' : ''}) and are charted together here; a group can move unseen. Ask about one of them to be sure.`,
+    );
+  }
+  for (const signal of judgement.signals) {
+    if (signal.speaks !== 'cut' || signal.state !== 'watching') continue;
+    list.push(`About how the data is cut: ${signal.words}; ${cutAdvice(signal.test as 4 | 7 | 8)}.`);
+  }
+  list.push(...context.readCautions);
+  if (context.asOf !== null && context.asOfInferred) {
+    list.push(
+      `The data is taken to be complete through ${dayInWords(context.asOf)}, the latest date in the file. If it is not, correct it: a wrong date makes young accounts look settled.`,
+    );
+  }
+  if (judgement.finding === 'risen' || judgement.finding === 'fallen') {
+    list.push('This says that something changed, not why; a before and after is no proof that any one action did it.');
+  }
+  list.push(
+    'For pay, forecasts, investors or auditors, your company’s own written definitions and its finance and legal people decide.',
+  );
+  return list;
+}
+
+/** Which flags cannot be raised by a low point, because the limit would lie below zero. */
+function deafDownward(chart: Chart): string | null {
+  const sigma = Math.max(...chart.points.map((point) => point.sigma));
+  const reach = [1, 2, 3].filter((k) => chart.center - k * sigma <= 0);
+  if (reach.length === 0) return null;
+  const deaf =
+    reach.length === 3
+      ? 'no low point can raise a flag alone, nor two or four together'
+      : reach.length === 2
+        ? 'a single low point, or two of three, can never raise a flag'
+        : 'a single low point can never raise a flag, even one without any loss';
+  return `With points this small, chance alone can bring a point down to zero: ${deaf}. A fall shows only as ${numberWord(9)} low points in a row${reach.length < 3 ? ' or several of five' : ''}, or six each lower than the last.`;
+}

@@ -1,0 +1,80 @@
+import { dayInWords } from '../../days.ts';
+import type { VerdictContext } from '../context.ts';
+import type { Judgement } from '../judgement.ts';
+import type { PooledRate, Signal, Verdict } from '../types.ts';
+import { capitalised, count, counted, percent, percentagePoints } from './format.ts';
+
+/** "points 31 to 39 (accounts that started 12 March to 9 June 2025)". */
+export function stretch(first: number, last: number, context: VerdictContext): string {
+  const points = first === last ? `point ${first}` : `points ${first} to ${last}`;
+  const from = context.dates[first - 1]?.firstStart ?? null;
+  const to = context.dates[last - 1]?.lastStart ?? null;
+  if (from === null || to === null) return points;
+  return `${points}, accounts that started ${dayInWords(from)} to ${dayInWords(to)}`;
+}
+
+export function signalSentence(signal: Signal, context: VerdictContext): string {
+  return `${capitalised(signal.words)} (${stretch(signal.members[0], signal.until, context)}).`;
+}
+
+/** Pooled rate with its interval: "4.1 % (41 of 1,000; 3.0 % to 5.5 %)". */
+export function pooled(rate: PooledRate): string {
+  return `${percent(rate.rate)} (${count(rate.lost)} of ${counted(rate.accounts, 'account')}; 95 % interval ${percent(rate.low)} to ${percent(rate.high)})`;
+}
+
+/** How big a move was, with its uncertainty and the reason to say "about". */
+export function sizeSentences(verdict: Pick<Verdict, 'before' | 'after' | 'difference'>): string[] {
+  const { before, after, difference } = verdict;
+  if (!before || !after || !difference) return [];
+  return [
+    `Before: ${pooled(before)}. Since then: ${pooled(after)}.`,
+    `The difference is about ${percentagePoints(difference.estimate)} percentage points (95 % interval ${percentagePoints(difference.low)} to ${percentagePoints(difference.high)}). It was noticed because it stood out, so the lasting change may be somewhat smaller.`,
+  ];
+}
+
+/** What could have been missed, and how often a chart like this cries wolf. */
+export function trustSentences(judgement: Judgement, context: VerdictContext, quiet: boolean): string[] {
+  const { trust } = judgement;
+  const sentences: string[] = [];
+  if (quiet && trust.wouldSee) {
+    const from = context.dates[judgement.wouldSeeFrom - 1]?.firstStart ?? null;
+    const since =
+      from === null ? `from point ${judgement.wouldSeeFrom} on` : `among accounts starting from ${dayInWords(from)} on`;
+    const { rise, fall, chance } = trust.wouldSee;
+    const parts = [
+      rise === null ? null : `a lasting rise to ${percent(rise)} or more`,
+      fall === null ? null : `a lasting fall to ${percent(fall)} or less`,
+    ].filter((part) => part !== null);
+    sentences.push(
+      parts.length > 0
+        ? `What could have been missed: ${parts.join(', or ')}, ${since}, would by now have been reported with ${Math.round(chance * 100)} % chance; anything smaller could be there unseen.`
+        : 'What could have been missed: at this size not even a large move would be likely to have been reported by now.',
+    );
+    if (parts.length === 1 && fall === null) {
+      sentences.push('With points this small, a fall of any size could have been missed.');
+    }
+  }
+  if (trust.falseAlarmEvery !== null) {
+    const chance =
+      trust.falseVerdictChance === null
+        ? ''
+        : `, and a chart of this length reads as moved in about ${Math.max(1, Math.round(trust.falseVerdictChance * 100))} of 100 cases`;
+    sentences.push(
+      `With nothing changed, this chart raises a false flag about once in ${count(trust.falseAlarmEvery)} points${chance}.`,
+    );
+  }
+  return sentences;
+}
+
+/** The denominators: nobody should have to ask "of how many?". */
+export function countSentence(points: number, context: VerdictContext): string {
+  const { tenure, subgroupSize } = context;
+  if (tenure === null) return `${counted(points, 'point')}, ${counted(context.accounts, 'case')} in all.`;
+  const size = subgroupSize === null ? '' : ` of ${counted(subgroupSize, 'account')} each`;
+  const rest = [
+    `${counted(points, 'point')}${size}`,
+    context.waiting > 0 ? `${count(context.waiting)} waiting for the next point` : null,
+    context.immature > 0 ? `${count(context.immature)} not yet customers for ${tenure} and so not counted` : null,
+  ].filter((part) => part !== null);
+  return `Counted in order of start: ${rest.join('; ')}.`;
+}
