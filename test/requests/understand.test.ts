@@ -1,0 +1,211 @@
+import fc from 'fast-check';
+import { describe, expect, it } from 'vitest';
+import { dayFromIso } from '../../src/days.ts';
+import { putIntoWords } from '../../src/requests/putIntoWords.ts';
+import type { Question, RequestContext } from '../../src/requests/types.ts';
+import { understand } from '../../src/requests/understand.ts';
+
+const day = (iso: string): number => dayFromIso(iso)!;
+const context: RequestContext = {
+  today: day('2026-07-12'),
+  segments: ['Windowsill', 'Allotment', 'Orchard'],
+  segmentColumn: 'plan',
+  asOf: day('2026-06-30'),
+};
+const asks = (text: string, extra: Partial<RequestContext> = {}): unknown => {
+  const found = understand(text, { ...context, ...extra });
+  expect(found.notUnderstood, text).toEqual([]);
+  return found.request;
+};
+const months = (count: number) => ({ count, unit: 'month' as const });
+
+describe('a question in plain words', () => {
+  it.each([
+    ['has churn moved', {}],
+    ['churn?', {}],
+    ['', {}],
+    ['did we lose more Orchard customers', { segment: { value: 'Orchard' } }],
+    ['is churn up at 90 days', { tenure: { count: 90, unit: 'day' } }],
+    [
+      'has churn moved at 6 months for the allotment plan since March?',
+      { tenure: months(6), segment: { value: 'Allotment' }, since: day('2026-03-01') },
+    ],
+    ['Are we losing more customers at half a year?', { tenure: months(6) }],
+    ['churn at a quarter', { tenure: months(3) }],
+    ['is churn down after a year', { tenure: months(12) }],
+    ['6-month churn for orchards', { tenure: months(6), segment: { value: 'Orchard' } }],
+    ['90d churn', { tenure: { count: 90, unit: 'day' } }],
+    ['churn by month three', { tenure: months(3) }],
+    ['has churn moved in subgroups of 120', { subgroupSize: 120 }],
+    ['churn with n=1,200', { subgroupSize: 1200 }],
+    ['churn, 80 accounts per point', { subgroupSize: 80 }],
+    ['has churn moved, baseline 30', { baseline: 30 }],
+    ['has churn moved, with the usual level from the first 30 points', { baseline: 30 }],
+    ['has churn moved as of 30 June 2025', { asOf: day('2025-06-30') }],
+    ['has churn moved with data through June 2025', { asOf: day('2025-06-30') }],
+    ['has churn moved, export complete to 2025-06-30', { asOf: day('2025-06-30') }],
+    ['has churn moved since the start of 2025', { since: day('2025-01-01') }],
+    ['has churn moved since Q2 2025', { since: day('2025-04-01') }],
+    ['has churn moved since June 3rd, 2025', { since: day('2025-06-03') }],
+    ['has churn moved since 30 June', { since: day('2026-06-30') }],
+    ['has churn moved since 30.06.2025', { since: day('2025-06-30') }],
+    ['is churn worse for accounts starting in March', { since: day('2026-03-01') }],
+    ['has churn moved, allowing 14 days for late cancellations', { settleDays: 14 }],
+    ['has churn moved since two weeks ago', { since: day('2026-06-16') }],
+    ['churn for the orchrad plan', { segment: { value: 'Orchard' } }],
+    ['churn for the windowsil', { segment: { value: 'Windowsill' } }],
+    ['where plan is Orchard', { segment: { column: 'plan', value: 'Orchard' } }],
+  ])('%s', (text, wanted) => {
+    expect(asks(text)).toEqual({ kind: 'ask', ...wanted });
+  });
+
+  it('takes "since March" for the last March before the data ends, not before today', () => {
+    expect(asks('has churn moved since March', { asOf: day('2026-02-10') })).toMatchObject({
+      since: day('2025-03-01'),
+    });
+    expect(asks('has churn moved since March as of 1 February 2025')).toMatchObject({ since: day('2024-03-01') });
+  });
+
+  it('reads a contract length as the plan where the data has such a plan, and says so where it has not', () => {
+    const plans = ['Annual', 'Monthly', '3 months'];
+    expect(asks('churn for the annual plan', { segments: plans })).toMatchObject({ segment: { value: 'Annual' } });
+    expect(asks('churn for yearly customers', { segments: plans })).toMatchObject({ segment: { value: 'Annual' } });
+    expect(asks('churn at 6 months for the 3 months plan', { segments: plans })).toEqual({
+      kind: 'ask',
+      tenure: months(6),
+      segment: { value: '3 months' },
+    });
+    const without = understand('churn for the annual plan', context);
+    expect(without.notUnderstood).toEqual([
+      { text: 'for the annual', nearest: expect.stringContaining('Windowsill, Allotment, Orchard') },
+    ]);
+  });
+
+  it('finds a plan by one of its words when no other plan holds that word', () => {
+    expect(asks('churn for orchard', { segments: ['Orchard (old price)', 'Allotment'] })).toMatchObject({
+      segment: { value: 'Orchard (old price)' },
+    });
+    const two = understand('churn for orchard', { ...context, segments: ['Orchard (old)', 'Orchard (new)'] });
+    expect(two.request).toEqual({ kind: 'ask' });
+    expect(two.notUnderstood).toHaveLength(1);
+  });
+});
+
+describe('other requests', () => {
+  it.each(['help', 'Help!', 'what can you do?', 'how do I use this'])('%s asks for help', (text) => {
+    expect(understand(text, context).request).toEqual({ kind: 'help' });
+  });
+  it.each(['data', 'what did you read', 'what did you read?', 'show me the data', 'which columns', 'what was read?'])(
+    '%s asks what was read',
+    (text) => {
+      expect(understand(text, context).request).toEqual({ kind: 'data' });
+    },
+  );
+  it.each(['thank you!', 'why?', 'bananas'])(
+    '"%s" alone asks nothing about churn and gets help, not a verdict',
+    (text) => {
+      expect(understand(text, context).request.kind).toBe('help');
+    },
+  );
+});
+
+describe('words that find no use', () => {
+  it.each([
+    ['has churn moved by country', 'by country', /one plan at a time: Windowsill, Allotment, Orchard/],
+    ['why did churn rise', 'why', /not why/],
+    ['forecast churn', 'forecast', /do not forecast/],
+    ['who churned', 'who', /never name/],
+    ['has churn moved over the last 6 months', 'over the last 6 months', /since 1 March/],
+    ['has revenue churn moved', 'revenue', /not money/],
+    ['has churn moved since 03/04/2025', 'since 03/04/2025', /two ways/],
+    ['churn in subgroups of 1', 'subgroups of 1', /at least 2/],
+    ['churn at 3 months and 6 months', '6 months', /one age at a time/],
+    ['churn of bananas', 'of bananas', /whether churn has moved/],
+  ])('%s: reports "%s" with the nearest thing it can do', (text, piece, nearest) => {
+    const found = understand(text, context);
+    expect(found.notUnderstood.map((one) => one.text)).toEqual([piece]);
+    expect(found.notUnderstood[0]!.nearest).toMatch(nearest);
+  });
+
+  it('says that there are no groups when the export has none', () => {
+    const found = understand('has churn moved by country', { ...context, segments: [] });
+    expect(found.notUnderstood[0]!.nearest).toMatch(/no column that tells groups apart/);
+  });
+
+  it('uses the first of two groups and reports the other', () => {
+    const found = understand('has churn moved for Orchard and Allotment', context);
+    expect(found.request).toEqual({ kind: 'ask', segment: { value: 'Orchard' } });
+    expect(found.notUnderstood.map((one) => one.text)).toEqual(['Allotment']);
+  });
+});
+
+describe('put back into words', () => {
+  it('reads as a sentence', () => {
+    const request: Question = {
+      kind: 'ask',
+      tenure: months(6),
+      segment: { value: 'Orchard' },
+      since: day('2025-03-01'),
+    };
+    expect(putIntoWords(request)).toBe(
+      'has churn at 6 months moved for “Orchard”, among accounts that started since 1 March 2025?',
+    );
+  });
+
+  const text = fc
+    .string({ minLength: 1, maxLength: 20, unit: 'grapheme' })
+    .filter((value) => value.trim() !== '' && !/[\uE000-\uF8FF]/.test(value));
+  const days = fc.integer({ min: 0, max: 80_000 });
+  const segments = fc.uniqueArray(
+    fc.oneof(text, fc.constantFrom('since March', '6 months', 'Orchard', 'baseline 30', 'a “quoted” one')),
+    { minLength: 1, maxLength: 6, selector: (value) => value.toLowerCase() },
+  );
+  const question = segments.chain((values) =>
+    fc.record({
+      values: fc.constant(values),
+      request: fc.record(
+        {
+          kind: fc.constant('ask' as const),
+          tenure: fc.record({
+            count: fc.integer({ min: 1, max: 999 }),
+            unit: fc.constantFrom('day' as const, 'week' as const, 'month' as const),
+          }),
+          subgroupSize: fc.integer({ min: 2, max: 100_000 }),
+          baseline: fc.integer({ min: 2, max: 500 }),
+          settleDays: fc.integer({ min: 0, max: 400 }),
+          segment: fc.record(
+            { value: fc.constantFrom(...values), column: fc.constant('plan name') },
+            { requiredKeys: ['value'] },
+          ),
+          since: days,
+          asOf: days,
+        },
+        { requiredKeys: ['kind'] },
+      ),
+    }),
+  );
+
+  it('any request survives being put into words and understood again', () => {
+    fc.assert(
+      fc.property(question, ({ values, request }) => {
+        const again = understand(putIntoWords(request), { ...context, segments: values, segmentColumn: 'plan name' });
+        expect(again.request).toEqual(request);
+        expect(again.notUnderstood).toEqual([]);
+      }),
+      { numRuns: 500 },
+    );
+  });
+
+  it('help and data survive too', () => {
+    for (const kind of ['help', 'data'] as const)
+      expect(understand(putIntoWords({ kind }), context).request).toEqual({ kind });
+  });
+
+  it('never throws, whatever is typed', () => {
+    fc.assert(
+      fc.property(fc.string({ maxLength: 200, unit: 'binary' }), (typed) => {
+        expect(understand(typed, context).understood).not.toBe('');
+      }),
+    );
+  });
+});
