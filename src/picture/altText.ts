@@ -43,9 +43,11 @@ function sentences(input: PictureInput): string[] {
   } else said.push('There is no point to draw yet');
   const marked = stretches(input.signals);
   for (const stretch of marked.slice(0, 3)) {
-    const state = { standing: 'Marked as standing', watching: 'Marked as one to watch', passed: 'Marked as passed' }[
-      stretch.state
-    ];
+    const state = {
+      standing: 'Marked as standing',
+      watching: 'Marked as one to watch',
+      passed: 'Marked as passed',
+    }[stretch.state];
     const where = stretch.from === stretch.to ? `point ${stretch.from}` : `points ${stretch.from} to ${stretch.to}`;
     said.push(`${state}, ${where}: ${stretch.words}`);
   }

@@ -31,7 +31,16 @@ export function collectionScene(input: PictureInput): Scene {
   const say = (text: string, size: number, weight: 400 | 700, color: string): void => {
     for (const line of wrapText(drawable(text), right - left, size, weight)) {
       y += size * LINE;
-      texts.push({ text: line, x: left, y: y - size * 0.25, size, weight, color, align: 'left', role: 'collection' });
+      texts.push({
+        text: line,
+        x: left,
+        y: y - size * 0.25,
+        size,
+        weight,
+        color,
+        align: 'left',
+        role: 'collection',
+      });
     }
   };
   const { waiting } = input;
@@ -44,15 +53,29 @@ export function collectionScene(input: PictureInput): Scene {
     if (share > 0) slabs.push({ x: left, y: top, x2: level, y2: bottom, color: WATER_DEEP });
     for (let i = 1; i < 10; i++) {
       const x = left + (i / 10) * (right - left);
-      under.push({ x, y: bottom - (i === 5 ? 26 : 15), x2: x, y2: bottom, color: WATER_EDGE, width: 2 });
+      under.push({
+        x,
+        y: bottom - (i === 5 ? 26 : 15),
+        x2: x,
+        y2: bottom,
+        color: WATER_EDGE,
+        width: 2,
+      });
     }
-    under.push({ x: level, y: top - 8, x2: level, y2: bottom + 8, color: LEVEL, width: 4 });
+    under.push({
+      x: level,
+      y: top - 8,
+      x2: level,
+      y2: bottom + 8,
+      color: LEVEL,
+      width: 4,
+    });
     y = bottom + 14;
     say(`${grouped(waiting.accounts)} of ${countOf(waiting.of, 'account')} for the first point so far`, 26, 700, INK);
     say(
       waiting.on === null
         ? 'Not enough accounts have started yet to fill it.'
-        : `It is due about ${heldDate(waiting.on)}.`,
+        : `The first point is due about ${heldDate(waiting.on)}.`,
       TEXT_SIZE + 2,
       400,
       INK,
@@ -67,13 +90,21 @@ export function collectionScene(input: PictureInput): Scene {
   if (young) say(`${young}.`, TEXT_SIZE + 2, 400, INK);
   y += 6;
   for (const step of input.verdict.next.slice(0, 2)) say(step, TEXT_SIZE, 400, QUIET);
-  const below = notes(input, [], y + 8, 0);
-  const frame: Frame = { left, right, top: y, bottom: y + 1, xDomain: [0, 1], yDomain: [0, 1] };
+  const below = notes(input, [], y + 8, '');
+  const frame: Frame = {
+    left,
+    right,
+    top: y,
+    bottom: y + 1,
+    xDomain: [0, 1],
+    yDomain: [0, 1],
+  };
   return {
     widthPx: WIDTH,
     heightPx: Math.ceil(below.bottom + MARGIN - 4),
     frame,
     slabs,
+    veils: [],
     under: [...under, ...head.strokes],
     band: [],
     levels: [],

@@ -26,7 +26,14 @@ export function dateAxis(
   const texts = ticks.flatMap((tick) => labels(tick, frame));
   const strokes = ticks.map((tick) => {
     const x = xAt(frame, tick.index);
-    return { x, y: frame.bottom, x2: x, y2: frame.bottom + 7, color: QUIET, width: 1.5 };
+    return {
+      x,
+      y: frame.bottom,
+      x2: x,
+      y2: frame.bottom + 7,
+      color: QUIET,
+      width: 1.5,
+    };
   });
   const rows = Math.max(1, ...ticks.map((tick) => tick.lines.length));
   return { texts, strokes, bottom: top + rows * 24 };
@@ -61,7 +68,10 @@ function pickTicks(count: number, dates: readonly PointDates[], frame: Frame): T
       bucket = Math.floor(monthNumber(day) / step);
       const newYear = yearOf(day) !== year ? String(yearOf(day)) : '';
       year = yearOf(day);
-      ticks.push({ index: i + 1, lines: step >= 12 ? [newYear] : [monthShort(day), newYear] });
+      ticks.push({
+        index: i + 1,
+        lines: step >= 12 ? [newYear] : [monthShort(day), newYear],
+      });
     }
     if (ticks.length < 3 && count > 3) break;
     if (fits(ticks, frame)) return ticks;

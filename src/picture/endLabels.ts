@@ -1,7 +1,7 @@
 import type { PictureInput } from '../verdict/types.ts';
 import { percent } from './figures.ts';
 import { EMBER, INK, LEVEL, TEXT_SIZE, WATER_EDGE } from './palette.ts';
-import { type Frame, type PlacedText, type Stroke, yAt } from './scene.ts';
+import { type Frame, type PlacedText, type Stroke, xAt, yAt } from './scene.ts';
 import { textWidth } from './textWidth.ts';
 
 interface EndLabel {
@@ -66,7 +66,11 @@ export function endLabelsWidth(labels: readonly EndLabel[]): number {
  * Sets the labels at the height of their lines, pushed apart as little as needed so that none touches another, with a thin line
  * back to the end of what each one names.
  */
-export function placeEndLabels(labels: readonly EndLabel[], frame: Frame): { texts: PlacedText[]; strokes: Stroke[] } {
+export function placeEndLabels(
+  labels: readonly EndLabel[],
+  points: number,
+  frame: Frame,
+): { texts: PlacedText[]; strokes: Stroke[] } {
   const sorted = [...labels].sort((a, b) => b.value - a.value);
   const heights = sorted.map((label) => label.lines.length * ROW);
   const tops = sorted.map((label, i) => yAt(frame, label.value) - (heights[i] ?? 0) / 2);
@@ -96,9 +100,21 @@ export function placeEndLabels(labels: readonly EndLabel[], frame: Frame): { tex
         align: 'left',
         role: label.role,
       });
+    const y = yAt(frame, label.value);
+    const end = xAt(frame, points + 0.5) + 2;
+    if (end < frame.right)
+      strokes.push({
+        x: end,
+        y,
+        x2: frame.right,
+        y2: y,
+        color: label.line,
+        width: 1.4,
+        dash: [2, 4],
+      });
     strokes.push({
       x: frame.right + 1,
-      y: yAt(frame, label.value),
+      y,
       x2: x - 5,
       y2: top + (heights[i] ?? 0) / 2,
       color: label.line,

@@ -12,7 +12,7 @@ export function percentRange(low: number, high: number): string {
 
 function percentDigits(rate: number): string {
   const value = rate * 100;
-  if (value === 0) return '0';
+  if (value === 0 || value === 100) return String(value);
   return value.toFixed(Math.abs(value) < 0.995 ? 2 : 1);
 }
 

@@ -1,5 +1,5 @@
 import type { PictureInput } from '../verdict/types.ts';
-import { heldDate } from './figures.ts';
+import { countOf, heldDate } from './figures.ts';
 import { EMBER, INK, MARGIN, QUIET, TEXT_SIZE, WIDTH } from './palette.ts';
 import { reach } from './plotFrame.ts';
 import { type Frame, type PlacedText, type Stroke, xAt } from './scene.ts';
@@ -12,6 +12,8 @@ const BRACKET = 16;
 
 interface Label {
   readonly rows: readonly { readonly text: string; readonly bold: boolean }[];
+  /** where the middle of the stretch lies; every row sits over it as nearly as the edges allow */
+  readonly middle: number;
   readonly left: number;
   readonly width: number;
   readonly color: string;
@@ -36,10 +38,13 @@ export function beganWords(input: PictureInput): string {
 
 /** The words over a marked stretch: the state in bold, then the flag in words. */
 function stretchWords(stretch: Stretch, input: PictureInput): { lead: string; rest: string } {
-  const more = stretch.flags > 1 ? ` (and ${stretch.flags - 1} more ${stretch.flags === 2 ? 'flag' : 'flags'})` : '';
+  const more = stretch.flags > 1 ? ` (and ${countOf(stretch.flags - 1, 'more flag')})` : '';
   const rest = drawable(`${stretch.words}${more}`);
   if (stretch.state === 'standing') return { lead: beganWords(input) || 'flagged', rest };
-  return { lead: stretch.state === 'watching' ? 'one to watch' : 'flagged, but did not last', rest };
+  return {
+    lead: stretch.state === 'watching' ? 'one to watch' : 'flagged, but did not last',
+    rest,
+  };
 }
 
 /** Plans the words above the plot: the main stretch first, a second one when it fits beside it, the others left to the notes. */
@@ -56,7 +61,11 @@ export function planFlagLane(
     else unlabelled.push(stretch);
   }
   const rows = Math.max(0, ...labels.map((label) => label.rows.length));
-  return { height: all.length === 0 ? 8 : rows * ROW + BRACKET + 8, labels, unlabelled };
+  return {
+    height: all.length === 0 ? 8 : rows * ROW + BRACKET + 8,
+    labels,
+    unlabelled,
+  };
 }
 
 function fitLabel(
@@ -67,17 +76,28 @@ function fitLabel(
 ): Label | null {
   const { lead, rest } = stretchWords(stretch, input);
   const middle = (xAt(x, stretch.from) + xAt(x, stretch.to)) / 2;
-  for (const room of taken ? [300, 240, 190] : [520]) {
+  for (const room of taken ? [300, 240, 190] : [WIDTH - 2 * MARGIN]) {
     const rows = [
-      ...balanceText(lead, room, TEXT_SIZE, 700).map((text) => ({ text, bold: true })),
-      ...balanceText(rest, room, TEXT_SIZE, 400).map((text) => ({ text, bold: false })),
+      ...balanceText(lead, room, TEXT_SIZE, 700).map((text) => ({
+        text,
+        bold: true,
+      })),
+      ...balanceText(rest, Math.min(room, 500), TEXT_SIZE, 400).map((text) => ({
+        text,
+        bold: false,
+      })),
     ];
     const width = Math.max(...rows.map((row) => textWidth(row.text, TEXT_SIZE, row.bold ? 700 : 400)));
     const left = Math.min(Math.max(middle - width / 2, MARGIN), WIDTH - MARGIN - width);
     const clear = !taken || left + width + 22 < taken.left || left > taken.left + taken.width + 22;
-    if (clear && rows.length <= 4) return { rows, left, width, color: stretchColor(stretch) };
+    if (clear && rows.length <= 4) return { rows, middle, left, width, color: stretchColor(stretch) };
   }
   return null;
+}
+
+function centred(label: Label, row: Label['rows'][number]): number {
+  const half = textWidth(row.text, TEXT_SIZE, row.bold ? 700 : 400) / 2;
+  return Math.min(Math.max(label.middle, label.left + half), label.left + label.width - half);
 }
 
 export function stretchColor(stretch: Stretch): string {
@@ -97,16 +117,24 @@ export function placeFlagLane(
     const x2 = xAt(frame, stretch.to) + over;
     const y = frame.top - BRACKET + 4;
     const color = stretchColor(stretch);
-    const dash = stretch.state === 'standing' ? {} : { dash: [5, 4] as const };
+    const dash = stretch.state === 'standing' || x2 - x < 40 ? {} : { dash: [5, 4] as const };
     const width = stretch.state === 'passed' ? 2 : 3;
     strokes.push({ x, y, x2, y2: y, color, width, ...dash });
-    for (const end of [x, x2]) strokes.push({ x: end, y: y - width / 2, x2: end, y2: frame.top - 2, color, width });
+    for (const end of [x, x2])
+      strokes.push({
+        x: end,
+        y: y - width / 2,
+        x2: end,
+        y2: frame.top - 2,
+        color,
+        width,
+      });
   }
   const texts = lane.labels.flatMap((label) =>
     label.rows.map(
       (row, i): PlacedText => ({
         text: row.text,
-        x: label.left + label.width / 2,
+        x: centred(label, row),
         y: frame.top - BRACKET - 6 - (label.rows.length - 1 - i) * ROW,
         size: TEXT_SIZE,
         weight: row.bold ? 700 : 400,

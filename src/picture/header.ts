@@ -3,7 +3,7 @@ import { countOf, grouped, heldDate, percent, percentRange } from './figures.ts'
 import { EMBER, INK, LEAD_SIZE, LEVEL, LINE, MARGIN, QUIET, TEXT_SIZE, TITLE_SIZE, WIDTH } from './palette.ts';
 import type { PlacedText, Stroke } from './scene.ts';
 import { drawable, textWidth } from './textWidth.ts';
-import { wrapText } from './wrapText.ts';
+import { wrapEvenly } from './wrapText.ts';
 
 /** The verdict in a few words. */
 export function shortTitle(input: PictureInput): string {
@@ -41,23 +41,38 @@ export function countedLine(input: PictureInput): string {
  * Title, headline, what is counted and, when churn moved, the level before and since with their marks.
  * @returns the texts, and `bottom`, the px below which the rest may begin
  */
-export function header(input: PictureInput): { texts: PlacedText[]; strokes: Stroke[]; bottom: number } {
+export function header(input: PictureInput): {
+  texts: PlacedText[];
+  strokes: Stroke[];
+  bottom: number;
+} {
   const texts: PlacedText[] = [];
   const strokes: Stroke[] = [];
   const room = WIDTH - 2 * MARGIN;
   let y = MARGIN - 8;
   const block = (text: string, size: number, weight: 400 | 700, color: string, role: string): void => {
-    for (const line of wrapText(drawable(text), room, size, weight)) {
+    for (const line of wrapEvenly(drawable(text), room, size, weight)) {
       y += size * LINE;
-      texts.push({ text: line, x: MARGIN, y: y - size * 0.2, size, weight, color, align: 'left', role });
+      texts.push({
+        text: line,
+        x: MARGIN,
+        y: y - size * 0.2,
+        size,
+        weight,
+        color,
+        align: 'left',
+        role,
+      });
     }
   };
   const moved = input.verdict.outcome === 'risen' || input.verdict.outcome === 'fallen';
   block(shortTitle(input), TITLE_SIZE, 700, moved ? EMBER : INK, 'title');
   y += 4;
-  block(input.verdict.headline, LEAD_SIZE, 400, INK, 'headline');
+  block(afterTitle(input.verdict.headline, shortTitle(input)), LEAD_SIZE, 400, INK, 'headline');
   y += 6;
   block(countedLine(input), TEXT_SIZE, 400, QUIET, 'counted');
+  for (const [i, text] of texts.entries())
+    if (text.role === 'counted') texts[i] = { ...text, text: text.text.replace(/ ·$/, '') };
   const { before, after } = input.verdict;
   if (moved && before && after) {
     y += 12 + TEXT_SIZE * LINE;
@@ -67,12 +82,34 @@ export function header(input: PictureInput): { texts: PlacedText[]; strokes: Str
       ['since', after, EMBER],
     ] as const) {
       const text = `${word} ${word === 'since' ? 'about ' : ''}${percent(level.rate)} (${percentRange(level.low, level.high)})`;
+      const width = 40 + textWidth(text, TEXT_SIZE, 700);
+      if (x > MARGIN && x + width > WIDTH - MARGIN) {
+        x = MARGIN;
+        y += TEXT_SIZE * LINE + 2;
+      }
       strokes.push({ x, y: y - 11, x2: x + 30, y2: y - 11, color, width: 5 });
-      texts.push({ text, x: x + 40, y: y - 4, size: TEXT_SIZE, weight: 700, color, align: 'left', role: 'level' });
-      x += 40 + textWidth(text, TEXT_SIZE, 700) + 34;
+      texts.push({
+        text,
+        x: x + 40,
+        y: y - 4,
+        size: TEXT_SIZE,
+        weight: 700,
+        color,
+        align: 'left',
+        role: 'level',
+      });
+      x += width + 28;
     }
   }
   return { texts, strokes, bottom: y + 6 };
+}
+
+/** The headline without the words the title has just said. */
+function afterTitle(headline: string, title: string): string {
+  const said = headline.replace(/^(yes|no|not really)[,:]\s*/i, '');
+  if (!said.toLowerCase().startsWith(title.toLowerCase())) return headline;
+  const rest = said.slice(title.length);
+  return /^[:.,;]\s+\S/.test(rest) ? capitalised(rest.replace(/^[:.,;]\s+/, '')) : headline;
 }
 
 function capitalised(text: string): string {

@@ -15,6 +15,7 @@ import {
   MARGIN,
   QUIET,
   SAND,
+  SAND_EDGE,
   SAND_INK,
   TEXT_SIZE,
   WIDTH,
@@ -48,15 +49,21 @@ export function layout(input: PictureInput): Scene {
     right: WIDTH - MARGIN - endLabelsWidth(ends) - 24,
     xDomain: range.x,
   };
-  const marked = markedStretches(input, chart);
+  const flagged = stretches(input.signals);
+  const marked = movedStretch(input, chart, flagged);
   const lane = planFlagLane(marked, input, across);
   const top = head.bottom + 14 + lane.height;
-  const frame: Frame = { ...across, top, bottom: top + PLOT_HEIGHT, yDomain: range.y };
+  const frame: Frame = {
+    ...across,
+    top,
+    bottom: top + PLOT_HEIGHT,
+    yDomain: range.y,
+  };
 
   const axis = dateAxis(chart.points.length, input.dates, frame);
-  const below = notes(input, lane.unlabelled, axis.bottom + 12, range.ticks[0] ?? 0);
+  const below = notes(input, lane.unlabelled, axis.bottom + 12, (range.ticks[0] ?? 0) > 0 ? (tickWords[0] ?? '') : '');
   const flags = placeFlagLane(lane, marked, frame);
-  const limits = placeEndLabels(ends, frame);
+  const limits = placeEndLabels(ends, chart.points.length, frame);
   const ground = baselineGround(chart, frame);
   const start = startMark(input, frame);
   const ghost = ghostMark(input, chart, frame);
@@ -76,18 +83,33 @@ export function layout(input: PictureInput): Scene {
   );
   const gridlines = range.ticks.map((tick): Stroke => {
     const y = yAt(frame, tick);
-    return { x: frame.left, y, x2: frame.right, y2: y, color: HAIRLINE, width: 1.2 };
+    return {
+      x: frame.left,
+      y,
+      x2: frame.right,
+      y2: y,
+      color: HAIRLINE,
+      width: 1.2,
+    };
   });
-  const floor: Stroke = { x: frame.left, y: frame.bottom, x2: frame.right, y2: frame.bottom, color: QUIET, width: 1.6 };
+  const floor: Stroke = {
+    x: frame.left,
+    y: frame.bottom,
+    x2: frame.right,
+    y2: frame.bottom,
+    color: QUIET,
+    width: 1.6,
+  };
   return {
     widthPx: WIDTH,
     heightPx: Math.ceil(below.bottom + MARGIN - 6),
     frame,
-    slabs: [...ground.slabs, ...start.slabs],
-    under: gridlines,
+    slabs: ground.slabs,
+    veils: start.slabs,
+    under: [...gridlines, ...ground.strokes],
     band: bandRows(chart),
     levels: levelLines(input, chart),
-    points: pointMarks(chart, marked, slotPx),
+    points: pointMarks(chart, flagged, slotPx),
     lineWidth: slotPx < 3 ? 1 : 1.6,
     over: [
       floor,
@@ -104,14 +126,22 @@ export function layout(input: PictureInput): Scene {
   };
 }
 
-/** The flagged stretches; a verdict of a move whose flag is not among the signals still gets its stretch marked. */
-function markedStretches(input: PictureInput, chart: Chart): Stretch[] {
-  const marked = stretches(input.signals);
+/** When churn moved, one stretch from its most likely start to the newest point stands for all the standing flags inside it. */
+function movedStretch(input: PictureInput, chart: Chart, flagged: readonly Stretch[]): readonly Stretch[] {
   const { outcome, since } = input.verdict;
-  const moved = outcome === 'risen' || outcome === 'fallen';
-  if (!moved || !since || marked.some((stretch) => stretch.state === 'standing')) return marked;
-  const words = outcome === 'risen' ? 'points above the usual level' : 'points below the usual level';
-  return [{ from: since.point, to: chart.points.length, state: 'standing', words, flags: 1 }, ...marked];
+  if (!since || (outcome !== 'risen' && outcome !== 'fallen')) return flagged;
+  const standing = flagged.filter((stretch) => stretch.state === 'standing');
+  const longest = [...standing].sort((a, b) => b.to - b.from - (a.to - a.from))[0];
+  const words = longest?.words ?? (outcome === 'risen' ? 'above the usual level' : 'below the usual level');
+  const flags = standing.reduce((sum, stretch) => sum + stretch.flags, 0);
+  const moved: Stretch = {
+    from: since.point,
+    to: chart.points.length,
+    state: 'standing',
+    words,
+    flags,
+  };
+  return [moved, ...flagged.filter((stretch) => stretch.state !== 'standing')];
 }
 
 /** Steps half a slot to either side of each point; neighbours with equal limits share one step. */
@@ -134,20 +164,50 @@ function levelLines(input: PictureInput, chart: Chart): LevelLine[] {
   const { baseline, center, points } = chart;
   const end = points.length + 0.5;
   const lines: LevelLine[] = [
-    { x: 0.5, x2: Math.min(baseline.last + 0.5, end), value: center, color: LEVEL, width: 2.4, dash: [] },
+    {
+      x: 0.5,
+      x2: Math.min(baseline.last + 0.5, end),
+      value: center,
+      color: LEVEL,
+      width: 2.4,
+      dash: [],
+    },
   ];
   if (baseline.last + 0.5 < end)
-    lines.push({ x: baseline.last + 0.5, x2: end, value: center, color: LEVEL, width: 2.4, dash: [9, 5] });
+    lines.push({
+      x: baseline.last + 0.5,
+      x2: end,
+      value: center,
+      color: LEVEL,
+      width: 2.4,
+      dash: [9, 5],
+    });
   const { before, after, since, outcome } = input.verdict;
   if (since && (outcome === 'risen' || outcome === 'fallen')) {
-    if (before) lines.push({ x: 0.5, x2: since.point - 0.5, value: before.rate, color: LEVEL, width: 4.5, dash: [] });
-    if (after) lines.push({ x: since.point - 0.5, x2: end, value: after.rate, color: EMBER, width: 4.5, dash: [] });
+    if (before)
+      lines.push({
+        x: 0.5,
+        x2: since.point - 0.5,
+        value: before.rate,
+        color: LEVEL,
+        width: 4.5,
+        dash: [],
+      });
+    if (after)
+      lines.push({
+        x: since.point - 0.5,
+        x2: end,
+        value: after.rate,
+        color: EMBER,
+        width: 4.5,
+        dash: [],
+      });
   }
   return lines;
 }
 
 /** The stretch the usual level was set from: its own ground, and words in the strip kept free above the data. */
-function baselineGround(chart: Chart, frame: Frame): { slabs: Slab[]; texts: PlacedText[] } {
+function baselineGround(chart: Chart, frame: Frame): { slabs: Slab[]; strokes: Stroke[]; texts: PlacedText[] } {
   const { first, last, provisional } = chart.baseline;
   const x = xAt(frame, first - 0.5);
   const x2 = xAt(frame, Math.min(last, chart.points.length) + 0.5);
@@ -162,7 +222,8 @@ function baselineGround(chart: Chart, frame: Frame): { slabs: Slab[]; texts: Pla
   const from = Math.max(x2, left + width + 12) + 9;
   if (last < chart.points.length && from + textWidth(judged, TEXT_SIZE, 400) < frame.right)
     texts.push({ ...base, text: judged, x: from, color: QUIET, align: 'left' });
-  return { slabs: [slab], texts };
+  const shore: Stroke = { x: x2, y: frame.top, x2, y2: frame.bottom, color: SAND_EDGE, width: 1.6 };
+  return { slabs: [slab], strokes: last < chart.points.length ? [shore] : [], texts };
 }
 
 /** The most likely start as a line up to its words, and the range of starts not ruled out as a tinted strip with a bar on the axis. */
@@ -183,10 +244,38 @@ function startMark(input: PictureInput, frame: Frame): { slabs: Slab[]; strokes:
     strokeWidth: 0,
   };
   return {
-    slabs: wide ? [{ x: from, y: frame.top + HEADROOM - 2, x2: to, y2: frame.bottom, color: EMBER_TINT }] : [],
+    slabs: wide
+      ? [
+          {
+            x: from,
+            y: frame.top + HEADROOM - 2,
+            x2: to,
+            y2: frame.bottom,
+            color: EMBER_TINT,
+          },
+        ]
+      : [],
     strokes: [
-      { x, y: frame.top + HEADROOM - 2, x2: x, y2: frame.bottom, color: EMBER, width: 2 },
-      ...(wide ? [{ x: from, y: frame.bottom, x2: to, y2: frame.bottom, color: EMBER, width: 8 }] : []),
+      {
+        x,
+        y: frame.top + HEADROOM - 2,
+        x2: x,
+        y2: frame.bottom,
+        color: EMBER,
+        width: 2,
+      },
+      ...(wide
+        ? [
+            {
+              x: from,
+              y: frame.bottom,
+              x2: to,
+              y2: frame.bottom,
+              color: EMBER,
+              width: 8,
+            },
+          ]
+        : []),
     ],
     marks: [mark],
   };
@@ -198,7 +287,17 @@ function ghostMark(input: PictureInput, chart: Chart, frame: Frame): { strokes: 
   const x = xAt(frame, chart.points.length + 1);
   const y = frame.bottom - 11;
   return {
-    strokes: [{ x, y: y - 10, x2: x, y2: frame.top + HEADROOM, color: GHOST, width: 1.5, dash: [3, 5] }],
+    strokes: [
+      {
+        x,
+        y: y - 10,
+        x2: x,
+        y2: frame.top + HEADROOM,
+        color: GHOST,
+        width: 1.5,
+        dash: [3, 5],
+      },
+    ],
     marks: [{ ...GHOST_MARK, x, y }],
   };
 }

@@ -1,5 +1,5 @@
 import type { PictureInput } from '../verdict/types.ts';
-import { countOf, dateShort, grouped, heldDate, percent } from './figures.ts';
+import { countOf, dateShort, grouped, heldDate } from './figures.ts';
 import { EMBER, INK, LINE, MARGIN, QUIET, TEXT_SIZE, WIDTH } from './palette.ts';
 import { EXCLUDED_MARK, GHOST_MARK, PASSED_MARK, WATCHING_MARK } from './pointMarks.ts';
 import type { MarkStyle, PlacedMark, PlacedText, Stroke } from './scene.ts';
@@ -41,21 +41,28 @@ export function candidateWords(input: PictureInput): string {
   return `the start could lie anywhere from ${first} to ${last}`;
 }
 
-function planNotes(input: PictureInput, unlabelled: readonly Stretch[], floor: number): Note[] {
+function planNotes(input: PictureInput, unlabelled: readonly Stretch[], floor: string): Note[] {
   const notes: Note[] = [];
   const candidates = candidateWords(input);
   if (input.chart && candidates) notes.push({ text: candidates, color: EMBER, mark: 'bar' });
   for (const stretch of unlabelled.slice(0, MOST_STRETCHES)) {
     const when = input.dates[stretch.from - 1]?.firstStart ?? null;
-    const where = when === null ? `point ${stretch.from}` : heldDate(when);
+    const where = when === null ? `point\u00a0${stretch.from}` : dateShort(when);
     const state =
       stretch.state === 'passed' ? 'did not last' : stretch.state === 'watching' ? 'one to watch' : 'flagged';
     const mark = stretch.state === 'passed' ? PASSED_MARK : WATCHING_MARK;
-    notes.push({ text: `${state}: ${stretch.words} (from ${where})`, color: QUIET, mark });
+    notes.push({
+      text: `${state}: ${stretch.words} (from\u00a0${where})`,
+      color: QUIET,
+      mark,
+    });
   }
   const more = unlabelled.length - MOST_STRETCHES;
   if (more > 0)
-    notes.push({ text: `and ${countOf(more, 'more marked stretch', 'more marked stretches')}`, color: QUIET });
+    notes.push({
+      text: `and ${countOf(more, 'more marked stretch', 'more marked stretches')}`,
+      color: QUIET,
+    });
   const excluded = input.chart?.baseline.excluded.length ?? 0;
   if (excluded > 0)
     notes.push({
@@ -65,7 +72,19 @@ function planNotes(input: PictureInput, unlabelled: readonly Stretch[], floor: n
     });
   if (input.chart && input.waiting) notes.push({ text: waitingWords(input), color: INK, mark: GHOST_MARK });
   if (input.chart && input.immature > 0) notes.push({ text: immatureWords(input), color: INK });
-  if (floor > 0) notes.push({ text: `the scale starts at ${percent(floor)}, not at zero`, color: QUIET });
+  if (floor)
+    notes.push({
+      text: `the scale starts at ${floor}, not at zero`,
+      color: QUIET,
+    });
+  const cuts = input.signals.filter((signal) => signal.speaks === 'cut' && signal.state !== 'passed');
+  const cut = cuts.at(-1);
+  if (cut)
+    notes.push({
+      text: `about how the data was cut, not about churn: ${cut.words}`,
+      color: QUIET,
+      mark: 'heed',
+    });
   notes.push(...cautionNotes(input));
   return notes;
 }
@@ -79,7 +98,11 @@ function cautionNotes(input: PictureInput): Note[] {
   }
   const notes: Note[] = cautions.slice(0, MOST_CAUTIONS).map((text) => ({ text, color: QUIET, mark: 'heed' as const }));
   const more = cautions.length - MOST_CAUTIONS;
-  if (more > 0) notes.push({ text: `${countOf(more, 'more caution')} in the message`, color: QUIET });
+  if (more > 0)
+    notes.push({
+      text: `${countOf(more, 'more caution')} in the message`,
+      color: QUIET,
+    });
   return notes;
 }
 
@@ -88,8 +111,13 @@ export function notes(
   input: PictureInput,
   unlabelled: readonly Stretch[],
   top: number,
-  floor: number,
-): { texts: PlacedText[]; marks: PlacedMark[]; strokes: Stroke[]; bottom: number } {
+  floor: string,
+): {
+  texts: PlacedText[];
+  marks: PlacedMark[];
+  strokes: Stroke[];
+  bottom: number;
+} {
   const texts: PlacedText[] = [];
   const marks: PlacedMark[] = [];
   const strokes: Stroke[] = [];
@@ -97,9 +125,23 @@ export function notes(
   for (const note of planNotes(input, unlabelled, floor)) {
     const middle = y + 15;
     if (note.mark === 'bar')
-      strokes.push({ x: MARGIN, y: middle, x2: MARGIN + 20, y2: middle, color: EMBER, width: 8 });
+      strokes.push({
+        x: MARGIN,
+        y: middle,
+        x2: MARGIN + 20,
+        y2: middle,
+        color: EMBER,
+        width: 8,
+      });
     else if (note.mark === 'heed') {
-      strokes.push({ x: MARGIN + 10, y: middle - 8, x2: MARGIN + 10, y2: middle + 2, color: QUIET, width: 3.5 });
+      strokes.push({
+        x: MARGIN + 10,
+        y: middle - 8,
+        x2: MARGIN + 10,
+        y2: middle + 2,
+        color: QUIET,
+        width: 3.5,
+      });
       marks.push({
         x: MARGIN + 10,
         y: middle + 7,

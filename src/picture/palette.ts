@@ -12,6 +12,7 @@ export const WATER_PALE = '#d8ebee';
 export const WATER_EDGE = '#4f93a3';
 export const LEVEL = '#0e5a6e';
 export const SAND = '#efe6d2';
+export const SAND_EDGE = '#c8b788';
 export const SAND_INK = '#6b5524';
 export const EMBER = '#b8410f';
 export const EMBER_TINT = '#f3c9b1';

@@ -12,8 +12,8 @@ export interface Picture {
   readonly heightPx: number;
 }
 
-/** Pixels of the PNG for one px of the drawing: crisp on dense screens. */
-const DENSITY = 2;
+/** Pixels of the PNG for one px of the drawing: 1080 px across, three for each of the 360 points a phone shows it at. */
+const DENSITY = 1.5;
 
 type Renderer = typeof import('./render.ts');
 let renderer: Promise<Renderer> | undefined;
@@ -33,7 +33,7 @@ export async function warmPicture(): Promise<void> {
 /**
  * Draws a verdict's picture.
  * @param input finished numbers: rates as fractions, days as day numbers; nothing is computed here but places
- * @returns the PNG at twice the drawing's size (1440 px wide), the SVG it was made from, and the text for those who cannot see it
+ * @returns the PNG, 1080 px wide, the SVG it was made from, and the text for those who cannot see it
  * @throws  Error when Vega warns: a warning would mean a part of the drawing is missing
  */
 export async function drawPicture(input: PictureInput): Promise<Picture> {
@@ -45,7 +45,7 @@ export async function drawPicture(input: PictureInput): Promise<Picture> {
     png,
     svg,
     altText: altText(input),
-    widthPx: scene.widthPx * DENSITY,
-    heightPx: scene.heightPx * DENSITY,
+    widthPx: Math.round(scene.widthPx * DENSITY),
+    heightPx: Math.round(scene.heightPx * DENSITY),
   };
 }

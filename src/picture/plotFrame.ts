@@ -9,7 +9,11 @@ export const HEADROOM = 36;
  * The ranges shown: from zero unless that would waste half of the height, up to the highest thing drawn, headroom added.
  * @returns domains for both axes, and tick values for the y axis (fractions)
  */
-export function domains(input: PictureInput): { x: [number, number]; y: [number, number]; ticks: number[] } {
+export function domains(input: PictureInput): {
+  x: [number, number];
+  y: [number, number];
+  ticks: number[];
+} {
   const points = input.chart?.points ?? [];
   const slots = Math.max(points.length + (input.waiting ? 1 : 0), 6);
   const values = points.flatMap((point) => [point.value, point.upper]);
@@ -17,13 +21,18 @@ export function domains(input: PictureInput): { x: [number, number]; y: [number,
   for (const level of [input.verdict.before, input.verdict.after]) if (level) values.push(level.rate);
   const top = values.reduce((a, b) => Math.max(a, b), 0.004);
   const low = lows.reduce((a, b) => Math.min(a, b), top);
-  const step = niceStep((low > top / 2 ? top - low : top) / 4);
-  const floor = low > top / 2 ? Math.max(0, Math.floor((low - step * 0.4) / step) * step) : 0;
+  const aloft = low > top / 2;
+  const step = niceStep((aloft ? Math.max(top - low, top / 5) : top) / 4);
+  const floor = aloft ? Math.max(0, Math.floor((low - step * 0.4) / step) * step) : 0;
   const span = Math.max((top - floor) * 1.05, 0.004);
   const ticks: number[] = [];
   for (let i = 0; floor + i * step <= Math.min(1, floor + span) + 1e-12; i++) ticks.push(floor + i * step);
   const base = floor === 0 ? -span * 0.03 : floor;
-  return { x: [0.4, slots + 0.6], y: [base, base + (floor + span - base) / (1 - HEADROOM / PLOT_HEIGHT)], ticks };
+  return {
+    x: [0.4, slots + 0.6],
+    y: [base, base + (floor + span - base) / (1 - HEADROOM / PLOT_HEIGHT)],
+    ticks,
+  };
 }
 
 /** Words for the ticks, with as many decimals as the step needs. */
@@ -37,10 +46,10 @@ function onTenths(step: number): boolean {
   return Math.abs(step * 10 - Math.round(step * 10)) < 1e-9;
 }
 
-/** The smallest of 1, 2, 5 times a power of ten that is no smaller than the wish; at most 25 %. */
+/** The smallest of 1, 2, 2.5, 5 times a power of ten that is no smaller than the wish; at most 25 %. */
 function niceStep(wish: number): number {
   const power = 10 ** Math.floor(Math.log10(Math.max(wish, 0.0005)));
-  const factor = [1, 2, 5, 10].find((one) => one * power >= wish * 0.999) ?? 10;
+  const factor = [1, 2, 2.5, 5, 10].find((one) => one * power >= wish * 0.999) ?? 10;
   return Math.min(factor * power, 0.25);
 }
 

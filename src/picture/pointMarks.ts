@@ -4,13 +4,58 @@ import { EMBER, GHOST, INK, PAPER, QUIET } from './palette.ts';
 import type { MarkStyle } from './scene.ts';
 import type { Stretch } from './stretches.ts';
 
-export const STANDING_MARK: MarkStyle = { shape: 'diamond', area: 190, fill: EMBER, stroke: PAPER, strokeWidth: 1 };
-export const WATCHING_MARK: MarkStyle = { shape: 'diamond', area: 150, fill: PAPER, stroke: EMBER, strokeWidth: 3 };
-export const PASSED_MARK: MarkStyle = { shape: 'diamond', area: 130, fill: PAPER, stroke: QUIET, strokeWidth: 2.4 };
-export const EXCLUDED_MARK: MarkStyle = { shape: 'cross', area: 90, fill: QUIET, stroke: QUIET, strokeWidth: 0 };
-export const GHOST_MARK: MarkStyle = { shape: 'circle', area: 130, fill: PAPER, stroke: GHOST, strokeWidth: 2.4 };
-const BASELINE_MARK: MarkStyle = { shape: 'circle', area: 62, fill: PAPER, stroke: INK, strokeWidth: 2 };
-const JUDGED_MARK: MarkStyle = { shape: 'circle', area: 78, fill: INK, stroke: INK, strokeWidth: 0 };
+/** A cross on its side, in the unit square Vega scales symbols from. */
+const LEANING_CROSS = 'M-.8,-.55L-.55,-.8L0,-.25L.55,-.8L.8,-.55L.25,0L.8,.55L.55,.8L0,.25L-.55,.8L-.8,.55L-.25,0Z';
+
+export const STANDING_MARK: MarkStyle = {
+  shape: 'diamond',
+  area: 190,
+  fill: EMBER,
+  stroke: PAPER,
+  strokeWidth: 1,
+};
+export const WATCHING_MARK: MarkStyle = {
+  shape: 'diamond',
+  area: 150,
+  fill: PAPER,
+  stroke: EMBER,
+  strokeWidth: 3,
+};
+export const PASSED_MARK: MarkStyle = {
+  shape: 'diamond',
+  area: 130,
+  fill: PAPER,
+  stroke: QUIET,
+  strokeWidth: 2.4,
+};
+export const EXCLUDED_MARK: MarkStyle = {
+  shape: LEANING_CROSS,
+  area: 190,
+  fill: QUIET,
+  stroke: QUIET,
+  strokeWidth: 0,
+};
+export const GHOST_MARK: MarkStyle = {
+  shape: 'circle',
+  area: 130,
+  fill: PAPER,
+  stroke: GHOST,
+  strokeWidth: 2.4,
+};
+const BASELINE_MARK: MarkStyle = {
+  shape: 'circle',
+  area: 62,
+  fill: PAPER,
+  stroke: INK,
+  strokeWidth: 2,
+};
+const JUDGED_MARK: MarkStyle = {
+  shape: 'circle',
+  area: 78,
+  fill: INK,
+  stroke: INK,
+  strokeWidth: 0,
+};
 
 const BY_STATE: Record<SignalState, MarkStyle> = {
   standing: STANDING_MARK,

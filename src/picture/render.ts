@@ -1,12 +1,16 @@
 import sharp from 'sharp';
 import { parse, View } from 'vega';
 import { compile, type TopLevelSpec } from 'vega-lite';
+import { indexedPng } from './indexedPng.ts';
 
 /** Vega-Lite to SVG, without a screen or a canvas. Anything Vega warns about is an error here. */
 export async function renderSvg(spec: TopLevelSpec): Promise<string> {
   const logger = complainingLogger();
   const compiled = compile(spec, { logger });
-  const view = new View(parse(compiled.spec, {}, { logger } as never), { renderer: 'none', logger });
+  const view = new View(parse(compiled.spec, {}, { logger } as never), {
+    renderer: 'none',
+    logger,
+  });
   try {
     return await view.toSVG();
   } finally {
@@ -16,9 +20,11 @@ export async function renderSvg(spec: TopLevelSpec): Promise<string> {
 
 /** SVG to PNG at `density` pixels for one px of the drawing. */
 export async function renderPng(svg: string, density: number): Promise<Uint8Array> {
-  return sharp(Buffer.from(svg), { density: 72 * density })
-    .png({ compressionLevel: 6, adaptiveFiltering: false })
-    .toBuffer();
+  const drawn = sharp(Buffer.from(svg), { density: 72 * density })
+    .removeAlpha()
+    .raw();
+  const { data, info } = await drawn.toBuffer({ resolveWithObject: true });
+  return indexedPng(data, info.width, info.height);
 }
 
 function complainingLogger() {

@@ -37,7 +37,8 @@ export interface Slab {
   readonly color: string;
 }
 
-export type Shape = 'circle' | 'diamond' | 'cross' | 'triangle-up';
+/** A symbol Vega knows, or an SVG path in its unit square. */
+export type Shape = 'circle' | 'diamond' | 'triangle-up' | `M${string}`;
 
 /** How a mark looks; `area` in square px, as Vega measures symbols. */
 export interface MarkStyle {
@@ -77,6 +78,8 @@ export interface Scene {
   readonly heightPx: number;
   readonly frame: Frame;
   readonly slabs: readonly Slab[];
+  /** tints over the band and under the lines */
+  readonly veils: readonly Slab[];
   readonly under: readonly Stroke[];
   /** limits and centre line per point, as steps: two rows where a step begins and ends */
   readonly band: readonly {
@@ -86,7 +89,10 @@ export interface Scene {
     readonly upper: number;
   }[];
   readonly levels: readonly LevelLine[];
-  readonly points: readonly (MarkStyle & { readonly x: number; readonly value: number })[];
+  readonly points: readonly (MarkStyle & {
+    readonly x: number;
+    readonly value: number;
+  })[];
   readonly lineWidth: number;
   readonly over: readonly Stroke[];
   readonly marks: readonly PlacedMark[];
@@ -104,7 +110,12 @@ export interface Box {
 export function boxOf(text: PlacedText): Box {
   const width = textWidth(text.text, text.size, text.weight);
   const left = text.align === 'left' ? text.x : text.align === 'right' ? text.x - width : text.x - width / 2;
-  return { left, right: left + width, top: text.y - 0.74 * text.size, bottom: text.y + 0.24 * text.size };
+  return {
+    left,
+    right: left + width,
+    top: text.y - 0.74 * text.size,
+    bottom: text.y + 0.24 * text.size,
+  };
 }
 
 export function overlap(a: Box, b: Box): boolean {

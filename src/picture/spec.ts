@@ -13,16 +13,36 @@ export function spec(scene: Scene): TopLevelSpec {
     field,
     type: 'quantitative' as const,
     axis: null,
-    scale: { domain: [...frame.xDomain], range: [frame.left, frame.right], nice: false, zero: false },
+    scale: {
+      domain: [...frame.xDomain],
+      range: [frame.left, frame.right],
+      nice: false,
+      zero: false,
+    },
   });
   const y = (field: string) => ({
     field,
     type: 'quantitative' as const,
     axis: null,
-    scale: { domain: [...frame.yDomain], range: [frame.bottom, frame.top], nice: false, zero: false },
+    scale: {
+      domain: [...frame.yDomain],
+      range: [frame.bottom, frame.top],
+      nice: false,
+      zero: false,
+    },
   });
-  const px = (field: string) => ({ field, type: 'quantitative' as const, axis: null, scale: null });
-  const own = (field: string) => ({ field, type: 'nominal' as const, scale: null, legend: null });
+  const px = (field: string) => ({
+    field,
+    type: 'quantitative' as const,
+    axis: null,
+    scale: null,
+  });
+  const own = (field: string) => ({
+    field,
+    type: 'nominal' as const,
+    scale: null,
+    legend: null,
+  });
   const each = (field: string) => ({ expr: `datum.${field}` });
   const water = (from: string, to: string) => ({
     gradient: 'linear' as const,
@@ -44,7 +64,12 @@ export function spec(scene: Scene): TopLevelSpec {
       strokeDash: { expr: 'datum.dash || []' },
       tooltip: null,
     },
-    encoding: { x: px('x'), y: px('y'), x2: { field: 'x2' }, y2: { field: 'y2' } },
+    encoding: {
+      x: px('x'),
+      y: px('y'),
+      x2: { field: 'x2' },
+      y2: { field: 'y2' },
+    },
   });
   const marks = {
     shape: each('shape'),
@@ -68,17 +93,40 @@ export function spec(scene: Scene): TopLevelSpec {
       {
         data: { values: [...scene.slabs] },
         mark: { type: 'rect', fill: each('color') },
-        encoding: { x: px('x'), y: px('y'), x2: { field: 'x2' }, y2: { field: 'y2' } },
+        encoding: {
+          x: px('x'),
+          y: px('y'),
+          x2: { field: 'x2' },
+          y2: { field: 'y2' },
+        },
       },
       {
         data: band,
-        mark: { type: 'area', color: water(WATER_PALE, WATER_DEEP), opacity: 0.86 },
+        mark: {
+          type: 'area',
+          color: water(WATER_PALE, WATER_DEEP),
+          opacity: 0.86,
+        },
         encoding: { x: x('x'), y: y('upper'), y2: { field: 'center' } },
       },
       {
         data: band,
-        mark: { type: 'area', color: water(WATER_DEEP, WATER_PALE), opacity: 0.86 },
+        mark: {
+          type: 'area',
+          color: water(WATER_DEEP, WATER_PALE),
+          opacity: 0.86,
+        },
         encoding: { x: x('x'), y: y('center'), y2: { field: 'lower' } },
+      },
+      {
+        data: { values: [...scene.veils] },
+        mark: { type: 'rect', fill: each('color'), opacity: 0.55 },
+        encoding: {
+          x: px('x'),
+          y: px('y'),
+          x2: { field: 'x2' },
+          y2: { field: 'y2' },
+        },
       },
       strokes(scene.under),
       ...(['upper', 'lower'] as const).map((edge) => ({
@@ -88,12 +136,23 @@ export function spec(scene: Scene): TopLevelSpec {
       })),
       {
         data: { values: [...scene.levels] },
-        mark: { type: 'rule', stroke: each('color'), strokeWidth: each('width'), strokeDash: each('dash') },
+        mark: {
+          type: 'rule',
+          stroke: each('color'),
+          strokeWidth: each('width'),
+          strokeDash: each('dash'),
+        },
         encoding: { x: x('x'), x2: { field: 'x2' }, y: y('value') },
       },
       {
         data: { values: [...scene.points] },
-        mark: { type: 'line', stroke: INK, strokeWidth: scene.lineWidth, opacity: 0.55, strokeJoin: 'round' },
+        mark: {
+          type: 'line',
+          stroke: INK,
+          strokeWidth: scene.lineWidth,
+          opacity: 0.55,
+          strokeJoin: 'round',
+        },
         encoding: { x: x('x'), y: y('value') },
       },
       strokes(scene.over),

@@ -35,7 +35,20 @@ export function drawable(text: string): string {
     if (font.glyph(character.codePointAt(0) ?? 0) !== 0) out += character;
     else if (!out.endsWith('?')) out += '?';
   }
-  return out.trim();
+  return holdTogether(out.trim());
+}
+
+const UNITS = [
+  '%|days?|weeks?|months?|years?|points?|accounts?|customers?|January|February|March|April|May|June|July|August',
+  'September|October|November|December',
+].join('|');
+const FIGURE_AND_UNIT = new RegExp(`(\\d) (${UNITS})(?![\\p{L}])`, 'gu');
+const MONTH_AND_YEAR =
+  /(January|February|March|April|May|June|July|August|September|October|November|December) (\d{4})/g;
+
+/** A figure and its unit, or the parts of a date, never end up on two lines. */
+function holdTogether(text: string): string {
+  return text.replace(FIGURE_AND_UNIT, '$1\u00a0$2').replace(MONTH_AND_YEAR, '$1\u00a0$2');
 }
 
 function advances(weight: FontWeight): Advances {

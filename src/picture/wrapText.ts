@@ -41,3 +41,10 @@ export function balanceText(text: string, widthPx: number, sizePx: number, weigh
   }
   return wrapText(text, wide, sizePx, weight);
 }
+
+/** As wrapText, but evened out when the last line would be a lone word or two. For running text. */
+export function wrapEvenly(text: string, widthPx: number, sizePx: number, weight: FontWeight): string[] {
+  const lines = wrapText(text, widthPx, sizePx, weight);
+  const last = textWidth(lines.at(-1) ?? '', sizePx, weight);
+  return lines.length > 1 && last < widthPx / 4 ? balanceText(text, widthPx, sizePx, weight) : lines;
+}

@@ -24,7 +24,11 @@ export interface Making {
   readonly size?: number | ((index: number) => number);
   readonly rate: number;
   /** rate from this point on */
-  readonly moved?: { readonly from: number; readonly rate: number; readonly candidates: readonly [number, number] };
+  readonly moved?: {
+    readonly from: number;
+    readonly rate: number;
+    readonly candidates: readonly [number, number];
+  };
   readonly baseline?: number;
   readonly excluded?: readonly number[];
   readonly counts?: readonly number[];
@@ -50,7 +54,16 @@ export function flag(
   words: string,
 ): Signal {
   const speaks = test === 4 || test === 7 || test === 8 ? 'cut' : 'shift';
-  return { test, side, point: members[1], members, speaks, state, words };
+  return {
+    test,
+    side,
+    point: members[1],
+    members,
+    until: members[1],
+    speaks,
+    state,
+    words,
+  };
 }
 
 export function day(iso: string): number {
@@ -93,7 +106,14 @@ export function makeInput(making: Making): PictureInput {
           kind: 'p',
           subgroupSize: typeof making.size === 'function' ? null : (making.size ?? 85),
           center,
-          baseline: { first: 1, last, excluded, provisional: last < 25, accounts, lost },
+          baseline: {
+            first: 1,
+            last,
+            excluded,
+            provisional: last < 25,
+            accounts,
+            lost,
+          },
           points,
         };
   const pooled = (from: number, to: number) => {
@@ -101,14 +121,24 @@ export function makeInput(making: Making): PictureInput {
     const n = part.reduce((sum, one) => sum + one.accounts, 0);
     const k = part.reduce((sum, one) => sum + one.lost, 0);
     const half = 1.96 * Math.sqrt(((k / n) * (1 - k / n)) / n);
-    return { rate: k / n, low: Math.max(0, k / n - half), high: Math.min(1, k / n + half), lost: k, accounts: n };
+    return {
+      rate: k / n,
+      low: Math.max(0, k / n - half),
+      high: Math.min(1, k / n + half),
+      lost: k,
+      accounts: n,
+    };
   };
   const start = day(making.firstStart ?? '2023-01-09');
   const every = making.daysPerPoint ?? 18;
   const dated = making.dated ?? true;
   const dates = counts.map((_, i) =>
     dated
-      ? { firstStart: start + i * every, lastStart: start + (i + 1) * every - 1, asOf: start + (i + 1) * every + 90 }
+      ? {
+          firstStart: start + i * every,
+          lastStart: start + (i + 1) * every - 1,
+          asOf: start + (i + 1) * every + 90,
+        }
       : { firstStart: null, lastStart: null, asOf: null },
   );
   const { moved } = making;
@@ -126,7 +156,11 @@ export function makeInput(making: Making): PictureInput {
       cautions: making.cautions ?? [],
       next: making.next ?? [],
       since: moved
-        ? { point: moved.from, start: dates[moved.from - 1]?.firstStart ?? null, candidates: moved.candidates }
+        ? {
+            point: moved.from,
+            start: dates[moved.from - 1]?.firstStart ?? null,
+            candidates: moved.candidates,
+          }
         : null,
       before,
       after,

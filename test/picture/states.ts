@@ -11,7 +11,7 @@ export const makings: Record<string, Making> = {
     moved: { from: 40, rate: 0.1, candidates: [37, 43] },
     outcome: 'risen',
     headline:
-      'Yes, churn has risen: of accounts that started from about 14 December 2024, about 10 % are lost within 3 months, against 6 % before.',
+      'Yes, churn has risen: of accounts that started from about 11 December 2024, about 10 % are lost within 3 months, against 6 % before.',
     signals: [
       flag(2, [41, 52], 'above', 'standing', 'nine points in a row above the usual level'),
       flag(5, [44, 48], 'above', 'standing', 'two of three points far above the usual level'),
@@ -25,7 +25,7 @@ export const makings: Record<string, Making> = {
     moved: { from: 33, rate: 0.04, candidates: [33, 34] },
     outcome: 'fallen',
     headline:
-      'Yes, churn has fallen: of accounts that started from about 8 August 2024, about 4 % are lost within 3 months, against 8.5 % before.',
+      'Yes, churn has fallen: of accounts that started from about 7 August 2024, about 4 % are lost within 3 months, against 8.5 % before.',
     signals: [
       flag(1, [34, 38], 'below', 'standing', 'one point below what chance alone allows'),
       flag(2, [33, 48], 'below', 'standing', 'sixteen points in a row below the usual level'),
@@ -94,7 +94,12 @@ export const makings: Record<string, Making> = {
     measure: 'share counted',
     subject: 'counts given on the command line',
   },
-  eight: { points: 8, rate: 0.07, outcome: 'too-early', headline: 'Too early to tell: 8 points so far.' },
+  eight: {
+    points: 8,
+    rate: 0.07,
+    outcome: 'too-early',
+    headline: 'Too early to tell: 8 points so far.',
+  },
   'four-hundred': {
     points: 400,
     rate: 0.06,
@@ -183,8 +188,18 @@ export const makings: Record<string, Making> = {
     outcome: 'steady',
     headline: 'No account was lost in any of the 12 points.',
   },
-  'all-one': { points: 12, rate: 1, outcome: 'steady', headline: 'Every account was lost in each of the 12 points.' },
-  single: { points: 1, rate: 0.07, outcome: 'too-early', headline: 'Too early to tell: there is one point so far.' },
+  'all-one': {
+    points: 12,
+    rate: 1,
+    outcome: 'steady',
+    headline: 'Every account was lost in each of the 12 points.',
+  },
+  single: {
+    points: 1,
+    rate: 0.07,
+    outcome: 'too-early',
+    headline: 'Too early to tell: there is one point so far.',
+  },
   'early-move': {
     points: 34,
     rate: 0.06,
