@@ -21,7 +21,7 @@ export async function renderSvg(spec: TopLevelSpec): Promise<string> {
 /** SVG to PNG at `density` pixels for one px of the drawing. */
 export async function renderPng(svg: string, density: number): Promise<Uint8Array> {
   const drawn = sharp(Buffer.from(svg), { density: 72 * density })
-    .removeAlpha()
+    .ensureAlpha()
     .raw();
   const { data, info } = await drawn.toBuffer({ resolveWithObject: true });
   return indexedPng(data, info.width, info.height);
