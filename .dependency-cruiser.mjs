@@ -6,7 +6,14 @@ const only = (from, allowed, comment) => ({
   severity: 'error',
   comment,
   from: { path: `^src/${from}/` },
-  to: { path: '^src/', pathNot: [`^src/${from}/`, '^src/(errors|days)\\.ts$', ...allowed.map((folder) => `^src/${folder}/`)] },
+  to: {
+    path: '^src/',
+    pathNot: [
+      `^src/${from}/`,
+      '^src/(errors|days)\\.ts$',
+      ...allowed.map((place) => `^src/${place}${place.endsWith('.ts') ? '$' : '/'}`),
+    ],
+  },
 });
 
 const packageOnly = (name, path, folders, comment) => ({
@@ -38,7 +45,11 @@ export default {
     only('verdict', ['charts', 'census', 'accounts/types\\.ts'], 'A verdict is made from a chart and a census.'),
     only('picture', ['charts', 'verdict'], 'The picture is handed finished numbers.'),
     only('requests', ['census', 'accounts/types\\.ts'], 'The grammar fills request types and runs nothing.'),
-    only('store', ['accounts/types\\.ts', 'requests/types\\.ts', 'census/types\\.ts'], 'The store keeps things; it computes none.'),
+    only(
+      'store',
+      ['accounts/types\\.ts', 'requests/types\\.ts', 'census/types\\.ts'],
+      'The store keeps things; it computes none.',
+    ),
     only(
       'answers',
       ['accounts', 'census', 'charts', 'verdict', 'picture', 'requests', 'store'],
@@ -46,7 +57,16 @@ export default {
     ),
     only(
       'channel',
-      ['answers', 'requests', 'store/types\\.ts', 'accounts/types\\.ts', 'census/tenure\\.ts', 'verdict/types\\.ts', 'verdict/words', 'picture/picture\\.ts'],
+      [
+        'answers',
+        'requests',
+        'store/types\\.ts',
+        'accounts/types\\.ts',
+        'census/tenure\\.ts',
+        'verdict/types\\.ts',
+        'verdict/words',
+        'picture/picture\\.ts',
+      ],
       'The channel translates, calls one answer and formats the reply: no statistics, no SQL.',
     ),
     only('practice', [], 'The practice service stands in for somebody else: it knows nothing of ours.'),
@@ -55,9 +75,24 @@ export default {
       ['answers', 'requests', 'accounts', 'census', 'verdict', 'picture/picture\\.ts', 'charts/types\\.ts'],
       'The command line calls answers.',
     ),
-    packageOnly('bolt-only-in-channel', '^node_modules/@slack/(bolt|web-api|socket-mode|oauth)', ['channel/', 'main\\.ts'], 'Bolt stays in src/channel.'),
-    packageOnly('sql-engine-only', '^node_modules/@duckdb/', ['accounts/', 'census/'], 'The counting engine stays in accounts and census.'),
-    packageOnly('store-engines-only', '^node_modules/(pg|pg-boss|@electric-sql)(/|$)', ['store/'], 'Databases stay in src/store.'),
+    packageOnly(
+      'bolt-only-in-channel',
+      '^node_modules/@slack/(bolt|web-api|socket-mode|oauth)',
+      ['channel/', 'main\\.ts'],
+      'Bolt stays in src/channel.',
+    ),
+    packageOnly(
+      'sql-engine-only',
+      '^node_modules/@duckdb/',
+      ['accounts/', 'census/'],
+      'The counting engine stays in accounts and census.',
+    ),
+    packageOnly(
+      'store-engines-only',
+      '^node_modules/(pg|pg-boss|@electric-sql)(/|$)',
+      ['store/'],
+      'Databases stay in src/store.',
+    ),
     {
       name: 'not-to-test',
       severity: 'error',
@@ -70,13 +105,21 @@ export default {
       severity: 'error',
       comment: 'What runs must be a dependency, not a devDependency.',
       from: { path: '^src/', pathNot: '^src/practice/page/' },
-      to: { dependencyTypes: ['npm-dev'], dependencyTypesNot: ['npm', 'type-only'], pathNot: '^node_modules/@(slack|types)/' },
+      to: {
+        dependencyTypes: ['npm-dev'],
+        dependencyTypesNot: ['npm', 'type-only'],
+        pathNot: '^node_modules/@(slack|types)/',
+      },
     },
     {
       name: 'no-orphans',
       severity: 'error',
       comment: 'Nothing imports this file: delete it or use it.',
-      from: { orphan: true, path: '^src/', pathNot: ['\\.d\\.ts$', '^src/practice/page/', '^src/main\\.ts$', '^src/cli/ebb\\.ts$'] },
+      from: {
+        orphan: true,
+        path: '^src/',
+        pathNot: ['\\.d\\.ts$', '^src/practice/page/', '^src/main\\.ts$', '^src/cli/ebb\\.ts$'],
+      },
       to: {},
     },
   ],

@@ -1,8 +1,6 @@
-import { recommendedBaseline } from '../charts/baseline.ts';
-import { pChart } from '../charts/kinds/pChart.ts';
 import type { SubgroupCount } from '../charts/types.ts';
 import { drawPicture } from '../picture/picture.ts';
-import { judge } from '../verdict/judgement.ts';
+import { chartAndJudge } from '../verdict/chartAndJudge.ts';
 import type { PictureInput, PointDates } from '../verdict/types.ts';
 import { writeVerdict } from '../verdict/verdict.ts';
 import type { Answer } from './types.ts';
@@ -19,11 +17,11 @@ export interface CountsQuestion {
 export async function answerCounts(question: CountsQuestion): Promise<Answer> {
   const { counts, clock } = question;
   const begun = clock();
-  const chart = pChart(counts, {
-    baselineLast: Math.min(question.baseline ?? recommendedBaseline(counts.length), counts.length),
+  const { chart, judgement } = chartAndJudge({
+    counts,
+    ...(question.baseline === undefined ? {} : { baselineLast: question.baseline }),
     ...(question.excluded ? { excluded: question.excluded } : {}),
   });
-  const judgement = judge(chart);
   const dates: PointDates[] = counts.map(() => ({
     firstStart: null,
     lastStart: null,

@@ -3,16 +3,16 @@ import { takeCensus } from '../census/census.ts';
 import { planCensus } from '../census/plan.ts';
 import { tenureInWords } from '../census/tenure.ts';
 import type { Census } from '../census/types.ts';
-import { recommendedBaseline } from '../charts/baseline.ts';
-import { pChart } from '../charts/kinds/pChart.ts';
 import { dayInWords } from '../days.ts';
 import { EbbError } from '../errors.ts';
 import { drawPicture } from '../picture/picture.ts';
 import type { Question } from '../requests/types.ts';
+import { chartAndJudge } from '../verdict/chartAndJudge.ts';
 import type { VerdictContext } from '../verdict/context.ts';
-import { judge, LEAST_POINTS } from '../verdict/judgement.ts';
+import { LEAST_POINTS } from '../verdict/judgement.ts';
 import type { PictureInput, PointDates } from '../verdict/types.ts';
 import { writeVerdict } from '../verdict/verdict.ts';
+import { counted } from '../verdict/words/format.ts';
 import { emptyJudgement } from './emptyJudgement.ts';
 import { readCautions } from './readCautions.ts';
 import type { Answer } from './types.ts';
@@ -63,9 +63,11 @@ export async function answerQuestion(table: AccountTable, question: Question, op
     lastStart,
     asOf: day,
   }));
-  const { baselineLast, caution } = chooseBaseline(question, census);
-  const chart = census.subgroups.length > 0 ? pChart(census.subgroups, { baselineLast }) : null;
-  const judgement = chart ? judge(chart, census.segments) : emptyJudgement();
+  const { baseline, caution } = chooseBaseline(question, census);
+  const { chart, judgement } =
+    census.subgroups.length > 0
+      ? chartAndJudge({ counts: census.subgroups, segments: census.segments, ...baseline })
+      : { chart: null, judgement: emptyJudgement() };
   const tenureWords = tenureInWords(tenure);
   const context: VerdictContext = {
     tenure: tenureWords,
@@ -125,26 +127,22 @@ export async function answerQuestion(table: AccountTable, question: Question, op
   };
 }
 
-function chooseBaseline(question: Question, census: Census): { baselineLast: number; caution: string[] } {
-  const count = census.subgroups.length;
-  if (question.baseline !== undefined)
-    return {
-      baselineLast: Math.min(question.baseline, Math.max(1, count)),
-      caution: [],
-    };
-  const usual = Math.max(1, recommendedBaseline(count));
+/** The baseline the question fixes, if it does, and what to say when it could not be followed. */
+function chooseBaseline(
+  question: Question,
+  census: Census,
+): { baseline: { baselineLast?: number }; caution: readonly string[] } {
   const { since } = question;
-  if (since === undefined) return { baselineLast: usual, caution: [] };
+  if (question.baseline !== undefined) return { baseline: { baselineLast: question.baseline }, caution: [] };
+  if (since === undefined) return { baseline: {}, caution: [] };
+  const count = census.subgroups.length;
   const before = census.subgroups.filter((subgroup) => subgroup.lastStart < since).length;
-  if (before >= LEAST_POINTS && before < count) return { baselineLast: before, caution: [] };
+  if (before >= LEAST_POINTS && before < count) return { baseline: { baselineLast: before }, caution: [] };
   const why =
     before >= count
-      ? `No full point started since ${dayInWords(since)} yet`
-      : `Only ${before} full points lie before ${dayInWords(since)}, too few to set a usual level`;
-  return {
-    baselineLast: usual,
-    caution: [`${why}, so the usual split of the chart was kept.`],
-  };
+      ? `No full point has started since ${dayInWords(since)} yet`
+      : `Only ${counted(before, 'full point')} lie before ${dayInWords(since)}, too few to set a usual level`;
+  return { baseline: {}, caution: [`${why}, so the usual split of the chart was kept.`] };
 }
 
 function knownSegment(table: AccountTable, wanted: NonNullable<Question['segment']>): string {

@@ -16,6 +16,7 @@ export function emptyJudgement(): Judgement {
     wouldSeeFrom: 1,
     steadiness: null,
     dispersion: null,
+    neighbours: null,
     segmentsDiffer: null,
     mix: null,
   };

@@ -4,6 +4,9 @@ import { counted } from '../verdict/words/format.ts';
 /** A share of unusable rows above which the answer itself should carry the warning. Our choice, no source. */
 const MANY_REJECTED = 0.02;
 
+/** A share of returned accounts above which it matters how they are counted. Our choice, no source. */
+const MANY_RETURNED = 0.005;
+
 /** What reading the file leaves the reader of the verdict to know. */
 export function readCautions(report: ReadReport): string[] {
   const cautions: string[] = [];
@@ -13,7 +16,7 @@ export function readCautions(report: ReadReport): string[] {
       `${counted(rejected, 'row')} of ${counted(report.rows, 'row')} could not be used; the list of reasons is with what was read.`,
     );
   }
-  if (report.returned > 0) {
+  if (report.returned > report.accounts * MANY_RETURNED) {
     cautions.push(
       `${counted(report.returned, 'account')} left and came back later; each counts once, as lost where it first left.`,
     );

@@ -1,35 +1,42 @@
+import { addMonths, type Day } from '../days.ts';
+import { EbbError } from '../errors.ts';
 import type { Tenure } from './types.ts';
 
-/** "3 months", "1 week". */
-export function tenureInWords({ count, unit }: Tenure): string {
-  return `${count} ${unit}${count === 1 ? '' : 's'}`;
+/** "3 months", "1 year" as "12 months", "10 days". */
+export function tenureInWords(tenure: Tenure): string {
+  return `${tenure.count} ${tenure.unit}${tenure.count === 1 ? '' : 's'}`;
 }
 
-const UNITS: Readonly<Record<string, { unit: Tenure['unit']; times: number }>> = {
-  d: { unit: 'day', times: 1 },
-  day: { unit: 'day', times: 1 },
-  w: { unit: 'week', times: 1 },
-  week: { unit: 'week', times: 1 },
-  m: { unit: 'month', times: 1 },
-  mo: { unit: 'month', times: 1 },
-  month: { unit: 'month', times: 1 },
-  quarter: { unit: 'month', times: 3 },
-  y: { unit: 'month', times: 12 },
-  year: { unit: 'month', times: 12 },
-};
+/** The day on which an account that started on `start` reaches the tenure point. */
+export function tenurePoint(start: Day, tenure: Tenure): Day {
+  if (tenure.unit === 'month') return addMonths(start, tenure.count);
+  return start + tenure.count * (tenure.unit === 'week' ? 7 : 1);
+}
 
-/** Longest tenure point read: twenty years. */
-const MOST_MONTHS = 240;
+/** The same as SQL over a column of day numbers; DuckDB and Postgres read it alike, and both clamp 31 January + 1 month to February. */
+export function tenurePointSql(start: string, tenure: Tenure): string {
+  if (tenure.unit === 'month') {
+    return `(CAST(DATE '1970-01-01' + ${start} + INTERVAL '${tenure.count} months' AS DATE) - DATE '1970-01-01')`;
+  }
+  return `(${start} + ${tenure.count * (tenure.unit === 'week' ? 7 : 1)})`;
+}
 
 /**
- * Reads "3 months", "90 days", "1 year", "6m".
- * @returns undefined when the text is no such age, is zero, or is longer than twenty years
+ * The last start day whose accounts have matured: start + T + settleDays <= asOf. Later starts reach T later or on the same day, so one
+ * day separates the matured from the young.
  */
-export function parseTenure(text: string): Tenure | undefined {
-  const match = /^\s*(\d{1,4})?\s*-?\s*([a-z]+?)s?\s*$/i.exec(text);
-  const unit = UNITS[match?.[2]?.toLowerCase() ?? ''];
-  if (!match || !unit) return undefined;
-  const count = Number(match[1] ?? 1) * unit.times;
-  const months = unit.unit === 'month' ? count : unit.unit === 'week' ? count / 4.345 : count / 30.44;
-  return count >= 1 && months <= MOST_MONTHS ? { count, unit: unit.unit } : undefined;
+export function lastMaturedStart(asOf: Day, tenure: Tenure, settleDays: number): Day {
+  const until = asOf - settleDays;
+  if (tenure.unit !== 'month') return until - tenure.count * (tenure.unit === 'week' ? 7 : 1);
+  // Clamping maps up to four starts to one day: look a few days past the plain answer.
+  let start = addMonths(until, -tenure.count) + 4;
+  while (tenurePoint(start, tenure) > until) start--;
+  return start;
+}
+
+/** @throws EbbError OPTION_INVALID */
+export function checkTenure(tenure: Tenure): void {
+  if (!Number.isInteger(tenure.count) || tenure.count < 1 || tenurePoint(0, tenure) > 36_600) {
+    throw new EbbError('OPTION_INVALID', `a tenure of ${tenureInWords(tenure)} cannot be used`, 'Give a whole number of days, weeks or months, such as "3 months".');
+  }
 }

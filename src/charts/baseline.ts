@@ -7,12 +7,12 @@ export const LONGEST_BASELINE = 30;
 
 /**
  * How many of the first points set the usual level when the question does not say.
- * Up to 30 points all of them do (trial limits); beyond that the first 25, or 30 once at least 15 points are left to be judged.
+ * Up to 30 points all of them do (trial limits); beyond that the first 25, or 30 on a chart of at least 60 points.
  * Source: 25 to 30 subgroups are common practice for trial limits; the split between 25 and 30 is ours.
  */
 export function recommendedBaseline(pointCount: number): number {
   if (pointCount <= LONGEST_BASELINE) return pointCount;
-  return pointCount >= LONGEST_BASELINE + 15 ? LONGEST_BASELINE : FULL_BASELINE;
+  return pointCount >= 2 * LONGEST_BASELINE ? LONGEST_BASELINE : FULL_BASELINE;
 }
 
 /**

@@ -1,6 +1,6 @@
 import { parseArgs } from 'node:util';
 import type { ColumnMap, ColumnRole, DateOrder } from '../accounts/types.ts';
-import { parseTenure } from '../census/tenure.ts';
+import { parseTenure } from '../census/parseTenure.ts';
 import type { Tenure } from '../census/types.ts';
 import { type Day, dayFromIso } from '../days.ts';
 import { EbbError } from '../errors.ts';

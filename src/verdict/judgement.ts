@@ -1,4 +1,5 @@
 import type { SegmentCounts } from '../census/types.ts';
+import { type Autocorrelation, autocorrelation } from '../charts/checks/autocorrelation.ts';
 import { type Dispersion, dispersion } from '../charts/checks/dispersion.ts';
 import { type Homogeneity, homogeneity } from '../charts/checks/homogeneity.ts';
 import { type Steadiness, steadiness } from '../charts/checks/steadiness.ts';
@@ -43,6 +44,7 @@ export interface Judgement {
   readonly wouldSeeFrom: number;
   readonly steadiness: Steadiness | null;
   readonly dispersion: Dispersion | null;
+  readonly neighbours: Autocorrelation | null;
   readonly segmentsDiffer: Homogeneity | null;
   readonly mix: MixReading | null;
 }
@@ -79,6 +81,7 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = []): Ju
     wouldSeeFrom,
     steadiness: null,
     dispersion: null,
+    neighbours: null,
     segmentsDiffer: segmentTest(segments),
     mix: null,
   };
@@ -104,17 +107,24 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = []): Ju
   const threshold = standingThreshold(design, chart.center);
   const side = standing.above.score >= standing.below.score ? 'above' : 'below';
 
-  // On trial limits the block itself lies in the baseline: the level to check is what lies before it.
-  const blockFirst = standing[side].score > threshold.ratio ? standing[side].block.first : newest + 1;
-  const level = counts.filter(
-    (_, i) => i < Math.min(chart.baseline.last, blockFirst - 1) && !chart.baseline.excluded.includes(i + 1),
-  );
-  const spread = dispersion(level);
-  const split = steadiness(level);
   // Quasi-likelihood: when the points vary more than the binomial allows, every log likelihood ratio shrinks by that factor.
   // Source: McCullagh P and Nelder JA, Generalized Linear Models, 1989, section 4.5 (section from memory).
+  const used = counts.filter((_, i) => i < chart.baseline.last && !chart.baseline.excluded.includes(i + 1));
+  // On trial limits a block lies in the baseline itself; its move must not be taken for spread.
+  const blockFirst = trial && standing[side].score > threshold.ratio ? standing[side].block.first : newest + 1;
+  const isBefore = ({ index }: { index: number }): boolean => index < blockFirst;
+  const spread = trial
+    ? dispersion(
+        ...splitBy(
+          chart.points.filter((point) => !chart.baseline.excluded.includes(point.index)),
+          isBefore,
+        ),
+      )
+    : dispersion(used);
   const shrink = spread && spread.pValue < OVERDISPERSED ? Math.max(1, spread.ratio) : 1;
   const moved = standing[side].score / shrink > threshold.ratio ? side : null;
+  const level = trial && moved ? counts.slice(0, blockFirst - 1) : used;
+  const split = steadiness(level, shrink);
 
   const base: Omit<Judgement, 'finding' | 'signals'> & {
     mix: MixReading | null;
@@ -127,6 +137,7 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = []): Ju
     },
     steadiness: split,
     dispersion: spread,
+    neighbours: autocorrelation(level.map((count) => count.lost / count.accounts)),
   };
   const judged = (
     finding: Finding,
@@ -157,6 +168,10 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = []): Ju
   if (mix?.explains === 'all') return judged('mix-change', null, { start, mix });
   if (mix?.explains === 'unclear') return judged('mix-unclear', null, { start, mix });
   return judged(moved === 'above' ? 'risen' : 'fallen', moved, { start, mix });
+}
+
+function splitBy<T>(values: readonly T[], first: (value: T) => boolean): [T[], T[]] {
+  return [values.filter(first), values.filter((value) => !first(value))];
 }
 
 function runLengthTrust(sizes: readonly number[], center: number) {

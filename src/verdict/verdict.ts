@@ -3,9 +3,10 @@ import { wilsonInterval } from '../charts/intervals/wilson.ts';
 import type { Chart, SubgroupCount } from '../charts/types.ts';
 import type { VerdictContext } from './context.ts';
 import type { Finding, Judgement } from './judgement.ts';
-import type { Outcome, PooledRate, Since, Verdict } from './types.ts';
+import type { Outcome, PooledRate, Signal, Since, Verdict } from './types.ts';
 import { cautions } from './words/cautions.ts';
 import { countSentence, signalSentence, sizeSentences, trustSentences } from './words/evidence.ts';
+import { capitalised, counted, percentagePoints } from './words/format.ts';
 import { headline } from './words/headline.ts';
 import { nextSteps } from './words/next.ts';
 
@@ -46,15 +47,11 @@ export function writeVerdict(chart: Chart | null, judgement: Judgement, context:
   const judgedFrom = chart && chart.baseline.last < chart.points.length ? chart.baseline.last : 0;
   const passed = shiftSignals.filter((signal) => signal.state === 'passed' && signal.point > judgedFrom);
 
+  const aboutMix = judgement.finding === 'mix-change' || judgement.finding === 'mix-unclear';
   const evidence: string[] = [
-    ...standing.map((signal) => signalSentence(signal, context)),
+    ...flagSentences(standing, '', context),
     ...(moved ? sizeSentences({ before, after, difference }) : []),
-    ...(judgement.finding === 'mix-change' || judgement.finding === 'mix-unclear' ? mixSentences(judgement) : []),
-    ...watching.map(
-      (signal) =>
-        `To watch: ${signalSentence(signal, context)} On the whole the newest points do not yet differ enough from the usual level.`,
-    ),
-    ...passed.map((signal) => `Passed: ${signalSentence(signal, context)} The points since then do not bear it out.`),
+    ...(aboutMix ? mixSentences(judgement, shiftSignals) : watchSentences(watching, passed, context)),
     ...trustSentences(judgement, context, judgement.finding === 'steady'),
     ...(chart ? [countSentence(chart.points.length, context)] : []),
   ];
@@ -75,6 +72,22 @@ export function writeVerdict(chart: Chart | null, judgement: Judgement, context:
     after,
     difference,
   };
+}
+
+/** Flags told in words before the rest are only counted. */
+const FLAGS_TOLD = 3;
+
+function flagSentences(
+  signals: readonly Signal[],
+  lead: string,
+  context: VerdictContext,
+  of = signals.length,
+): string[] {
+  const told = signals.slice(0, FLAGS_TOLD);
+  const rest = of - told.length;
+  const sentences = told.map((signal) => `${lead}${signalSentence(signal, context)}`);
+  if (rest > 0) sentences.push(`${lead}${counted(rest, 'further flag')} of the same kind on the chart.`);
+  return sentences;
 }
 
 /** Counts before and after the move: the baseline, or on trial limits everything before the start; and everything from the start on. */
@@ -107,10 +120,25 @@ function pooledRate(count: SubgroupCount): PooledRate {
   };
 }
 
-function mixSentences(judgement: Judgement): string[] {
-  const { pooledDifference, within } = judgement.mix!;
-  const points = (x: number): string => `${x < 0 ? '−' : '+'}${Math.abs(x * 100).toFixed(1)}`;
+function watchSentences(watching: readonly Signal[], passed: readonly Signal[], context: VerdictContext): string[] {
   return [
-    `The overall rate changed by ${points(pooledDifference)} percentage points; comparing each group with itself leaves ${points(within.difference)}.`,
+    ...flagSentences(watching, 'To watch: ', context),
+    ...(watching.length > 0
+      ? ['Taken together, the newest points do not yet differ enough from the usual level to call it a move.']
+      : []),
+    ...flagSentences(passed.slice(-FLAGS_TOLD), 'Did not last: ', context, passed.length),
   ];
+}
+
+function mixSentences(judgement: Judgement, flags: readonly Signal[]): string[] {
+  const { pooledDifference, within } = judgement.mix!;
+  const sentences = [
+    `The overall rate changed by ${percentagePoints(pooledDifference)} percentage points; comparing each group with itself leaves ${percentagePoints(within.difference)}.`,
+  ];
+  if (judgement.finding === 'mix-change' && flags.length > 0) {
+    sentences.push(
+      `${capitalised(counted(flags.length, 'flag'))} on the chart of all accounts: that is what a moving mix looks like when groups are charted together.`,
+    );
+  }
+  return sentences;
 }

@@ -15,9 +15,10 @@ const HISTORIES = 999;
 
 /**
  * Is one rate behind all these points? Largest likelihood-ratio split, its null distribution by seeded simulation at the pooled rate.
+ * @param overdispersion  factor by which the points vary more than the binomial; the ratio shrinks by it (quasi-likelihood)
  * @returns null when there are fewer than 4 points, or no loss, or no account kept: nothing could be told apart
  */
-export function steadiness(counts: readonly SubgroupCount[], seed = 5): Steadiness | null {
+export function steadiness(counts: readonly SubgroupCount[], overdispersion = 1, seed = 5): Steadiness | null {
   const accounts = counts.map((count) => count.accounts);
   const all = accounts.reduce((sum, n) => sum + n, 0);
   const lost = counts.reduce((sum, count) => sum + count.lost, 0);
@@ -33,7 +34,7 @@ export function steadiness(counts: readonly SubgroupCount[], seed = 5): Steadine
     HISTORIES,
     seed,
     (simulated) => {
-      if (largestSplit(accounts, simulated).ratio >= here.ratio) atLeast++;
+      if (largestSplit(accounts, simulated).ratio >= here.ratio / overdispersion) atLeast++;
     },
   );
   return { ...here, pValue: (1 + atLeast) / (1 + HISTORIES) };

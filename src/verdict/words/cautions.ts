@@ -2,7 +2,7 @@ import type { Chart } from '../../charts/types.ts';
 import { dayInWords } from '../../days.ts';
 import type { VerdictContext } from '../context.ts';
 import type { Judgement } from '../judgement.ts';
-import { counted, listed, numberWord } from './format.ts';
+import { counted, listed } from './format.ts';
 import { cutAdvice } from './testWords.ts';
 
 /** The limits of the answer, most particular first, the usual caution last. */
@@ -19,6 +19,12 @@ export function cautions(chart: Chart | null, judgement: Judgement, context: Ver
     if (judgement.dispersion && judgement.dispersion.pValue < 0.01 && judgement.finding !== 'unsteady-baseline') {
       list.push(
         `The points vary about ${judgement.dispersion.ratio.toFixed(1)} times as much as chance alone would make them (overdispersion), so flags are raised too easily; the verdict asks for that much more evidence.`,
+      );
+    }
+    const { neighbours } = judgement;
+    if (neighbours && Math.abs(neighbours.r1) > neighbours.limit && judgement.finding !== 'unsteady-baseline') {
+      list.push(
+        `Neighbouring points ${neighbours.r1 > 0 ? 'go together' : 'pull apart'} more than chance would have them (autocorrelation ${neighbours.r1.toFixed(2)}), so flags mean a little less than stated.`,
       );
     }
     const deaf = deafDownward(chart);
@@ -47,7 +53,7 @@ export function cautions(chart: Chart | null, judgement: Judgement, context: Ver
   list.push(...context.readCautions);
   if (context.asOf !== null && context.asOfInferred) {
     list.push(
-      `The data is taken to be complete through ${dayInWords(context.asOf)}, the latest date in the file. If it is not, correct it: a wrong date makes young accounts look settled.`,
+      `The data is taken to be complete through ${dayInWords(context.asOf)}, the latest date in the file; correct it if it is not, since a wrong date makes young accounts look settled.`,
     );
   }
   if (judgement.finding === 'risen' || judgement.finding === 'fallen') {
@@ -64,11 +70,11 @@ function deafDownward(chart: Chart): string | null {
   const sigma = Math.max(...chart.points.map((point) => point.sigma));
   const reach = [1, 2, 3].filter((k) => chart.center - k * sigma <= 0);
   if (reach.length === 0) return null;
-  const deaf =
+  const cannot =
     reach.length === 3
-      ? 'no low point can raise a flag alone, nor two or four together'
+      ? 'only nine low points in a row, or six each lower than the last, can flag a fall'
       : reach.length === 2
-        ? 'a single low point, or two of three, can never raise a flag'
-        : 'a single low point can never raise a flag, even one without any loss';
-  return `With points this small, chance alone can bring a point down to zero: ${deaf}. A fall shows only as ${numberWord(9)} low points in a row${reach.length < 3 ? ' or several of five' : ''}, or six each lower than the last.`;
+        ? 'a fall shows only in runs of low points, never in one or two of them'
+        : 'one low point alone can never flag a fall, only several together';
+  return `Points this small can reach zero by chance, so ${cannot}.`;
 }
