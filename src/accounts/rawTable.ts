@@ -1,0 +1,95 @@
+import { createHmac } from 'node:crypto';
+import type { DuckDBConnection } from '@duckdb/node-api';
+import type { Columns } from './columns.ts';
+import { TIME_PATTERN } from './dateText.ts';
+import { LONGEST_LINE_BYTES } from './fileStart.ts';
+import type { Layout } from './layout.ts';
+import { marksSql } from './rowRules.ts';
+import { firstRow, quoteName, quoteText, rowsOf } from './sql.ts';
+
+/** A record that the engine could not split into the columns. */
+export interface RaggedRecord {
+  /** byte offset (from 0) at which it begins in the file that was read */
+  readonly offset: number;
+}
+
+export interface RawTable {
+  readonly rows: number;
+  readonly ragged: readonly RaggedRecord[];
+  /** some row is not valid UTF-8 */
+  readonly badEncoding: boolean;
+  /** the number of rows above the data (preamble and header), which come first */
+  readonly rowsAbove: number;
+}
+
+/** Small buffers let both cores work on files of a few megabytes already. */
+const BUFFER_BYTES = 8_000_000;
+
+/**
+ * The 64-bit key of an account, as SQL.
+ * Without a key: DuckDB's own hash: fast, stable for the pinned version (a test holds its values), not secret.
+ * With a key: the first 64 bits of SHA-256(b ‖ SHA-256(a ‖ id)), a and b derived from the key by HMAC-SHA-256: HMAC's nested form with
+ * derived prefixes. Whoever lacks the key can neither reverse a key nor test a guessed id against it; whoever has both the key and
+ * a list of ids can. Two ids share 64 bits with a chance of about 3 in 100 million at a million accounts.
+ */
+export function keySql(id: string, idKey: string | undefined): string {
+  if (idKey === undefined) return `hash(${id})`;
+  const derive = (label: string): string => createHmac('sha256', idKey).update(label).digest('hex');
+  return `('0x' || left(sha256('${derive('ebbline outer')}' || sha256('${derive('ebbline inner')}' || ${id})), 16))::UBIGINT`;
+}
+
+function dateSql(column: string): string {
+  // Ten characters only: DuckDB's cast also takes "2024-03-01x" for a date. All else is left as text, to be judged with the whole column.
+  return `CASE WHEN strlen(${column}) = 10 THEN try_cast(${column} AS DATE) END`;
+}
+
+function dateTextSql(column: string, parsed: string): string {
+  return `CASE WHEN ${parsed} IS NULL THEN trim(regexp_replace(trim(${column}), '([0-9])${TIME_PATTERN}', '\\1')) END`;
+}
+
+/**
+ * Reads the file once into table `raw`: key, start_day, start_text, end_day, end_text, segment, amount, amount_text, marks; the table's
+ * rowid is the row's ordinal. Days are filled where the text is an ISO date; every other text is kept beside, untouched but for a time
+ * of day behind the date.
+ */
+export async function readRaw(
+  connection: DuckDBConnection,
+  path: string,
+  layout: Layout,
+  columns: Columns,
+  options: { readonly idKey: string | undefined; readonly parallel: boolean },
+): Promise<RawTable> {
+  const column = (at: number): string => quoteName(`c${at}`);
+  const source =
+    `read_csv(${quoteText(path)}, delim = ${quoteText(layout.delimiter)}, header = false, auto_detect = false, all_varchar = true, ` +
+    `quote = '"', escape = '"', columns = {${Array.from({ length: layout.width }, (_, at) => `'c${at}': 'VARCHAR'`).join(', ')}}, ` +
+    `store_rejects = true, rejects_table = 'csv_errors', rejects_scan = 'csv_scans', rejects_limit = 0, ` +
+    `buffer_size = ${BUFFER_BYTES}, max_line_size = ${LONGEST_LINE_BYTES * 2}, null_padding = ${layout.padded}, parallel = ${options.parallel})`;
+  const id = columns.id === undefined ? undefined : `nullif(trim(${column(columns.id)}), '')`;
+  const day = (name: string): string =>
+    `CASE WHEN ${name} >= DATE '1900-01-01' AND ${name} <= DATE '9999-12-31' THEN (${name} - DATE '1970-01-01')::INTEGER END`;
+  const amount = columns.amount === undefined ? undefined : column(columns.amount);
+  await connection.run('DROP TABLE IF EXISTS csv_errors; DROP TABLE IF EXISTS csv_scans');
+  await connection.run(
+    `CREATE OR REPLACE TABLE raw AS SELECT ${id === undefined ? 'NULL::UBIGINT' : `CASE WHEN ${id} IS NOT NULL THEN ${keySql(id, options.idKey)} END`} AS key, ` +
+      `start_day, ${dateTextSql('start_source', 'start_day')} AS start_text, end_day, ${dateTextSql('end_source', 'end_day')} AS end_text, ` +
+      `segment, amount, ${amount === undefined ? 'NULL::VARCHAR' : `CASE WHEN amount IS NULL THEN ${amount} END`} AS amount_text, marks ` +
+      `FROM (SELECT *, ${day('start_date')} AS start_day, ${day('end_date')} AS end_day FROM (SELECT *, ` +
+      `${column(columns.start)} AS start_source, ${dateSql(column(columns.start))} AS start_date, ` +
+      `${column(columns.end)} AS end_source, ${dateSql(column(columns.end))} AS end_date, ` +
+      `${columns.segment === undefined ? 'NULL::VARCHAR' : `nullif(trim(${column(columns.segment)}), '')`} AS segment, ` +
+      `${amount === undefined ? 'NULL::DOUBLE' : `try_cast(${amount} AS DOUBLE)`} AS amount, ${marksSql(columns)} AS marks FROM ${source}))`,
+  );
+  const errors = await rowsOf(
+    connection,
+    `SELECT line_byte_position - 1 AS at, bool_or(error_type::VARCHAR = 'INVALID ENCODING') AS encoding
+     FROM csv_errors WHERE csv_line IS NULL OR trim(csv_line, E' \\t\\r\\n') <> '' GROUP BY 1 ORDER BY 1`,
+  );
+  const { rows } = await firstRow(connection, 'SELECT count(*)::INTEGER AS rows FROM raw');
+  return {
+    rows: Number(rows),
+    ragged: errors.map((row) => ({ offset: Number(row.at) })),
+    badEncoding: errors.some((row) => row.encoding === true),
+    rowsAbove: layout.widthRecordsAbove,
+  };
+}

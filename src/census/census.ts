@@ -1,0 +1,124 @@
+import { rowsOf } from '../accounts/sql.ts';
+import type { AccountTable } from '../accounts/types.ts';
+import type { Day } from '../days.ts';
+import { EbbError } from '../errors.ts';
+import { censusSql, OTHER_SEGMENT, startsSql } from './censusSql.ts';
+import { checkTenure, lastMaturedStart, tenurePoint } from './tenure.ts';
+import type { Census, CensusRequest, CensusSubgroup, SegmentCounts } from './types.ts';
+
+/** Segment values counted by themselves; the rest is pooled. */
+const SEGMENTS = 12;
+const QUARTER_DAYS = 91;
+
+/**
+ * The census of method.md section 2, start view: matured accounts in order of start, ties by the stable key, in subgroups of exactly n.
+ * An account counts as lost when it ended on or before its tenure point. The unfinished last subgroup is withheld.
+ * @throws EbbError OPTION_INVALID, SEGMENT_UNKNOWN
+ */
+export async function takeCensus(table: AccountTable, request: CensusRequest): Promise<Census> {
+  checkTenure(request.tenure);
+  checkSize(request);
+  const { connection } = table;
+  const maturedUntil = lastMaturedStart(request.asOf, request.tenure, request.settleDays);
+  const segmentNames =
+    request.segment === undefined && table.report.segments.length > 1 ? table.report.segments.slice(0, SEGMENTS).map(({ value }) => value) : [];
+  const rows = await rowsOf(connection, censusSql(table.table, request, maturedUntil, segmentNames));
+  const starts = await startsFrom(table, maturedUntil - 2 * QUARTER_DAYS, request.segment);
+
+  const all: { accounts: number; lost: number; first: Day; last: Day; segments: Map<string, { accounts: number; lost: number }> }[] = [];
+  for (const row of rows) {
+    const [accounts, lost, first, last] = [Number(row.accounts), Number(row.lost), Number(row.first_start), Number(row.last_start)];
+    const at = Number(row.subgroup);
+    const subgroup = all[at] ?? { accounts: 0, lost: 0, first, last, segments: new Map() };
+    all[at] = subgroup;
+    subgroup.accounts += accounts;
+    subgroup.lost += lost;
+    subgroup.first = Math.min(subgroup.first, first);
+    subgroup.last = Math.max(subgroup.last, last);
+    if (row.segment !== null) subgroup.segments.set(String(row.segment), { accounts, lost });
+  }
+  const matured = all.reduce((sum, { accounts }) => sum + accounts, 0);
+  const young = starts.filter(({ day }) => day > maturedUntil);
+  const immature = young.reduce((sum, { accounts }) => sum + accounts, 0);
+  if (matured + immature === 0 && request.segment !== undefined) throw segmentUnknown(table, request.segment);
+  const waiting = matured % request.subgroupSize;
+  const finished = waiting === 0 ? all : all.slice(0, -1);
+  const subgroups: CensusSubgroup[] = finished.map(({ accounts, lost, first, last }, at) => ({
+    index: at + 1,
+    accounts,
+    lost,
+    firstStart: first,
+    lastStart: last,
+    asOf: tenurePoint(last, request.tenure) + request.settleDays,
+  }));
+  const completing = startOf(young, request.subgroupSize - waiting);
+  return {
+    request,
+    subgroups,
+    matured,
+    waiting,
+    immature,
+    nextPointOn: completing === undefined ? null : tenurePoint(completing, request.tenure) + request.settleDays,
+    inflowPerWeek: await inflow(table, request.segment, maturedUntil, all.at(-1)?.last, starts),
+    segments: segmentCounts(segmentNames, finished),
+  };
+}
+
+function checkSize(request: CensusRequest): void {
+  if (Number.isInteger(request.subgroupSize) && request.subgroupSize >= 1 && Number.isInteger(request.settleDays) && request.settleDays >= 0) return;
+  throw new EbbError(
+    'OPTION_INVALID',
+    `a subgroup size of ${request.subgroupSize} with ${request.settleDays} days to settle cannot be used`,
+    'The subgroup size is a whole number from 1, the days to settle a whole number from 0.',
+  );
+}
+
+function segmentUnknown(table: AccountTable, segment: string): EbbError {
+  const known = table.report.segments.map(({ value }) => value);
+  return new EbbError(
+    'SEGMENT_UNKNOWN',
+    `no account has the ${table.report.columns.segment ?? 'segment'} "${segment}"`,
+    known.length === 0 ? 'The export has no segment column.' : `The values are: ${known.slice(0, 12).join(', ')}.`,
+    { detail: { segment, known } },
+  );
+}
+
+interface Starts {
+  readonly day: Day;
+  readonly accounts: number;
+}
+
+async function startsFrom(table: AccountTable, from: Day, segment: string | undefined): Promise<Starts[]> {
+  const rows = await rowsOf(table.connection, startsSql(table.table, from, segment));
+  return rows.map((row) => ({ day: Number(row.start_day), accounts: Number(row.accounts) }));
+}
+
+/** Start day of the k-th account. */
+function startOf(starts: readonly Starts[], k: number): Day | undefined {
+  let sum = 0;
+  for (const { day, accounts } of starts) {
+    sum += accounts;
+    if (sum >= k) return day;
+  }
+  return undefined;
+}
+
+/** Matured accounts a week over the last quarter of a year in which accounts started and have matured. */
+async function inflow(table: AccountTable, segment: string | undefined, maturedUntil: Day, lastStart: Day | undefined, known: readonly Starts[]): Promise<number> {
+  if (lastStart === undefined) return 0;
+  const to = Math.min(maturedUntil, lastStart);
+  const from = Math.max(to - QUARTER_DAYS + 1, Math.min(table.report.firstStart, to));
+  const starts = from >= maturedUntil - 2 * QUARTER_DAYS ? known : await startsFrom(table, from, segment);
+  const count = starts.filter(({ day }) => day >= from && day <= to).reduce((sum, { accounts }) => sum + accounts, 0);
+  return (count * 7) / (to - from + 1);
+}
+
+function segmentCounts(names: readonly string[], finished: readonly { segments: ReadonlyMap<string, { accounts: number; lost: number }> }[]): SegmentCounts[] {
+  const pooled = !names.includes(OTHER_SEGMENT) && finished.some(({ segments }) => segments.has(OTHER_SEGMENT)) ? [OTHER_SEGMENT] : [];
+  if (names.length === 0) return [];
+  return [...names, ...pooled].map((segment) => ({
+    segment,
+    accounts: finished.map(({ segments }) => segments.get(segment)?.accounts ?? 0),
+    lost: finished.map(({ segments }) => segments.get(segment)?.lost ?? 0),
+  }));
+}

@@ -1,0 +1,126 @@
+import { firstRow } from '../accounts/sql.ts';
+import type { AccountTable } from '../accounts/types.ts';
+import type { Day } from '../days.ts';
+import { hazardByMonth, type TenureCounts } from './hazard.ts';
+import { rounded, SOON_POINTS, subgroupSizes } from './sizes.ts';
+import { checkTenure, lastMaturedStart, tenureInWords, tenurePointSql } from './tenure.ts';
+import type { CensusPlan, Tenure } from './types.ts';
+
+export interface PlanRequest {
+  readonly tenure?: Tenure;
+  readonly subgroupSize?: number;
+  readonly settleDays: number;
+  readonly asOf: Day;
+  readonly segment?: string;
+}
+
+/** 25 points for the usual level and about 15 to judge against it. */
+const WANTED_POINTS = 40;
+/** More points than this can't be told apart in a picture on a phone. */
+const MOST_POINTS = 150;
+const TENURES = [1, 3, 6, 12] as const;
+
+/**
+ * Recommends the tenure point and the subgroup size where the question leaves them open, with the reasons in words.
+ * @throws EbbError OPTION_INVALID for a tenure that cannot be used
+ */
+export async function planCensus(table: AccountTable, partial: PlanRequest): Promise<CensusPlan> {
+  const chosen = partial.tenure
+    ? { tenure: partial.tenure, why: `read at ${tenureInWords(partial.tenure)}, as asked` }
+    : recommendTenure(await hazardByMonth(table, partial.asOf, partial.settleDays, partial.segment));
+  checkTenure(chosen.tenure);
+  const { matured, lost, perWeek } = await maturedCounts(table, chosen.tenure, partial);
+  // With nobody lost, one loss is assumed: any real rate could be that low.
+  const rate = matured === 0 ? 0 : lost / matured;
+  const assumed = Math.min(Math.max(rate, 1 / (matured + 2)), 1 - 1 / (matured + 2));
+  const sizes = subgroupSizes(matured === 0 ? 0.05 : assumed);
+  const size = partial.subgroupSize
+    ? { subgroupSize: partial.subgroupSize, why: `${count(partial.subgroupSize)} accounts a point, as asked` }
+    : recommendSize(matured, sizes);
+  const waits = perWeek > 0 ? `; at about ${oneDigit(perWeek)} new accounts a week a point takes ${weeks(size.subgroupSize / perWeek)}` : '';
+  return { tenure: chosen.tenure, tenureWhy: chosen.why, subgroupSize: size.subgroupSize, sizeWhy: `${size.why}${waits}`, sizes, rate };
+}
+
+async function maturedCounts(table: AccountTable, tenure: Tenure, partial: PlanRequest): Promise<{ matured: number; lost: number; perWeek: number }> {
+  const until = lastMaturedStart(partial.asOf, tenure, partial.settleDays);
+  const only = partial.segment === undefined ? '' : ` AND segment = '${partial.segment.replaceAll("'", "''")}'`;
+  const row = await firstRow(
+    table.connection,
+    `SELECT count(*)::INTEGER AS matured, count(*) FILTER (WHERE end_day <= ${tenurePointSql('start_day', tenure)})::INTEGER AS lost,
+       count(*) FILTER (WHERE start_day > ${until - 91})::INTEGER AS recent FROM ${table.table} WHERE start_day <= ${until}${only}`,
+  );
+  return { matured: Number(row.matured), lost: Number(row.lost), perWeek: Number(row.recent) / 13 };
+}
+
+/**
+ * The tenure just after the hazard peaks, rounded up to 1, 3, 6 or 12 months, if enough accounts have got that far for 40 points of five
+ * losses; else the nearest earlier one. A peak counts when the month's hazard exceeds the middle one by half and by three standard errors.
+ */
+export function recommendTenure(counts: TenureCounts): { tenure: Tenure; why: string } {
+  const months = (n: number): Tenure => ({ count: n, unit: 'month' });
+  const points = (n: number): number => (counts.byTenure[n - 1]?.lost ?? 0) / 5;
+  const feasible = TENURES.filter((n) => points(n) >= WANTED_POINTS);
+  const peak = hazardPeak(counts);
+  if (peak) {
+    const after = TENURES.find((n) => n >= peak.month) ?? peak.month;
+    const percent = (peak.hazard * 100).toFixed(1);
+    const when = `most accounts that leave do so in month ${peak.month} (${percent} % of those still there)`;
+    if (points(after) >= WANTED_POINTS) return { tenure: months(after), why: `read at ${tenureInWords(months(after))}, just after the riskiest time: ${when}` };
+    const earlier = feasible.filter((n) => n < after).at(-1);
+    if (earlier !== undefined) {
+      return {
+        tenure: months(earlier),
+        why: `read at ${tenureInWords(months(earlier))}: ${when}, but too few accounts have got that far yet`,
+      };
+    }
+  }
+  const even = feasible.includes(3) ? 3 : feasible[0];
+  if (even !== undefined) {
+    return { tenure: months(even), why: `read at ${tenureInWords(months(even))}: accounts leave evenly, with no time at which many more go than at others` };
+  }
+  // Too little data for 40 points at any of them: the one that gives most.
+  const most = [...TENURES].sort((a, b) => points(b) - points(a) || a - b)[0] ?? 1;
+  const long = TENURES.filter((n) => points(n) >= 0.9 * points(most))[0] ?? most;
+  return { tenure: months(long), why: `read at ${tenureInWords(months(long))}: with so few accounts, this tenure gives the most to look at` };
+}
+
+/** The month with the highest hazard, when it stands out. */
+function hazardPeak(counts: TenureCounts): { month: number; hazard: number } | undefined {
+  const usable = counts.months.filter(({ atRisk, lost }) => atRisk >= 100 && lost >= 10);
+  if (usable.length < 2) return undefined;
+  const hazards = usable.map(({ atRisk, lost }) => lost / atRisk).sort((a, b) => a - b);
+  const middle = hazards[Math.floor((hazards.length - 1) / 2)] ?? 0;
+  let best: { month: number; hazard: number; atRisk: number } | undefined;
+  for (const { month, atRisk, lost } of usable) if (!best || lost / atRisk > best.hazard) best = { month, hazard: lost / atRisk, atRisk };
+  if (!best) return undefined;
+  const error = Math.sqrt((best.hazard * (1 - best.hazard)) / best.atRisk);
+  return best.hazard > 1.5 * middle && best.hazard - middle > 3 * error ? best : undefined;
+}
+
+/** One of the three sizes: the one with a lower limit above zero when it leaves 40 points, else the largest that does, else five losses. */
+export function recommendSize(matured: number, sizes: CensusPlan['sizes']): { subgroupSize: number; why: string } {
+  const points = (size: number): number => Math.floor(matured / size);
+  if (points(sizes.positiveLowerLimit) > MOST_POINTS) {
+    const size = rounded(Math.ceil(matured / MOST_POINTS));
+    return { subgroupSize: size, why: `${count(size)} accounts a point: many more than needed, so that ${points(size)} points stay readable` };
+  }
+  const useful = [sizes.positiveLowerLimit, sizes.seesHalving].filter((size) => size >= sizes.fiveLosses && points(size) >= WANTED_POINTS);
+  const size = useful[0] ?? sizes.fiveLosses;
+  if (size === sizes.positiveLowerLimit) {
+    return { subgroupSize: size, why: `${count(size)} accounts a point: large enough that a single very good point can show` };
+  }
+  if (size === sizes.seesHalving) {
+    return { subgroupSize: size, why: `${count(size)} accounts a point: churn cut by half would show within about ${SOON_POINTS} points` };
+  }
+  const larger = `; ${count(sizes.positiveLowerLimit)} would let a single very good point show, but leaves only ${points(sizes.positiveLowerLimit)} points`;
+  return { subgroupSize: size, why: `${count(size)} accounts a point: about five losses each, the least that can be judged${larger}` };
+}
+
+const count = (number: number): string => number.toLocaleString('en-GB');
+const oneDigit = (number: number): string => (number >= 10 ? count(Math.round(number)) : number.toFixed(1));
+
+function weeks(number: number): string {
+  if (number < 1) return `about ${Math.max(1, Math.round(number * 7))} days`;
+  const whole = Math.round(number);
+  return whole === 1 ? 'about a week' : `about ${whole} weeks`;
+}
