@@ -1,8 +1,8 @@
 import type { PictureInput } from '../verdict/types.ts';
-import { countOf, heldDate, percent, percentRange } from './figures.ts';
-import { shortTitle } from './header.ts';
+import { capitalised, countOf, heldDate, percent, percentRange } from './figures.ts';
 import { candidateWords, immatureWords, waitingWords } from './notes.ts';
 import { stretches } from './stretches.ts';
+import { afterTitle, shortTitle } from './title.ts';
 
 /** Longest alternative text, in characters. */
 const MOST = 1000;
@@ -65,7 +65,8 @@ function sentences(input: PictureInput): string[] {
 function finding(input: PictureInput): string {
   const { outcome, since, before, after, headline } = input.verdict;
   const title = shortTitle(input);
-  if ((outcome !== 'risen' && outcome !== 'fallen') || !after || !before) return `${title}: ${headline}`;
+  if ((outcome !== 'risen' && outcome !== 'fallen') || !after || !before)
+    return `${title}: ${afterTitle(headline, title)}`;
   const from = since
     ? since.start === null
       ? `from about point ${since.point}`
@@ -77,8 +78,4 @@ function finding(input: PictureInput): string {
 function tidy(text: string): string {
   const plain = text.replace(/\s+/g, ' ').trim();
   return plain === '' || /[.!?]$/.test(plain) ? plain : `${plain}.`;
-}
-
-function capitalised(text: string): string {
-  return text.charAt(0).toUpperCase() + text.slice(1);
 }

@@ -50,3 +50,7 @@ export function monthNumber(day: Day): number {
 export function countOf(count: number, one: string, many = `${one}s`): string {
   return `${grouped(count)}\u00a0${count === 1 ? one : many}`;
 }
+
+export function capitalised(text: string): string {
+  return text.charAt(0).toUpperCase() + text.slice(1);
+}

@@ -1,27 +1,10 @@
 import type { PictureInput } from '../verdict/types.ts';
-import { countOf, grouped, heldDate, percent, percentRange } from './figures.ts';
+import { capitalised, countOf, grouped, heldDate, percent, percentRange } from './figures.ts';
 import { EMBER, INK, LEAD_SIZE, LEVEL, LINE, MARGIN, QUIET, TEXT_SIZE, TITLE_SIZE, WIDTH } from './palette.ts';
 import type { PlacedText, Stroke } from './scene.ts';
 import { drawable, textWidth } from './textWidth.ts';
+import { afterTitle, shortTitle } from './title.ts';
 import { wrapEvenly } from './wrapText.ts';
-
-/** The verdict in a few words. */
-export function shortTitle(input: PictureInput): string {
-  switch (input.verdict.outcome) {
-    case 'risen':
-      return 'Churn has risen';
-    case 'fallen':
-      return 'Churn has fallen';
-    case 'steady':
-      return input.signals.some((signal) => signal.state === 'watching' && signal.speaks === 'shift')
-        ? 'Steady so far, one to watch'
-        : 'No sign that churn has moved';
-    case 'too-early':
-      return 'Too early to tell';
-    case 'cannot-say':
-      return 'These figures cannot tell';
-  }
-}
 
 /** What is counted, in the order a reader asks: what, of whom, how many a point, up to when. */
 export function countedLine(input: PictureInput): string {
@@ -102,16 +85,4 @@ export function header(input: PictureInput): {
     }
   }
   return { texts, strokes, bottom: y + 6 };
-}
-
-/** The headline without the words the title has just said. */
-function afterTitle(headline: string, title: string): string {
-  const said = headline.replace(/^(yes|no|not really)[,:]\s*/i, '');
-  if (!said.toLowerCase().startsWith(title.toLowerCase())) return headline;
-  const rest = said.slice(title.length);
-  return /^[:.,;]\s+\S/.test(rest) ? capitalised(rest.replace(/^[:.,;]\s+/, '')) : headline;
-}
-
-function capitalised(text: string): string {
-  return text.charAt(0).toUpperCase() + text.slice(1);
 }

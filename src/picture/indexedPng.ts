@@ -12,9 +12,11 @@ const MOST_COLORS = 256;
  * told apart at 5 bits a channel, averaged, and kept by frequency, they lose nothing an eye would find. The file is less than half as
  * large as with full colours, at a third of the time the quantiser behind sharp's palette option takes.
  * @param rgba four bytes a pixel, rows from the top; alpha is not looked at
+ * @throws  RangeError when the bytes are not four for each pixel
  * Format: PNG specification (ISO/IEC 15948), colour type 3.
  */
 export async function indexedPng(rgba: Uint8Array, width: number, height: number): Promise<Uint8Array> {
+  if (rgba.length !== 4 * width * height) throw new RangeError('indexedPng needs four bytes for each pixel');
   const pixels = wholePixels(rgba);
   const { palette, indexOf } = choosePalette(pixels);
   const rows = Buffer.alloc((width + 1) * height);

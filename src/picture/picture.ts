@@ -2,6 +2,7 @@ import type { PictureInput } from '../verdict/types.ts';
 import { altText } from './altText.ts';
 import { useShippedFonts } from './fonts.ts';
 import { layout } from './layout.ts';
+import { EMPTY_SCENE } from './scene.ts';
 import { spec } from './spec.ts';
 
 export interface Picture {
@@ -15,19 +16,37 @@ export interface Picture {
 /** Pixels of the PNG for one px of the drawing: 1080 px across, three for each of the 360 points a phone shows it at. */
 const DENSITY = 1.5;
 
-type Renderer = typeof import('./render.ts');
+interface Renderer {
+  readonly renderSvg: typeof import('./vectorDrawing.ts').renderSvg;
+  readonly renderPng: typeof import('./raster.ts').renderPng;
+}
+
 let renderer: Promise<Renderer> | undefined;
 
 /** The libraries behind the picture take a third of a second to load; they are loaded once, when first needed or warmed. */
 function loadRenderer(): Promise<Renderer> {
-  useShippedFonts();
-  renderer ??= import('./render.ts');
+  renderer ??= (async () => {
+    useShippedFonts();
+    const { openFonts, renderPng } = await import('./raster.ts');
+    const fontsOpen = openFonts();
+    const { renderSvg } = await import('./vectorDrawing.ts');
+    await fontsOpen;
+    return { renderSvg, renderPng };
+  })();
   return renderer;
 }
 
-/** Loads everything the first picture needs, so that a caller can overlap it with other waiting. */
+/**
+ * Loads everything the first picture needs and draws once with nothing in it, so that a caller can overlap it with other waiting.
+ * Safe to call and not wait for: a failure shows when a picture is drawn.
+ */
 export async function warmPicture(): Promise<void> {
-  await loadRenderer();
+  try {
+    const { renderSvg } = await loadRenderer();
+    await renderSvg(spec(EMPTY_SCENE));
+  } catch {
+    renderer = undefined;
+  }
 }
 
 /**

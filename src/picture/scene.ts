@@ -99,6 +99,23 @@ export interface Scene {
   readonly texts: readonly PlacedText[];
 }
 
+/** A drawing with nothing on it. */
+export const EMPTY_SCENE: Scene = {
+  widthPx: 8,
+  heightPx: 8,
+  frame: { left: 0, right: 8, top: 0, bottom: 8, xDomain: [0, 1], yDomain: [0, 1] },
+  slabs: [],
+  veils: [],
+  under: [],
+  band: [],
+  levels: [],
+  points: [],
+  lineWidth: 1,
+  over: [],
+  marks: [],
+  texts: [],
+};
+
 export interface Box {
   readonly left: number;
   readonly right: number;

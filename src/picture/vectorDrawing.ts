@@ -1,7 +1,5 @@
-import sharp from 'sharp';
 import { parse, View } from 'vega';
 import { compile, type TopLevelSpec } from 'vega-lite';
-import { indexedPng } from './indexedPng.ts';
 
 /** Vega-Lite to SVG, without a screen or a canvas. Anything Vega warns about is an error here. */
 export async function renderSvg(spec: TopLevelSpec): Promise<string> {
@@ -16,15 +14,6 @@ export async function renderSvg(spec: TopLevelSpec): Promise<string> {
   } finally {
     view.finalize();
   }
-}
-
-/** SVG to PNG at `density` pixels for one px of the drawing. */
-export async function renderPng(svg: string, density: number): Promise<Uint8Array> {
-  const drawn = sharp(Buffer.from(svg), { density: 72 * density })
-    .ensureAlpha()
-    .raw();
-  const { data, info } = await drawn.toBuffer({ resolveWithObject: true });
-  return indexedPng(data, info.width, info.height);
 }
 
 function complainingLogger() {

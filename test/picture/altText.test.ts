@@ -1,0 +1,57 @@
+import fc from 'fast-check';
+import { describe, expect, test } from 'vitest';
+import { altText } from '../../src/picture/altText.ts';
+import { makeInput } from './inputs.ts';
+import { makings, state } from './states.ts';
+
+const plain = (name: string): string => altText(state(name)).replaceAll('\u00a0', ' ');
+
+describe('altText', () => {
+  test('a rise is told first, with since when and both rates', () => {
+    expect(plain('risen')).toMatch(
+      /^Churn has risen for accounts starting from about 11 December 2024: about \d+\.\d % \([\d.]+–[\d.]+ %\), against \d+\.\d % \([\d.]+–[\d.]+ %\) before\./,
+    );
+  });
+
+  test('a fall is told first', () => {
+    expect(plain('fallen')).toMatch(/^Churn has fallen for accounts starting from about 7 August 2024/);
+  });
+
+  test('steady is never told without what could have been missed, when the verdict says it', () => {
+    expect(plain('steady')).toMatch(/^No sign that churn has moved: .*A rise to 8\.9 % or a fall to 3\.6 %/);
+  });
+
+  test('it says how many points there are, what is marked, and what is waiting', () => {
+    const text = plain('risen');
+    expect(text).toContain('The chart shows 57 points');
+    expect(text).toContain('Marked as standing, points 41 to 52: nine points in a row above the usual level');
+    expect(text).toContain('Marked as passed, point 12');
+    expect(text).toContain('Next point: 37 of 85 accounts so far, due about 3 December 2025');
+    expect(text).toContain('412 accounts are too young to be counted');
+    expect(plain('steady')).toContain('No point is flagged');
+  });
+
+  test('the verdict is said once when the headline begins with it', () => {
+    expect(plain('steady').match(/No sign that churn has moved/g)).toHaveLength(1);
+  });
+
+  test('without a chart it says that there is nothing to draw yet', () => {
+    expect(plain('too-early-none')).toMatch(/^Too early to tell: .*There is no point to draw yet\./);
+  });
+
+  test('it never passes 1000 characters, and never starts with anything but the finding', () => {
+    fc.assert(
+      fc.property(
+        fc.constantFrom(...Object.values(makings)),
+        fc.string({ unit: 'grapheme', maxLength: 3000 }),
+        fc.string({ unit: 'grapheme', maxLength: 3000 }),
+        (making, headline, subject) => {
+          const text = altText(makeInput({ ...making, headline, subject }));
+          expect(text.length).toBeLessThanOrEqual(1000);
+          expect(text).toMatch(/^(Churn has|No sign|Steady so far|Too early|These figures)/);
+        },
+      ),
+      { numRuns: 100 },
+    );
+  });
+});
