@@ -4,7 +4,7 @@ import type { Columns } from './columns.ts';
 import { TIME_PATTERN } from './dateText.ts';
 import { LONGEST_LINE_BYTES } from './fileStart.ts';
 import type { Layout } from './layout.ts';
-import { marksSql } from './rowRules.ts';
+import { idKindSql } from './rowRules.ts';
 import { firstRow, quoteName, quoteText, rowsOf } from './sql.ts';
 
 /** A record that the engine could not split into the columns. */
@@ -48,7 +48,7 @@ function dateTextSql(column: string, parsed: string): string {
 }
 
 /**
- * Reads the file once into table `raw`: key, start_day, start_text, end_day, end_text, segment, amount, amount_text, marks; the table's
+ * Reads the file once into table `raw`: key, start_day, start_text, end_day, end_text, segment, amount, amount_text, status, flag, id_kind; the table's
  * rowid is the row's ordinal. Days are filled where the text is an ISO date; every other text is kept beside, untouched but for a time
  * of day behind the date.
  */
@@ -66,6 +66,7 @@ export async function readRaw(
     `store_rejects = true, rejects_table = 'csv_errors', rejects_scan = 'csv_scans', rejects_limit = 0, ` +
     `buffer_size = ${BUFFER_BYTES}, max_line_size = ${LONGEST_LINE_BYTES * 2}, null_padding = ${layout.padded}, parallel = ${options.parallel})`;
   const id = columns.id === undefined ? undefined : `nullif(trim(${column(columns.id)}), '')`;
+  const text = (at: number | undefined): string => (at === undefined ? 'NULL::VARCHAR' : `nullif(trim(${column(at)}), '')`);
   const day = (name: string): string =>
     `CASE WHEN ${name} >= DATE '1900-01-01' AND ${name} <= DATE '9999-12-31' THEN (${name} - DATE '1970-01-01')::INTEGER END`;
   const amount = columns.amount === undefined ? undefined : column(columns.amount);
@@ -73,12 +74,13 @@ export async function readRaw(
   await connection.run(
     `CREATE OR REPLACE TABLE raw AS SELECT ${id === undefined ? 'NULL::UBIGINT' : `CASE WHEN ${id} IS NOT NULL THEN ${keySql(id, options.idKey)} END`} AS key, ` +
       `start_day, ${dateTextSql('start_source', 'start_day')} AS start_text, end_day, ${dateTextSql('end_source', 'end_day')} AS end_text, ` +
-      `segment, amount, ${amount === undefined ? 'NULL::VARCHAR' : `CASE WHEN amount IS NULL THEN ${amount} END`} AS amount_text, marks ` +
+      `segment, amount, ${amount === undefined ? 'NULL::VARCHAR' : `CASE WHEN amount IS NULL THEN ${amount} END`} AS amount_text, status, flag, id_kind ` +
       `FROM (SELECT *, ${day('start_date')} AS start_day, ${day('end_date')} AS end_day FROM (SELECT *, ` +
       `${column(columns.start)} AS start_source, ${dateSql(column(columns.start))} AS start_date, ` +
       `${column(columns.end)} AS end_source, ${dateSql(column(columns.end))} AS end_date, ` +
-      `${columns.segment === undefined ? 'NULL::VARCHAR' : `nullif(trim(${column(columns.segment)}), '')`} AS segment, ` +
-      `${amount === undefined ? 'NULL::DOUBLE' : `try_cast(${amount} AS DOUBLE)`} AS amount, ${marksSql(columns)} AS marks FROM ${source}))`,
+      `${text(columns.segment)} AS segment, ` +
+      `${amount === undefined ? 'NULL::DOUBLE' : `try_cast(${amount} AS DOUBLE)`} AS amount, ${text(columns.status)} AS status, ${text(columns.flag)} AS flag, ` +
+      `${columns.id === undefined ? '0::UTINYINT' : idKindSql(column(columns.id))} AS id_kind FROM ${source}))`,
   );
   const errors = await rowsOf(
     connection,

@@ -13,7 +13,7 @@ import { type Layout, layoutOf } from './layout.ts';
 import { findLines } from './lines.ts';
 import { type RawTable, readRaw } from './rawTable.ts';
 import { countLeftOut, type LeftOut, listRejected } from './rejects.ts';
-import { MARK, reasonSql, TRUE_END_SQL } from './rowRules.ts';
+import { ID_KIND, reasonSql, type TellingValues, tellingValues, TRUE_END_SQL } from './rowRules.ts';
 import { settleDates } from './settleDates.ts';
 import { mergeSpells } from './spells.ts';
 import { firstRow, rowsOf } from './sql.ts';
@@ -151,7 +151,7 @@ async function makeAccounts(connection: DuckDBConnection, path: string, read: Re
   const state = await firstRow(
     connection,
     `SELECT count(*)::INTEGER AS rows, count(start_text)::INTEGER AS start_texts, count(end_text)::INTEGER AS end_texts,
-       count(amount_text)::INTEGER AS amount_texts, count(*) FILTER (WHERE (marks & ${MARK.testId}) > 0)::INTEGER AS test_ids
+       count(amount_text)::INTEGER AS amount_texts, count(*) FILTER (WHERE id_kind = ${ID_KIND.test})::INTEGER AS test_ids
      FROM raw WHERE rowid >= ${above}`,
   );
   const dataRows = Number(state.rows);
@@ -166,9 +166,11 @@ async function makeAccounts(connection: DuckDBConnection, path: string, read: Re
   if (Number(state.amount_texts) > 0) await readAmounts(connection, 'raw');
 
   const key = columns.id === undefined ? 'hash(rowid)' : 'key';
+  const telling = await findTellingValues(connection, columns, above);
+  const reason = reasonSql(columns, telling, { testIds: Number(state.test_ids) <= dataRows * TEST_ID_SHARE });
   await connection.run(
     `CREATE VIEW judged AS SELECT n, key, start_day, ${TRUE_END_SQL} AS end_day, segment, amount, reason FROM (
-       SELECT rowid AS n, ${key} AS key, * EXCLUDE (key), ${reasonSql(columns, { testIds: Number(state.test_ids) <= dataRows * TEST_ID_SHARE })} AS reason
+       SELECT rowid AS n, ${key} AS key, * EXCLUDE (key), ${reason} AS reason
        FROM raw WHERE rowid >= ${above})`,
   );
   const leftOut: LeftOut[] = await countLeftOut(connection, 'judged', 'reason');
@@ -241,6 +243,16 @@ async function makeAccounts(connection: DuckDBConnection, path: string, read: Re
     rejected: listRejected(leftOut, { path, delimiter: layout.delimiter, columns, ragged: raggedBelow }),
     segments: segments.map((row) => ({ value: String(row.value), accounts: Number(row.accounts) })),
   };
+}
+
+async function findTellingValues(connection: DuckDBConnection, columns: Columns, above: number): Promise<TellingValues> {
+  const distinct = async (column: 'segment' | 'status' | 'flag'): Promise<string[]> => {
+    if (columns[column] === undefined) return [];
+    // Longer values are no such words, and a column of free text need not come over whole.
+    const sql = `SELECT DISTINCT ${column} AS value FROM raw WHERE ${column} IS NOT NULL AND strlen(${column}) <= 40 AND rowid >= ${above} LIMIT 100000`;
+    return (await rowsOf(connection, sql)).map((row) => String(row.value));
+  };
+  return tellingValues({ segments: await distinct('segment'), statuses: await distinct('status'), flags: await distinct('flag') });
 }
 
 async function withoutIds(connection: DuckDBConnection): Promise<{ duplicates: number; merged: boolean }> {

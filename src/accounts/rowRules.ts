@@ -1,6 +1,6 @@
 import type { Columns } from './columns.ts';
 import { NEVER_FROM, NO_DATE_UNTIL } from './dateText.ts';
-import { quoteName } from './sql.ts';
+import { quoteText } from './sql.ts';
 
 /** Every reason for which a row is left out, in the words that the channel shows. The order is the order of precedence. */
 export const REASONS = {
@@ -21,71 +21,80 @@ export const REASONS = {
 
 export type ReasonCode = keyof typeof REASONS;
 
-const TEST_WORDS = "'test', 'internal', 'demo', 'staff', 'employee', 'sandbox', 'dummy', 'qa'";
+const TEST_WORDS = ['test', 'internal', 'demo', 'staff', 'employee', 'sandbox', 'dummy', 'qa'];
+const YES_WORDS = ['true', 'yes', '1', 't', 'y', 'x', ...TEST_WORDS];
+const ENDED_WORDS = ['cancelled', 'canceled', 'churned', 'terminated', 'expired', 'closed', 'ended', 'lapsed', 'inactive', 'deactivated'];
+
+/** What an id looks like, as `id_kind`: a test account, the label of a total, or (0) an account. */
+export const ID_KIND = { account: 0, test: 1, total: 2 } as const;
 
 /**
- * Rules that look at text, one bit each, computed while the file is read:
- * 1  the id is a test account: it begins with test, internal, demo or dummy as a word of its own, or is an address at a domain that is
- *    reserved for examples (RFC 2606: example.com/.net/.org, .test, .example, .invalid, .localhost)
- * 2  the segment is exactly "test", "internal", "demo", "staff", … or a column such as is_test says yes
- * 4  segment or status contains the word trial
- * 8  the status says that the subscription ended
- * 16 the id is the label of a total ("Total", "Grand total", "Sum")
+ * SQL of the id's kind.
+ * A test account: the id begins with test, internal, demo or dummy as a word of its own, or is an address at a name that RFC 2606 reserves
+ * for tests and examples (example.com/.net/.org, .test, .example, .invalid, .localhost). A total: "Total", "Grand total", "Sum", ….
+ * A cheap look at the first letter comes before the patterns: patterns over a million ids are slow. No IN list of more than a few values:
+ * the engine would turn it into a join, and a join does not keep the rows in file order.
  */
-export const MARK = { testId: 1, testFlag: 2, trial: 4, ended: 8, total: 16 } as const;
+export function idKindSql(id: string): string {
+  const test =
+    '^(test|internal|demo|dummy)([^a-z]|$)|@([a-z0-9.-]+\\.)?(example\\.(com|net|org)|test|example|invalid|localhost)$';
+  return (
+    `CASE WHEN contains('tTiIdDgGsS', left(${id}, 1)) OR contains(${id}, '@') THEN ` +
+    `CASE WHEN regexp_matches(lower(${id}), '${test}') THEN ${ID_KIND.test} ` +
+    `WHEN regexp_matches(lower(${id}), '^(grand |sub ?)?(total|sum)s? *(:|$)') THEN ${ID_KIND.total} ELSE ${ID_KIND.account} END ` +
+    `ELSE ${ID_KIND.account} END::UTINYINT`
+  );
+}
 
-/** SQL of the marks. A cheap look at the first letters comes before every pattern: patterns over a million ids are slow. */
-export function marksSql(columns: Columns): string {
-  const column = (at: number): string => quoteName(`c${at}`);
-  const parts: string[] = [];
-  if (columns.id !== undefined) {
-    const id = column(columns.id);
-    parts.push(
-      `CASE WHEN lower(left(${id}, 4)) IN ('test', 'inte', 'demo', 'dumm') OR contains(${id}, '@') THEN ` +
-        `CASE WHEN regexp_matches(lower(${id}), '^(test|internal|demo|dummy)([^a-z]|$)|@([a-z0-9.-]+\\.)?(example\\.(com|net|org)|test|example|invalid|localhost)$') THEN ${MARK.testId} ELSE 0 END ELSE 0 END`,
-      `CASE WHEN lower(left(${id}, 3)) IN ('tot', 'gra', 'sum', 'sub') AND regexp_matches(lower(${id}), '^(grand |sub ?)?(total|sum)s?\\b *(:|$)') THEN ${MARK.total} ELSE 0 END`,
-    );
-  }
-  if (columns.segment !== undefined)
-    parts.push(`CASE WHEN lower(trim(${column(columns.segment)})) IN (${TEST_WORDS}) THEN ${MARK.testFlag} ELSE 0 END`);
-  if (columns.flag !== undefined) {
-    parts.push(
-      `CASE WHEN lower(trim(${column(columns.flag)})) IN ('true', 'yes', '1', 't', 'y', 'x', ${TEST_WORDS}) THEN ${MARK.testFlag} ELSE 0 END`,
-    );
-  }
-  for (const at of [columns.segment, columns.status]) {
-    if (at === undefined) continue;
-    parts.push(
-      `CASE WHEN contains(lower(${column(at)}), 'trial') AND regexp_matches(lower(${column(at)}), '(^|[^a-z])(trial|trialing|trialling)([^a-z]|$)') THEN ${MARK.trial} ELSE 0 END`,
-    );
-  }
-  if (columns.status !== undefined) {
-    parts.push(
-      `CASE WHEN lower(trim(${column(columns.status)})) IN ('cancelled', 'canceled', 'churned', 'terminated', 'expired', 'closed', 'ended', 'lapsed', 'inactive', 'deactivated') THEN ${MARK.ended} ELSE 0 END`,
-    );
-  }
-  return parts.length === 0 ? '0::UTINYINT' : `(${parts.map((part) => `(${part})::UTINYINT`).join(' | ')})`;
+/** The values of segment, status and flag columns that a rule speaks about, as they stand in the file. */
+export interface TellingValues {
+  readonly testSegments: readonly string[];
+  readonly trialSegments: readonly string[];
+  readonly trialStatuses: readonly string[];
+  readonly endedStatuses: readonly string[];
+  readonly testFlags: readonly string[];
 }
 
 /**
- * SQL of the reason a row is left out, NULL when it is kept; over columns n, key, start_day, start_text, end_day, end_text, amount, marks.
- * A trial is left out only while no amount above zero stands beside it: whoever paid is a customer, whatever the plan is called.
+ * Picks the telling ones among the distinct values. A segment marks a test account only when it is nothing but such a word: a plan
+ * called "Test Prep" is a plan. "trial" counts anywhere as a word of its own.
  */
-export function reasonSql(columns: Columns, use: { readonly testIds: boolean }): string {
-  const test = MARK.testFlag | (use.testIds ? MARK.testId : 0);
+export function tellingValues(distinct: { readonly segments: readonly string[]; readonly statuses: readonly string[]; readonly flags: readonly string[] }): TellingValues {
+  const word = (value: string): string => value.trim().toLowerCase();
+  const trial = (value: string): boolean => /(^|[^a-z])(trial|trialing|trialling)([^a-z]|$)/.test(word(value));
+  return {
+    testSegments: distinct.segments.filter((value) => TEST_WORDS.includes(word(value))),
+    trialSegments: distinct.segments.filter(trial),
+    trialStatuses: distinct.statuses.filter(trial),
+    endedStatuses: distinct.statuses.filter((value) => ENDED_WORDS.includes(word(value))),
+    testFlags: distinct.flags.filter((value) => YES_WORDS.includes(word(value))),
+  };
+}
+
+function oneOf(column: string, values: readonly string[]): string[] {
+  return values.length === 0 ? [] : [`${column} IN (${values.map(quoteText).join(', ')})`];
+}
+
+/**
+ * SQL of the reason a row is left out, NULL when it is kept; over columns key, id_kind, start_day, start_text, end_day, end_text, segment,
+ * amount, status, flag. A trial is left out only while no amount above zero stands beside it: whoever paid is a customer, whatever the plan
+ * is called.
+ */
+export function reasonSql(columns: Columns, telling: TellingValues, use: { readonly testIds: boolean }): string {
+  const internal = [...(use.testIds ? [`id_kind = ${ID_KIND.test}`] : []), ...oneOf('segment', telling.testSegments), ...oneOf('flag', telling.testFlags)];
+  const trial = [...oneOf('segment', telling.trialSegments), ...oneOf('status', telling.trialStatuses)];
+  const when = (conditions: readonly string[], code: ReasonCode, and = ''): string[] =>
+    conditions.length === 0 ? [] : [`WHEN (${conditions.join(' OR ')})${and} THEN '${code}'`];
   const cases = [
     ...(columns.id === undefined
       ? []
-      : [
-          `WHEN (marks & ${MARK.total}) > 0 AND start_day IS NULL THEN 'total-line'`,
-          "WHEN key IS NULL THEN 'id-missing'",
-        ]),
-    `WHEN (marks & ${test}) > 0 THEN 'internal'`,
-    `WHEN (marks & ${MARK.trial}) > 0 AND coalesce(amount, 0) <= 0 THEN 'trial'`,
+      : [`WHEN id_kind = ${ID_KIND.total} AND start_day IS NULL THEN 'total-line'`, "WHEN key IS NULL THEN 'id-missing'"]),
+    ...when(internal, 'internal'),
+    ...when(trial, 'trial', ' AND coalesce(amount, 0) <= 0'),
     "WHEN start_day IS NULL AND start_text IS NULL THEN 'start-missing'",
     `WHEN start_day IS NULL OR start_day <= ${NO_DATE_UNTIL} OR start_day >= ${NEVER_FROM} THEN 'start-unreadable'`,
     "WHEN end_day IS NULL AND end_text IS NOT NULL THEN 'end-unreadable'",
-    `WHEN (marks & ${MARK.ended}) > 0 AND (end_day IS NULL OR end_day <= ${NO_DATE_UNTIL} OR end_day >= ${NEVER_FROM}) THEN 'end-missing'`,
+    ...when(oneOf('status', telling.endedStatuses), 'end-missing', ` AND (end_day IS NULL OR end_day <= ${NO_DATE_UNTIL} OR end_day >= ${NEVER_FROM})`),
     `WHEN end_day > ${NO_DATE_UNTIL} AND end_day < start_day THEN 'end-before-start'`,
     "WHEN end_day = start_day THEN 'zero-length'",
   ];
