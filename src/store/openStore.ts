@@ -30,19 +30,28 @@ export interface StoreOptions {
  *   SETTINGS_INVALID (folder not writable, server not reachable)
  */
 export async function openStore(options: StoreOptions): Promise<Store> {
-  const { dataFolder, databaseUrl, now, log } = options;
-  const settings = { ...QUEUE_SETTINGS, ...options.queue };
+  const { dataFolder, databaseUrl, log } = options;
   const database = databaseUrl === undefined ? await openEmbedded(dataFolder) : await openServer(databaseUrl, log);
   try {
-    const queue = await database.alone(async () => {
-      await migrate(database, MIGRATIONS, now);
-      return openQueue(database, settings, log);
-    });
-    return storeOver(database, queue, settings, now, log);
+    return await storeOn(database, options);
   } catch (error) {
     await database.close();
     throw error;
   }
+}
+
+/** The store on a database that is already open; `close` closes it too. */
+export async function storeOn(
+  database: Database,
+  options: Pick<StoreOptions, 'now' | 'log' | 'queue'>,
+): Promise<Store> {
+  const { now, log } = options;
+  const settings = { ...QUEUE_SETTINGS, ...options.queue };
+  const queue = await database.alone(async () => {
+    await migrate(database, MIGRATIONS, now);
+    return openQueue(database, settings, log);
+  });
+  return storeOver(database, queue, settings, now, log);
 }
 
 function storeOver(

@@ -1,6 +1,9 @@
 import { beforeAll, describe, expect, test } from 'vitest';
+import { storeOn } from '../../src/store/openStore.ts';
+import type { QueueSettings } from '../../src/store/queue.ts';
+import type { Database } from '../../src/store/sql.ts';
 import type { InboxEntry, Store } from '../../src/store/types.ts';
-import { type Engine, NOON, onBothEngines, onRealServer, opened } from './support/engines.ts';
+import { behind, type Engine, NOON, onBothEngines, onRealServer, opened } from './support/engines.ts';
 import { entry } from './support/samples.ts';
 
 const DAY_MS = 86_400_000;
@@ -58,8 +61,16 @@ onBothEngines('the inbox', (engine) => {
   });
 
   describe('working', () => {
+    // One database for all of these, since opening the embedded engine takes a second; each test leaves its queue empty.
+    let database: Database;
+    const opened = (queue: Partial<QueueSettings> = {}) =>
+      storeOn({ ...database, close: async () => undefined }, { now: () => NOON, queue });
+    beforeAll(async () => {
+      database = await behind(await engine.migrated());
+    });
+
     test('what was received is worked with its payload to the letter, without waiting for a poll', async () => {
-      const store = await opened(await engine.migrated(), { queue: NO_POLLING });
+      const store = await opened(NO_POLLING);
       const seen: unknown[] = [];
       await store.work(async (each) => void seen.push(each), 2);
       const odd = entry({ payload: { text: "it's\0 odd \ud83c ; -- 🌱", nothing: null, list: [1, { a: true }] } });
@@ -76,7 +87,7 @@ onBothEngines('the inbox', (engine) => {
     });
 
     test('entries received before the work began are worked when it does', async () => {
-      const store = await opened(await engine.migrated(), { queue: NO_POLLING });
+      const store = await opened(NO_POLLING);
       const waiting = [entry(), entry(), entry()];
       for (const each of waiting) await store.receive(each);
       const seen: string[] = [];
@@ -87,7 +98,7 @@ onBothEngines('the inbox', (engine) => {
     });
 
     test('at most as many at a time as asked, and that many', async () => {
-      const store = await opened(await engine.migrated(), { queue: NO_POLLING });
+      const store = await opened(NO_POLLING);
       let running = 0;
       let most = 0;
       const full = gate();
@@ -105,7 +116,7 @@ onBothEngines('the inbox', (engine) => {
     });
 
     test('a failing entry is tried four times, told which is the last, and does not stop the others', async () => {
-      const store = await opened(await engine.migrated(), { queue: { pollMs: 50, retrySeconds: 0 } });
+      const store = await opened({ pollMs: 50, retrySeconds: 0 });
       const attempts: { attempt: number; lastAttempt: boolean }[] = [];
       const others: string[] = [];
       const bad = entry();
@@ -129,7 +140,7 @@ onBothEngines('the inbox', (engine) => {
     });
 
     test('an entry that fails once and then works is done', async () => {
-      const store = await opened(await engine.migrated(), { queue: { pollMs: 50, retrySeconds: 0 } });
+      const store = await opened({ pollMs: 50, retrySeconds: 0 });
       const attempts: number[] = [];
       await store.work(async ({ attempt }) => {
         attempts.push(attempt);
@@ -142,21 +153,25 @@ onBothEngines('the inbox', (engine) => {
     });
 
     test('waiting for the end gives up after its time and says how much is left', async () => {
-      const store = await opened(await engine.migrated());
+      const store = await opened();
       await store.drained(1);
       await store.receive(entry());
       await store.receive(entry());
       await expect(store.drained(1)).rejects.toThrow('2 received entries');
+      await store.work(async () => undefined, 1);
+      await store.drained(20_000);
       await store.close();
     });
 
     test('a second handler is refused', async () => {
-      const store = await opened(await engine.migrated());
+      const store = await opened();
       await store.work(async () => undefined, 1);
       await expect(store.work(async () => undefined, 1)).rejects.toThrow('already');
       await store.close();
     });
+  });
 
+  describe('closing', () => {
     test('closing waits for what is running', async () => {
       const place = await engine.migrated();
       const store = await opened(place);

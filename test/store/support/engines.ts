@@ -1,6 +1,10 @@
-import { cp, mkdtemp, rm } from 'node:fs/promises';
+import { randomUUID } from 'node:crypto';
+import { existsSync, readFileSync } from 'node:fs';
+import { cp, mkdir, mkdtemp, rename, rm } from 'node:fs/promises';
+import { createRequire } from 'node:module';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
+import { PGlite } from '@electric-sql/pglite';
 import { afterAll, describe } from 'vitest';
 import { openEmbedded } from '../../../src/store/embeddedSql.ts';
 import { openStore, type StoreOptions } from '../../../src/store/openStore.ts';
@@ -20,9 +24,11 @@ export interface Place {
 
 export interface Engine {
   readonly name: 'embedded' | 'server';
-  /** an empty place, its schema not made */
+  /** as on a fresh machine: no folder, or an empty database */
+  untouched(): Promise<Place>;
+  /** the same, but for the engine's own files, which take long to make */
   bare(): Promise<Place>;
-  /** an empty place with the schema made */
+  /** with our schema made */
   migrated(): Promise<Place>;
 }
 
@@ -35,18 +41,39 @@ export async function temporaryFolder(): Promise<string> {
   return folder;
 }
 
+const require = createRequire(import.meta.url);
+const PGLITE_VERSION: string = JSON.parse(
+  readFileSync(join(require.resolve('@electric-sql/pglite'), '../../package.json'), 'utf8'),
+).version;
+/** An engine's files as they are before anything of ours: kept between runs, for they only depend on the engine's version. */
+const ENGINE_FILES = new URL(`../../../node_modules/.ebb-test/pglite-${PGLITE_VERSION}`, import.meta.url).pathname;
+
+async function engineFiles(): Promise<string> {
+  if (!existsSync(ENGINE_FILES)) {
+    const draft = `${ENGINE_FILES}-${randomUUID()}`;
+    await mkdir(draft, { recursive: true });
+    await (await PGlite.create(draft)).close();
+    // Whole or not at all; when another test file was quicker, its copy is as good.
+    await rename(draft, ENGINE_FILES).catch(() => rm(draft, { recursive: true, force: true }));
+  }
+  return ENGINE_FILES;
+}
+
 let template: Promise<string> | undefined;
 
 const embedded: Engine = {
   name: 'embedded',
-  bare: async () => ({ dataFolder: await temporaryFolder() }),
+  untouched: async () => ({ dataFolder: await temporaryFolder() }),
+  async bare() {
+    const dataFolder = await temporaryFolder();
+    await cp(await engineFiles(), join(dataFolder, 'postgres'), { recursive: true });
+    return { dataFolder };
+  },
   async migrated() {
-    // Making the engine's files takes seconds; copying them does not.
     template ??= (async () => {
-      const folder = await temporaryFolder();
-      const store = await openStore({ dataFolder: folder, now: () => NOON });
-      await store.close();
-      return folder;
+      const place = await embedded.bare();
+      await (await openStore({ ...place, now: () => NOON })).close();
+      return place.dataFolder;
     })();
     const dataFolder = await temporaryFolder();
     await cp(await template, dataFolder, { recursive: true });
@@ -69,6 +96,7 @@ export const server: TestServer | string = await startedServer();
 
 const onServer: Engine = {
   name: 'server',
+  untouched: () => onServer.bare(),
   async bare() {
     if (typeof server === 'string') throw new Error(server);
     return { dataFolder: await temporaryFolder(), databaseUrl: await server.database() };
