@@ -21,13 +21,26 @@ export async function takeCensus(table: AccountTable, request: CensusRequest): P
   const { connection } = table;
   const maturedUntil = lastMaturedStart(request.asOf, request.tenure, request.settleDays);
   const segmentNames =
-    request.segment === undefined && table.report.segments.length > 1 ? table.report.segments.slice(0, SEGMENTS).map(({ value }) => value) : [];
+    request.segment === undefined && table.report.segments.length > 1
+      ? table.report.segments.slice(0, SEGMENTS).map(({ value }) => value)
+      : [];
   const rows = await rowsOf(connection, censusSql(table.table, request, maturedUntil, segmentNames));
   const starts = await startsFrom(table, maturedUntil - 2 * QUARTER_DAYS, request.segment);
 
-  const all: { accounts: number; lost: number; first: Day; last: Day; segments: Map<string, { accounts: number; lost: number }> }[] = [];
+  const all: {
+    accounts: number;
+    lost: number;
+    first: Day;
+    last: Day;
+    segments: Map<string, { accounts: number; lost: number }>;
+  }[] = [];
   for (const row of rows) {
-    const [accounts, lost, first, last] = [Number(row.accounts), Number(row.lost), Number(row.first_start), Number(row.last_start)];
+    const [accounts, lost, first, last] = [
+      Number(row.accounts),
+      Number(row.lost),
+      Number(row.first_start),
+      Number(row.last_start),
+    ];
     const at = Number(row.subgroup);
     const subgroup = all[at] ?? { accounts: 0, lost: 0, first, last, segments: new Map() };
     all[at] = subgroup;
@@ -65,7 +78,13 @@ export async function takeCensus(table: AccountTable, request: CensusRequest): P
 }
 
 function checkSize(request: CensusRequest): void {
-  if (Number.isInteger(request.subgroupSize) && request.subgroupSize >= 1 && Number.isInteger(request.settleDays) && request.settleDays >= 0) return;
+  if (
+    Number.isInteger(request.subgroupSize) &&
+    request.subgroupSize >= 1 &&
+    Number.isInteger(request.settleDays) &&
+    request.settleDays >= 0
+  )
+    return;
   throw new EbbError(
     'OPTION_INVALID',
     `a subgroup size of ${request.subgroupSize} with ${request.settleDays} days to settle cannot be used`,
@@ -104,7 +123,13 @@ function startOf(starts: readonly Starts[], k: number): Day | undefined {
 }
 
 /** Matured accounts a week over the last quarter of a year in which accounts started and have matured. */
-async function inflow(table: AccountTable, segment: string | undefined, maturedUntil: Day, lastStart: Day | undefined, known: readonly Starts[]): Promise<number> {
+async function inflow(
+  table: AccountTable,
+  segment: string | undefined,
+  maturedUntil: Day,
+  lastStart: Day | undefined,
+  known: readonly Starts[],
+): Promise<number> {
   if (lastStart === undefined) return 0;
   const to = Math.min(maturedUntil, lastStart);
   const from = Math.max(to - QUARTER_DAYS + 1, Math.min(table.report.firstStart, to));
@@ -113,8 +138,14 @@ async function inflow(table: AccountTable, segment: string | undefined, maturedU
   return (count * 7) / (to - from + 1);
 }
 
-function segmentCounts(names: readonly string[], finished: readonly { segments: ReadonlyMap<string, { accounts: number; lost: number }> }[]): SegmentCounts[] {
-  const pooled = !names.includes(OTHER_SEGMENT) && finished.some(({ segments }) => segments.has(OTHER_SEGMENT)) ? [OTHER_SEGMENT] : [];
+function segmentCounts(
+  names: readonly string[],
+  finished: readonly { segments: ReadonlyMap<string, { accounts: number; lost: number }> }[],
+): SegmentCounts[] {
+  const pooled =
+    !names.includes(OTHER_SEGMENT) && finished.some(({ segments }) => segments.has(OTHER_SEGMENT))
+      ? [OTHER_SEGMENT]
+      : [];
   if (names.length === 0) return [];
   return [...names, ...pooled].map((segment) => ({
     segment,

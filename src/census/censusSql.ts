@@ -14,8 +14,16 @@ export const OTHER_SEGMENT = 'other';
  * @param maturedUntil  the last start day that has matured
  * @param segments      values counted by themselves; all others are pooled; none: no split
  */
-export function censusSql(table: string, request: CensusRequest, maturedUntil: Day, segments: readonly string[]): string {
-  const segment = segments.length === 0 ? 'NULL' : `CASE WHEN segment IN (${segments.map(text).join(', ')}) THEN segment ELSE ${text(OTHER_SEGMENT)} END`;
+export function censusSql(
+  table: string,
+  request: CensusRequest,
+  maturedUntil: Day,
+  segments: readonly string[],
+): string {
+  const segment =
+    segments.length === 0
+      ? 'NULL'
+      : `CASE WHEN segment IN (${segments.map(text).join(', ')}) THEN segment ELSE ${text(OTHER_SEGMENT)} END`;
   const only = request.segment === undefined ? '' : ` AND segment = ${text(request.segment)}`;
   const subgroup = `CAST(FLOOR(place / ${request.subgroupSize}) AS INTEGER)`;
   return `

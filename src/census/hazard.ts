@@ -26,7 +26,12 @@ const LONGEST = 48;
  * One aggregated query: accounts by (months observed, month of loss).
  * Source: Kaplan and Meier (1958), "Nonparametric estimation from incomplete observations" (cited from memory).
  */
-export async function hazardByMonth(table: AccountTable, asOf: Day, settleDays: number, segment?: string): Promise<TenureCounts> {
+export async function hazardByMonth(
+  table: AccountTable,
+  asOf: Day,
+  settleDays: number,
+  segment?: string,
+): Promise<TenureCounts> {
   const date = (day: string): string => `(DATE '1970-01-01' + ${day})`;
   const only = segment === undefined ? '' : ` AND segment = '${segment.replaceAll("'", "''")}'`;
   const rows = await rowsOf(
@@ -52,7 +57,10 @@ export async function hazardByMonth(table: AccountTable, asOf: Day, settleDays: 
       atRisk: count(({ observed, loss }) => observed >= month && loss >= month),
       lost: count(({ observed, loss }) => observed >= month && loss === month),
     });
-    byTenure.push({ matured: count(({ observed }) => observed >= month), lost: count(({ observed, loss }) => observed >= month && loss <= month) });
+    byTenure.push({
+      matured: count(({ observed }) => observed >= month),
+      lost: count(({ observed, loss }) => observed >= month && loss <= month),
+    });
   }
   return { months, byTenure };
 }

@@ -37,11 +37,25 @@ export async function planCensus(table: AccountTable, partial: PlanRequest): Pro
   const size = partial.subgroupSize
     ? { subgroupSize: partial.subgroupSize, why: `${count(partial.subgroupSize)} accounts a point, as asked` }
     : recommendSize(matured, sizes);
-  const waits = perWeek > 0 ? `; at about ${oneDigit(perWeek)} new accounts a week a point takes ${weeks(size.subgroupSize / perWeek)}` : '';
-  return { tenure: chosen.tenure, tenureWhy: chosen.why, subgroupSize: size.subgroupSize, sizeWhy: `${size.why}${waits}`, sizes, rate };
+  const waits =
+    perWeek > 0
+      ? `; at about ${oneDigit(perWeek)} new accounts a week a point takes ${weeks(size.subgroupSize / perWeek)}`
+      : '';
+  return {
+    tenure: chosen.tenure,
+    tenureWhy: chosen.why,
+    subgroupSize: size.subgroupSize,
+    sizeWhy: `${size.why}${waits}`,
+    sizes,
+    rate,
+  };
 }
 
-async function maturedCounts(table: AccountTable, tenure: Tenure, partial: PlanRequest): Promise<{ matured: number; lost: number; perWeek: number }> {
+async function maturedCounts(
+  table: AccountTable,
+  tenure: Tenure,
+  partial: PlanRequest,
+): Promise<{ matured: number; lost: number; perWeek: number }> {
   const until = lastMaturedStart(partial.asOf, tenure, partial.settleDays);
   const only = partial.segment === undefined ? '' : ` AND segment = '${partial.segment.replaceAll("'", "''")}'`;
   const row = await firstRow(
@@ -64,37 +78,55 @@ export function recommendTenure(counts: TenureCounts): { tenure: Tenure; why: st
   if (peak) {
     const after = TENURES.find((n) => n >= peak.month) ?? peak.month;
     const percent = (peak.hazard * 100).toFixed(1);
-    const when = `most accounts that leave do so in month ${peak.month} (${percent} % of those still there)`;
-    if (points(after) >= WANTED_POINTS) return { tenure: months(after), why: `read at ${tenureInWords(months(after))}, just after the riskiest time: ${when}` };
+    const when = `month ${peak.month}, in which ${percent} % of those still there leave`;
+    if (points(after) >= WANTED_POINTS)
+      return {
+        tenure: months(after),
+        why: `read at ${tenureInWords(months(after))}, just after the first risky time, ${when}`,
+      };
     const earlier = feasible.filter((n) => n < after).at(-1);
     if (earlier !== undefined) {
       return {
         tenure: months(earlier),
-        why: `read at ${tenureInWords(months(earlier))}: ${when}, but too few accounts have got that far yet`,
+        why: `read at ${tenureInWords(months(earlier))}: the first risky time is ${when}, but too few accounts have got that far yet`,
       };
     }
   }
   const even = feasible.includes(3) ? 3 : feasible[0];
   if (even !== undefined) {
-    return { tenure: months(even), why: `read at ${tenureInWords(months(even))}: accounts leave evenly, with no time at which many more go than at others` };
+    return {
+      tenure: months(even),
+      why: `read at ${tenureInWords(months(even))}: accounts leave evenly, with no time at which many more go than at others`,
+    };
   }
   // Too little data for 40 points at any of them: the one that gives most.
   const most = [...TENURES].sort((a, b) => points(b) - points(a) || a - b)[0] ?? 1;
   const long = TENURES.filter((n) => points(n) >= 0.9 * points(most))[0] ?? most;
-  return { tenure: months(long), why: `read at ${tenureInWords(months(long))}: with so few accounts, this tenure gives the most to look at` };
+  return {
+    tenure: months(long),
+    why: `read at ${tenureInWords(months(long))}: with so few accounts, this tenure gives the most to look at`,
+  };
 }
 
-/** The month with the highest hazard, when it stands out. */
+/** A peak this close to the highest is taken as well: the earlier of the two answers sooner. Our choice, no source. */
+const NEARLY_AS_HIGH = 2 / 3;
+
+/**
+ * The first month whose hazard stands out: half again the middle month's, by three standard errors, and not far below the highest. With
+ * several risky times, such as renewals, the earliest answers soonest.
+ */
 function hazardPeak(counts: TenureCounts): { month: number; hazard: number } | undefined {
-  const usable = counts.months.filter(({ atRisk, lost }) => atRisk >= 100 && lost >= 10);
+  const usable = counts.months
+    .filter(({ atRisk, lost }) => atRisk >= 100 && lost >= 10)
+    .map(({ month, atRisk, lost }) => ({ month, atRisk, hazard: lost / atRisk }));
   if (usable.length < 2) return undefined;
-  const hazards = usable.map(({ atRisk, lost }) => lost / atRisk).sort((a, b) => a - b);
+  const hazards = usable.map(({ hazard }) => hazard).sort((a, b) => a - b);
   const middle = hazards[Math.floor((hazards.length - 1) / 2)] ?? 0;
-  let best: { month: number; hazard: number; atRisk: number } | undefined;
-  for (const { month, atRisk, lost } of usable) if (!best || lost / atRisk > best.hazard) best = { month, hazard: lost / atRisk, atRisk };
-  if (!best) return undefined;
-  const error = Math.sqrt((best.hazard * (1 - best.hazard)) / best.atRisk);
-  return best.hazard > 1.5 * middle && best.hazard - middle > 3 * error ? best : undefined;
+  const highest = hazards.at(-1) ?? 0;
+  return usable.find(({ hazard, atRisk }) => {
+    const error = Math.sqrt((hazard * (1 - hazard)) / atRisk);
+    return hazard >= NEARLY_AS_HIGH * highest && hazard > 1.5 * middle && hazard - middle > 3 * error;
+  });
 }
 
 /** One of the three sizes: the one with a lower limit above zero when it leaves 40 points, else the largest that does, else five losses. */
@@ -102,18 +134,32 @@ export function recommendSize(matured: number, sizes: CensusPlan['sizes']): { su
   const points = (size: number): number => Math.floor(matured / size);
   if (points(sizes.positiveLowerLimit) > MOST_POINTS) {
     const size = rounded(Math.ceil(matured / MOST_POINTS));
-    return { subgroupSize: size, why: `${count(size)} accounts a point: many more than needed, so that ${points(size)} points stay readable` };
+    return {
+      subgroupSize: size,
+      why: `${count(size)} accounts a point: many more than needed, so that ${points(size)} points stay readable`,
+    };
   }
-  const useful = [sizes.positiveLowerLimit, sizes.seesHalving].filter((size) => size >= sizes.fiveLosses && points(size) >= WANTED_POINTS);
+  const useful = [sizes.positiveLowerLimit, sizes.seesHalving].filter(
+    (size) => size >= sizes.fiveLosses && points(size) >= WANTED_POINTS,
+  );
   const size = useful[0] ?? sizes.fiveLosses;
   if (size === sizes.positiveLowerLimit) {
-    return { subgroupSize: size, why: `${count(size)} accounts a point: large enough that a single very good point can show` };
+    return {
+      subgroupSize: size,
+      why: `${count(size)} accounts a point: large enough that a single very good point can show`,
+    };
   }
   if (size === sizes.seesHalving) {
-    return { subgroupSize: size, why: `${count(size)} accounts a point: churn cut by half would show within about ${SOON_POINTS} points` };
+    return {
+      subgroupSize: size,
+      why: `${count(size)} accounts a point: churn cut by half would show within about ${SOON_POINTS} points`,
+    };
   }
   const larger = `; ${count(sizes.positiveLowerLimit)} would let a single very good point show, but leaves only ${points(sizes.positiveLowerLimit)} points`;
-  return { subgroupSize: size, why: `${count(size)} accounts a point: about five losses each, the least that can be judged${larger}` };
+  return {
+    subgroupSize: size,
+    why: `${count(size)} accounts a point: about five losses each, the least that can be judged${larger}`,
+  };
 }
 
 const count = (number: number): string => number.toLocaleString('en-GB');

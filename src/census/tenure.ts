@@ -37,6 +37,10 @@ export function lastMaturedStart(asOf: Day, tenure: Tenure, settleDays: number):
 /** @throws EbbError OPTION_INVALID */
 export function checkTenure(tenure: Tenure): void {
   if (!Number.isInteger(tenure.count) || tenure.count < 1 || tenurePoint(0, tenure) > 36_600) {
-    throw new EbbError('OPTION_INVALID', `a tenure of ${tenureInWords(tenure)} cannot be used`, 'Give a whole number of days, weeks or months, such as "3 months".');
+    throw new EbbError(
+      'OPTION_INVALID',
+      `a tenure of ${tenureInWords(tenure)} cannot be used`,
+      'Give a whole number of days, weeks or months, such as "3 months".',
+    );
   }
 }

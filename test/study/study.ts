@@ -1,0 +1,97 @@
+import { mkdtemp, rm, writeFile } from 'node:fs/promises';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+import { simulateHistory } from '../../fixtures/generate/history.ts';
+import { toCsv } from '../../fixtures/generate/csv.ts';
+import type { ScenarioName } from '../../fixtures/generate/scenarios.ts';
+import { openEngine } from '../../src/accounts/engine.ts';
+import { readExport } from '../../src/accounts/readExport.ts';
+import { answerQuestion } from '../../src/answers/answerQuestion.ts';
+import type { Outcome } from '../../src/verdict/types.ts';
+
+/** What one simulated export was read as, against its truth. */
+export interface StudyCase {
+  readonly scenario: ScenarioName;
+  readonly seed: number;
+  readonly outcome: Outcome;
+  readonly points: number;
+  readonly subgroupSize: number | null;
+  /** whether the point in which the change truly falls is in the candidate set; null unless read as moved where something moved */
+  readonly startInCandidates: boolean | null;
+}
+
+export const STUDY_SCENARIOS: readonly ScenarioName[] = ['rise', 'halving', 'no-shift', 'mix', 'immature'];
+
+/** Reading that is right; for the unchanged scenarios anything but "moved" is. */
+export function isMoved(outcome: Outcome): boolean {
+  return outcome === 'risen' || outcome === 'fallen';
+}
+
+/**
+ * Runs fresh exports through the whole program, as a newcomer would: file in, question without any choice made, verdict out.
+ * @param each  exports per scenario
+ */
+export async function runStudy(each: number, firstSeed: number, scenarios = STUDY_SCENARIOS): Promise<StudyCase[]> {
+  const folder = await mkdtemp(join(tmpdir(), 'ebbline-study-'));
+  const cases: StudyCase[] = [];
+  try {
+    for (const [s, scenario] of scenarios.entries()) {
+      for (let i = 0; i < each; i++) cases.push(await runOne(scenario, firstSeed + s * 100_000 + i, folder));
+    }
+  } finally {
+    await rm(folder, { recursive: true, force: true });
+  }
+  return cases;
+}
+
+async function runOne(scenario: ScenarioName, seed: number, folder: string): Promise<StudyCase> {
+  const accounts = simulateHistory(scenario, seed);
+  const path = join(folder, `${scenario}-${seed}.csv`);
+  await writeFile(path, toCsv(accounts, undefined, seed).bytes);
+  const engine = await openEngine();
+  try {
+    const table = await readExport(engine, path, {});
+    const answer = await answerQuestion(table, { kind: 'ask' }, { subject: scenario, picture: false, clock: () => 0, readMs: 0 });
+    const { verdict, dates } = answer;
+    const changed = accounts.find((account) => account.shifted);
+    let startInCandidates: boolean | null = null;
+    if (changed && verdict.since) {
+      const truePoint = dates.findIndex((date) => date.lastStart !== null && date.lastStart >= changed.start) + 1;
+      const [first, last] = verdict.since.candidates;
+      // A change that falls inside a point may show from that point or from the next: the step between points lies at either end of it.
+      startInCandidates = truePoint > 0 && first <= truePoint + 1 && truePoint <= last;
+    }
+    return {
+      scenario,
+      seed,
+      outcome: verdict.outcome,
+      points: dates.length,
+      subgroupSize: answer.chart?.subgroupSize ?? null,
+      startInCandidates,
+    };
+  } finally {
+    await engine.close();
+    await rm(path, { force: true });
+  }
+}
+
+/** Counts per outcome, and how often the true start lay among the candidates. */
+export function summarise(cases: readonly StudyCase[]) {
+  return STUDY_SCENARIOS.flatMap((scenario) => {
+    const own = cases.filter((entry) => entry.scenario === scenario);
+    if (own.length === 0) return [];
+    const outcomes: Partial<Record<Outcome, number>> = {};
+    for (const { outcome } of own) outcomes[outcome] = (outcomes[outcome] ?? 0) + 1;
+    const dated = own.filter((entry) => entry.startInCandidates !== null);
+    return [
+      {
+        scenario,
+        exports: own.length,
+        outcomes,
+        moved: own.filter((entry) => isMoved(entry.outcome)).length,
+        dated: dated.length,
+        startInCandidates: dated.filter((entry) => entry.startInCandidates).length,
+      },
+    ];
+  });
+}
