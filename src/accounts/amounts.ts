@@ -20,6 +20,8 @@ export async function readAmounts(connection: DuckDBConnection, table: string): 
   );
   if (comma === true) {
     // Whole thousands such as "1.234" were taken for 1.234 by the first, plain reading; the column has shown what its points mean.
-    await connection.run(`UPDATE ${table} SET amount = amount * 1000 WHERE amount_text IS NULL AND amount <> floor(amount)`);
+    await connection.run(
+      `UPDATE ${table} SET amount = amount * 1000 WHERE amount_text IS NULL AND amount <> floor(amount)`,
+    );
   }
 }

@@ -31,7 +31,9 @@ export async function loadAccounts(engine: Engine, parquet: Uint8Array, report: 
   const connection = await engine.open();
   try {
     await writeFile(file, parquet, { mode: 0o600 });
-    await connection.run(`CREATE TABLE accounts AS SELECT key, start_day, end_day, segment, amount, returned FROM read_parquet(${quoteText(file)})`);
+    await connection.run(
+      `CREATE TABLE accounts AS SELECT key, start_day, end_day, segment, amount, returned FROM read_parquet(${quoteText(file)})`,
+    );
     return { connection, table: 'accounts', report };
   } catch (error) {
     engine.release(connection);

@@ -66,7 +66,8 @@ export async function readRaw(
     `store_rejects = true, rejects_table = 'csv_errors', rejects_scan = 'csv_scans', rejects_limit = 0, ` +
     `buffer_size = ${BUFFER_BYTES}, max_line_size = ${LONGEST_LINE_BYTES * 2}, null_padding = ${layout.padded}, parallel = ${options.parallel})`;
   const id = columns.id === undefined ? undefined : `nullif(trim(${column(columns.id)}), '')`;
-  const text = (at: number | undefined): string => (at === undefined ? 'NULL::VARCHAR' : `nullif(trim(${column(at)}), '')`);
+  const text = (at: number | undefined): string =>
+    at === undefined ? 'NULL::VARCHAR' : `nullif(trim(${column(at)}), '')`;
   const day = (name: string): string =>
     `CASE WHEN ${name} >= DATE '1900-01-01' AND ${name} <= DATE '9999-12-31' THEN (${name} - DATE '1970-01-01')::INTEGER END`;
   const amount = columns.amount === undefined ? undefined : column(columns.amount);

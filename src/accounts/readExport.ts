@@ -13,7 +13,7 @@ import { type Layout, layoutOf } from './layout.ts';
 import { findLines } from './lines.ts';
 import { type RawTable, readRaw } from './rawTable.ts';
 import { countLeftOut, type LeftOut, listRejected } from './rejects.ts';
-import { ID_KIND, reasonSql, type TellingValues, tellingValues, TRUE_END_SQL } from './rowRules.ts';
+import { ID_KIND, reasonSql, type TellingValues, TRUE_END_SQL, tellingValues } from './rowRules.ts';
 import { settleDates } from './settleDates.ts';
 import { mergeSpells } from './spells.ts';
 import { firstRow, rowsOf } from './sql.ts';
@@ -53,7 +53,13 @@ class NeedsCopy extends Error {
   }
 }
 
-async function readCopy(engine: Engine, path: string, start: FileStart, encoding: Encoding, options: ReadOptions): Promise<AccountTable> {
+async function readCopy(
+  engine: Engine,
+  path: string,
+  start: FileStart,
+  encoding: Encoding,
+  options: ReadOptions,
+): Promise<AccountTable> {
   const copy = join(engine.folder, `${randomUUID()}.csv`);
   try {
     await utf8Copy(path, copy, encoding, start.markBytes);
@@ -76,7 +82,9 @@ async function readFile(
   const columns = recogniseColumns(layout, options.columns);
   const connection = await engine.open(path);
   try {
-    const raw = await withProgress(connection, options.onProgress, () => readRows(connection, path, layout, columns, options, start, isCopy));
+    const raw = await withProgress(connection, options.onProgress, () =>
+      readRows(connection, path, layout, columns, options, start, isCopy),
+    );
     const report = await makeAccounts(connection, path, { layout, columns, raw, encoding }, options);
     options.onProgress?.(1);
     return { connection, table: 'accounts', report };
@@ -121,7 +129,11 @@ function unreadable(error: unknown): EbbError {
   );
 }
 
-async function withProgress<T>(connection: DuckDBConnection, report: ReadOptions['onProgress'], work: () => Promise<T>): Promise<T> {
+async function withProgress<T>(
+  connection: DuckDBConnection,
+  report: ReadOptions['onProgress'],
+  work: () => Promise<T>,
+): Promise<T> {
   if (!report) return work();
   const timer = setInterval(() => {
     const percent = connection.progress.percentage;
@@ -141,12 +153,19 @@ interface Read {
   readonly encoding: Encoding;
 }
 
-async function makeAccounts(connection: DuckDBConnection, path: string, read: Read, options: ReadOptions): Promise<ReadReport> {
+async function makeAccounts(
+  connection: DuckDBConnection,
+  path: string,
+  read: Read,
+  options: ReadOptions,
+): Promise<ReadReport> {
   const { layout, columns, raw } = read;
   const above = raw.rowsAbove;
   const ragged = raw.ragged.map(({ offset }) => offset);
-  const header = (column: number | undefined): string | undefined => (column === undefined ? undefined : layout.headers[column]);
-  const lineOf = (row: number): number => findLines(path, layout.delimiter, new Set(ragged), new Set([row])).rows.get(row)?.line ?? 0;
+  const header = (column: number | undefined): string | undefined =>
+    column === undefined ? undefined : layout.headers[column];
+  const lineOf = (row: number): number =>
+    findLines(path, layout.delimiter, new Set(ragged), new Set([row])).rows.get(row)?.line ?? 0;
 
   const state = await firstRow(
     connection,
@@ -189,7 +208,14 @@ async function makeAccounts(connection: DuckDBConnection, path: string, read: Re
   const asOf = options.asOf ?? dataThrough(starts, ends);
   const future = starts.reduce((sum, { day, count }) => (asOf !== undefined && day > asOf ? sum + count : sum), 0);
   if (asOf === undefined || future >= dataRows - bad) throw allInFuture(asOf, starts[0]?.day);
-  if (future > 0) leftOut.push(...(await countLeftOut(connection, 'judged', `CASE WHEN reason IS NULL AND start_day > ${asOf} THEN 'future-start' END`)));
+  if (future > 0)
+    leftOut.push(
+      ...(await countLeftOut(
+        connection,
+        'judged',
+        `CASE WHEN reason IS NULL AND start_day > ${asOf} THEN 'future-start' END`,
+      )),
+    );
 
   // With nothing to leave out, a view on the raw table spares copying it.
   await connection.run(
@@ -198,8 +224,11 @@ async function makeAccounts(connection: DuckDBConnection, path: string, read: Re
       : `CREATE TABLE kept AS SELECT n, key, start_day, end_day, segment, amount FROM judged WHERE reason IS NULL AND start_day <= ${asOf}`,
   );
   const { duplicates, merged } =
-    columns.id === undefined ? await withoutIds(connection) : await mergeSpells(connection, options.bridgeDays ?? BRIDGE_DAYS);
-  if (duplicates > 0) leftOut.push(...(await countLeftOut(connection, 'several', "CASE WHEN again THEN 'duplicate' END")));
+    columns.id === undefined
+      ? await withoutIds(connection)
+      : await mergeSpells(connection, options.bridgeDays ?? BRIDGE_DAYS);
+  if (duplicates > 0)
+    leftOut.push(...(await countLeftOut(connection, 'several', "CASE WHEN again THEN 'duplicate' END")));
 
   const kept = dataRows - bad - future;
   const summary = merged
@@ -245,26 +274,51 @@ async function makeAccounts(connection: DuckDBConnection, path: string, read: Re
   };
 }
 
-async function findTellingValues(connection: DuckDBConnection, columns: Columns, above: number): Promise<TellingValues> {
+async function findTellingValues(
+  connection: DuckDBConnection,
+  columns: Columns,
+  above: number,
+): Promise<TellingValues> {
   const distinct = async (column: 'segment' | 'status' | 'flag'): Promise<string[]> => {
     if (columns[column] === undefined) return [];
     // Longer values are no such words, and a column of free text need not come over whole.
     const sql = `SELECT DISTINCT ${column} AS value FROM raw WHERE ${column} IS NOT NULL AND strlen(${column}) <= 40 AND rowid >= ${above} LIMIT 100000`;
     return (await rowsOf(connection, sql)).map((row) => String(row.value));
   };
-  return tellingValues({ segments: await distinct('segment'), statuses: await distinct('status'), flags: await distinct('flag') });
+  return tellingValues({
+    segments: await distinct('segment'),
+    statuses: await distinct('status'),
+    flags: await distinct('flag'),
+  });
 }
 
 async function withoutIds(connection: DuckDBConnection): Promise<{ duplicates: number; merged: boolean }> {
-  await connection.run('CREATE VIEW accounts AS SELECT key, start_day, end_day, segment, amount, false AS returned FROM kept');
+  await connection.run(
+    'CREATE VIEW accounts AS SELECT key, start_day, end_day, segment, amount, false AS returned FROM kept',
+  );
   return { duplicates: 0, merged: false };
 }
 
-function nothingLeft(leftOut: readonly LeftOut[], path: string, read: Read, ragged: readonly number[], rows: number): EbbError {
+function nothingLeft(
+  leftOut: readonly LeftOut[],
+  path: string,
+  read: Read,
+  ragged: readonly number[],
+  rows: number,
+): EbbError {
   const { layout, columns } = read;
-  const rejected = listRejected(leftOut, { path, delimiter: layout.delimiter, columns, ragged: ragged.slice(layout.raggedAbove) });
+  const rejected = listRejected(leftOut, {
+    path,
+    delimiter: layout.delimiter,
+    columns,
+    ragged: ragged.slice(layout.raggedAbove),
+  });
   if (rows === 0 && rejected.length === 0) {
-    return new EbbError('ROWS_MISSING', 'there are column names and no rows under them', 'Export again with one line per subscription.');
+    return new EbbError(
+      'ROWS_MISSING',
+      'there are column names and no rows under them',
+      'Export again with one line per subscription.',
+    );
   }
   const main = rejected[0];
   const unread = rejected.find(({ code }) => code === 'start-unreadable' || code === 'end-unreadable');

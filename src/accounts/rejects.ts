@@ -56,7 +56,12 @@ function offendingField(code: ReasonCode, columns: Columns, fields: readonly str
 /** Adds line numbers and examples; one walk through the file for all of them. */
 export function listRejected(
   leftOut: readonly LeftOut[],
-  file: { readonly path: string; readonly delimiter: string; readonly columns: Columns; readonly ragged: readonly number[] },
+  file: {
+    readonly path: string;
+    readonly delimiter: string;
+    readonly columns: Columns;
+    readonly ragged: readonly number[];
+  },
 ): Rejected[] {
   const all = leftOut.filter(({ rows }) => rows > 0);
   if (all.length === 0 && file.ragged.length === 0) return [];
@@ -73,7 +78,10 @@ export function listRejected(
       reason: REASONS.ragged,
       rows: file.ragged.length,
       firstLine: places[0]?.line ?? 0,
-      examples: places.map((place) => ({ line: place.line, value: `${splitRecords(place.text, file.delimiter, 1)[0]?.fields.length ?? 0} fields` })),
+      examples: places.map((place) => ({
+        line: place.line,
+        value: `${splitRecords(place.text, file.delimiter, 1)[0]?.fields.length ?? 0} fields`,
+      })),
     });
   }
   for (const one of all) {
@@ -88,7 +96,9 @@ export function listRejected(
       firstLine: places[0]?.line ?? 0,
       examples: places.map((place) => ({
         line: place.line,
-        value: shorten(offendingField(one.code, file.columns, splitRecords(place.text, file.delimiter, 1)[0]?.fields ?? [])),
+        value: shorten(
+          offendingField(one.code, file.columns, splitRecords(place.text, file.delimiter, 1)[0]?.fields ?? []),
+        ),
       })),
     });
   }

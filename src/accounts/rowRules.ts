@@ -23,7 +23,18 @@ export type ReasonCode = keyof typeof REASONS;
 
 const TEST_WORDS = ['test', 'internal', 'demo', 'staff', 'employee', 'sandbox', 'dummy', 'qa'];
 const YES_WORDS = ['true', 'yes', '1', 't', 'y', 'x', ...TEST_WORDS];
-const ENDED_WORDS = ['cancelled', 'canceled', 'churned', 'terminated', 'expired', 'closed', 'ended', 'lapsed', 'inactive', 'deactivated'];
+const ENDED_WORDS = [
+  'cancelled',
+  'canceled',
+  'churned',
+  'terminated',
+  'expired',
+  'closed',
+  'ended',
+  'lapsed',
+  'inactive',
+  'deactivated',
+];
 
 /** What an id looks like, as `id_kind`: a test account, the label of a total, or (0) an account. */
 export const ID_KIND = { account: 0, test: 1, total: 2 } as const;
@@ -59,7 +70,11 @@ export interface TellingValues {
  * Picks the telling ones among the distinct values. A segment marks a test account only when it is nothing but such a word: a plan
  * called "Test Prep" is a plan. "trial" counts anywhere as a word of its own.
  */
-export function tellingValues(distinct: { readonly segments: readonly string[]; readonly statuses: readonly string[]; readonly flags: readonly string[] }): TellingValues {
+export function tellingValues(distinct: {
+  readonly segments: readonly string[];
+  readonly statuses: readonly string[];
+  readonly flags: readonly string[];
+}): TellingValues {
   const word = (value: string): string => value.trim().toLowerCase();
   const trial = (value: string): boolean => /(^|[^a-z])(trial|trialing|trialling)([^a-z]|$)/.test(word(value));
   return {
@@ -81,20 +96,31 @@ function oneOf(column: string, values: readonly string[]): string[] {
  * is called.
  */
 export function reasonSql(columns: Columns, telling: TellingValues, use: { readonly testIds: boolean }): string {
-  const internal = [...(use.testIds ? [`id_kind = ${ID_KIND.test}`] : []), ...oneOf('segment', telling.testSegments), ...oneOf('flag', telling.testFlags)];
+  const internal = [
+    ...(use.testIds ? [`id_kind = ${ID_KIND.test}`] : []),
+    ...oneOf('segment', telling.testSegments),
+    ...oneOf('flag', telling.testFlags),
+  ];
   const trial = [...oneOf('segment', telling.trialSegments), ...oneOf('status', telling.trialStatuses)];
   const when = (conditions: readonly string[], code: ReasonCode, and = ''): string[] =>
     conditions.length === 0 ? [] : [`WHEN (${conditions.join(' OR ')})${and} THEN '${code}'`];
   const cases = [
     ...(columns.id === undefined
       ? []
-      : [`WHEN id_kind = ${ID_KIND.total} AND start_day IS NULL THEN 'total-line'`, "WHEN key IS NULL THEN 'id-missing'"]),
+      : [
+          `WHEN id_kind = ${ID_KIND.total} AND start_day IS NULL THEN 'total-line'`,
+          "WHEN key IS NULL THEN 'id-missing'",
+        ]),
     ...when(internal, 'internal'),
     ...when(trial, 'trial', ' AND coalesce(amount, 0) <= 0'),
     "WHEN start_day IS NULL AND start_text IS NULL THEN 'start-missing'",
     `WHEN start_day IS NULL OR start_day <= ${NO_DATE_UNTIL} OR start_day >= ${NEVER_FROM} THEN 'start-unreadable'`,
     "WHEN end_day IS NULL AND end_text IS NOT NULL THEN 'end-unreadable'",
-    ...when(oneOf('status', telling.endedStatuses), 'end-missing', ` AND (end_day IS NULL OR end_day <= ${NO_DATE_UNTIL} OR end_day >= ${NEVER_FROM})`),
+    ...when(
+      oneOf('status', telling.endedStatuses),
+      'end-missing',
+      ` AND (end_day IS NULL OR end_day <= ${NO_DATE_UNTIL} OR end_day >= ${NEVER_FROM})`,
+    ),
     `WHEN end_day > ${NO_DATE_UNTIL} AND end_day < start_day THEN 'end-before-start'`,
     "WHEN end_day = start_day THEN 'zero-length'",
   ];

@@ -1,8 +1,8 @@
 import type { DuckDBConnection } from '@duckdb/node-api';
 import { type DateText, type OrderPlaces, type SettledOrder, settleOrder } from './dateOrder.ts';
 import { dateReadings, dayInOrder } from './dateText.ts';
-import type { DateOrder } from './types.ts';
 import { rowsOf } from './sql.ts';
+import type { DateOrder } from './types.ts';
 
 /**
  * Reads all date texts that are not plain ISO dates: every distinct text once, both columns together, then fills the days of `raw`

@@ -26,13 +26,18 @@ export function spellsSql(source: string, bridgeDays: number): string {
  * Puts the accounts of table `kept` into `accounts`. Only the accounts with several rows are merged; the others pass.
  * @returns the number of rows that repeat another one exactly and were left out
  */
-export async function mergeSpells(connection: DuckDBConnection, bridgeDays: number): Promise<{ duplicates: number; merged: boolean }> {
+export async function mergeSpells(
+  connection: DuckDBConnection,
+  bridgeDays: number,
+): Promise<{ duplicates: number; merged: boolean }> {
   const { several } = await firstRow(
     connection,
     'SELECT count(*)::INTEGER AS several FROM (SELECT key FROM kept GROUP BY key HAVING count(*) > 1)',
   );
   if (Number(several) === 0) {
-    await connection.run('CREATE VIEW accounts AS SELECT key, start_day, end_day, segment, amount, false AS returned FROM kept');
+    await connection.run(
+      'CREATE VIEW accounts AS SELECT key, start_day, end_day, segment, amount, false AS returned FROM kept',
+    );
     return { duplicates: 0, merged: false };
   }
   await connection.run(`CREATE TABLE several AS SELECT * FROM (

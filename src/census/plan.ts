@@ -16,6 +16,8 @@ export interface PlanRequest {
 
 /** 25 points for the usual level and about 15 to judge against it. */
 const WANTED_POINTS = 40;
+/** A larger size is worth its wait only while it leaves this many points: with fewer, where a move began gets blurred. Our choice, no source. */
+const LARGER_WANTS_POINTS = 50;
 /** More points than this can't be told apart in a picture on a phone. */
 const MOST_POINTS = 150;
 const TENURES = [1, 3, 6, 12] as const;
@@ -129,7 +131,7 @@ function hazardPeak(counts: TenureCounts): { month: number; hazard: number } | u
   });
 }
 
-/** One of the three sizes: the one with a lower limit above zero when it leaves 40 points, else the largest that does, else five losses. */
+/** One of the three sizes: the one with a lower limit above zero when it leaves 50 points, else the one that sees a halving, else five losses. */
 export function recommendSize(matured: number, sizes: CensusPlan['sizes']): { subgroupSize: number; why: string } {
   const points = (size: number): number => Math.floor(matured / size);
   if (points(sizes.positiveLowerLimit) > MOST_POINTS) {
@@ -140,7 +142,7 @@ export function recommendSize(matured: number, sizes: CensusPlan['sizes']): { su
     };
   }
   const useful = [sizes.positiveLowerLimit, sizes.seesHalving].filter(
-    (size) => size >= sizes.fiveLosses && points(size) >= WANTED_POINTS,
+    (size) => size >= sizes.fiveLosses && points(size) >= LARGER_WANTS_POINTS,
   );
   const size = useful[0] ?? sizes.fiveLosses;
   if (size === sizes.positiveLowerLimit) {

@@ -4,7 +4,8 @@ import { readExport } from '../../src/accounts/readExport.ts';
 import { exportReader } from './exportFile.ts';
 
 const files = exportReader();
-const rows = (count: number, row: (at: number) => string): string => Array.from({ length: count }, (_, at) => row(at)).join('\n');
+const rows = (count: number, row: (at: number) => string): string =>
+  Array.from({ length: count }, (_, at) => row(at)).join('\n');
 
 describe('a file that cannot be used gets one clear error, and the next one is read', () => {
   it.each([
@@ -13,16 +14,51 @@ describe('a file that cannot be used gets one clear error, and the next one is r
     ['a header without rows', 'account,start,end\n', 'ROWS_MISSING', /line 1/],
     ['a header without rows, and no line end', 'account,start,end', 'ROWS_MISSING', /no rows/],
     ['no header', 'a1,2024-01-02,2024-02-03\na2,2024-01-03,\na3,2024-01-04,', 'HEADER_MISSING', /line 1/],
-    ['no start column', 'account,colour,end\na,red,2024-01-02\nb,blue,\n', 'COLUMN_START_MISSING', /account, colour, end/],
-    ['no end column', 'account,start\na,2024-01-02\nb,2024-01-03\n', 'COLUMN_END_MISSING', /nobody can be seen leaving/],
+    [
+      'no start column',
+      'account,colour,end\na,red,2024-01-02\nb,blue,\n',
+      'COLUMN_START_MISSING',
+      /account, colour, end/,
+    ],
+    [
+      'no end column',
+      'account,start\na,2024-01-02\nb,2024-01-03\n',
+      'COLUMN_END_MISSING',
+      /nobody can be seen leaving/,
+    ],
     ['one column', 'account\na\nb\nc\n', 'COLUMN_SINGLE', /"account"/],
-    ['dates that cannot be read', 'account,start,end\na,soon,late\nb,spring,\n', 'DATES_UNREADABLE', /line 2 says "soon"/],
-    ['an end column without dates', 'account,start,end\na,2024-01-02,gone\nb,2024-01-03,left\n', 'DATES_UNREADABLE', /"end".*line 2 says "gone"/],
-    ['no start date anywhere', 'account,start,end\na,,2024-01-02\nb,,2024-01-03\n', 'DATES_UNREADABLE', /"start" holds no date/],
-    ['a web page', '<!DOCTYPE html>\n<html><body><form>Sign in: password</form></body></html>', 'FILE_NOT_CSV', /login page/],
+    [
+      'dates that cannot be read',
+      'account,start,end\na,soon,late\nb,spring,\n',
+      'DATES_UNREADABLE',
+      /line 2 says "soon"/,
+    ],
+    [
+      'an end column without dates',
+      'account,start,end\na,2024-01-02,gone\nb,2024-01-03,left\n',
+      'DATES_UNREADABLE',
+      /"end".*line 2 says "gone"/,
+    ],
+    [
+      'no start date anywhere',
+      'account,start,end\na,,2024-01-02\nb,,2024-01-03\n',
+      'DATES_UNREADABLE',
+      /"start" holds no date/,
+    ],
+    [
+      'a web page',
+      '<!DOCTYPE html>\n<html><body><form>Sign in: password</form></body></html>',
+      'FILE_NOT_CSV',
+      /login page/,
+    ],
     ['JSON', '[{"id": 1, "start": "2024-01-02"}]', 'FILE_NOT_CSV', /JSON/],
     ['XML', '<?xml version="1.0"?><rows><row/></rows>', 'FILE_NOT_CSV', /XML/],
-    ['ends before starts everywhere', 'id,start,end\n1,2024-05-02,2023-01-01\n2,2024-05-03,2023-01-02\n', 'ACCOUNTS_NONE', /before the start date/],
+    [
+      'ends before starts everywhere',
+      'id,start,end\n1,2024-05-02,2023-01-01\n2,2024-05-03,2023-01-02\n',
+      'ACCOUNTS_NONE',
+      /before the start date/,
+    ],
   ])('%s', async (_, content, code, words) => {
     const error = await files.refused(content);
     expect(error.code).toBe(code);
@@ -34,7 +70,11 @@ describe('a file that cannot be used gets one clear error, and the next one is r
   it.each([
     ['a PNG picture', [0x89, 0x50, 0x4e, 0x47, 0x0d, 0x0a, 0x1a, 0x0a, 0, 0, 0, 13], 'a PNG picture'],
     ['a ZIP archive', [0x50, 0x4b, 3, 4, 20, 0, 0, 0], 'a ZIP archive'],
-    ['an Excel file', [0x50, 0x4b, 3, 4, ...Buffer.from('....[Content_Types].xml')], 'an Excel or other Office document (.xlsx)'],
+    [
+      'an Excel file',
+      [0x50, 0x4b, 3, 4, ...Buffer.from('....[Content_Types].xml')],
+      'an Excel or other Office document (.xlsx)',
+    ],
     ['a PDF', [...Buffer.from('%PDF-1.7\n')], 'a PDF document'],
     ['unknown bytes', [1, 2, 3, 255, 0, 7, 8, 9, 200, 0, 0, 1, 2, 3, 4, 5, 6], 'binary data'],
   ])('%s under the name .csv is called by its name', async (_, bytes, what) => {
@@ -66,7 +106,10 @@ describe('a file that cannot be used gets one clear error, and the next one is r
     closeSync(second);
     const before = process.memoryUsage().rss;
     await expect(readExport(files.engine(), path, {})).rejects.toMatchObject({ code: 'FILE_LINE_TOO_LONG' });
-    await expect(readExport(files.engine(), start, {})).rejects.toMatchObject({ code: 'FILE_LINE_TOO_LONG', message: expect.stringMatching(/line 3/) });
+    await expect(readExport(files.engine(), start, {})).rejects.toMatchObject({
+      code: 'FILE_LINE_TOO_LONG',
+      message: expect.stringMatching(/line 3/),
+    });
     expect(process.memoryUsage().rss - before).toBeLessThan(60_000_000);
   });
 
@@ -91,7 +134,9 @@ describe('a file that cannot be used gets one clear error, and the next one is r
   });
 
   it('a column that is not there is answered with the nearest one', async () => {
-    const error = await files.refused('account,start_date,end_date\na,2024-01-02,\n', { columns: { start: 'strat_date' } });
+    const error = await files.refused('account,start_date,end_date\na,2024-01-02,\n', {
+      columns: { start: 'strat_date' },
+    });
     expect(error.code).toBe('COLUMN_UNKNOWN');
     expect(error.message).toContain('account, start_date, end_date');
     expect(error.hint).toContain('"start_date"');

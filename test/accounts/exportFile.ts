@@ -29,7 +29,11 @@ export function exportReader() {
   return {
     put,
     engine: (): Engine => engine,
-    async with<T>(content: string | Uint8Array, options: ReadOptions, use: (table: AccountTable) => Promise<T> | T): Promise<T> {
+    async with<T>(
+      content: string | Uint8Array,
+      options: ReadOptions,
+      use: (table: AccountTable) => Promise<T> | T,
+    ): Promise<T> {
       const table = await readExport(engine, put(content), options);
       try {
         return await use(table);
