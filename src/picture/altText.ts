@@ -2,10 +2,12 @@ import type { PictureInput } from '../verdict/types.ts';
 import { capitalised, countOf, heldDate, percent, percentRange } from './figures.ts';
 import { candidateWords, immatureWords, waitingWords } from './notes.ts';
 import { stretches } from './stretches.ts';
-import { afterTitle, shortTitle } from './title.ts';
+import { shortTitle, titleAndRest, wouldSeeWords } from './title.ts';
 
 /** Longest alternative text, in characters. */
 const MOST = 1000;
+/** A finding longer than this is told by the short title alone, so that the rest has room. */
+const LONGEST_FINDING = 600;
 
 /**
  * What the picture shows, for those who cannot see it: the finding first, then the levels, the points and what is marked, then what is
@@ -24,15 +26,16 @@ export function altText(input: PictureInput): string {
 
 function sentences(input: PictureInput): string[] {
   const { chart, verdict, dates } = input;
-  const said: string[] = [finding(input)];
+  const first = finding(input);
+  const said: string[] = [first.length < LONGEST_FINDING ? first : shortTitle(input), wouldSeeWords(input)];
   said.push(
     `Counted: ${input.measure}; ${input.subject}${input.asOf === null ? '' : `; data to ${heldDate(input.asOf)}`}`,
   );
   if (chart && chart.points.length > 0) {
-    const first = dates[0]?.firstStart ?? null;
+    const begin = dates[0]?.firstStart ?? null;
     const last = dates[chart.points.length - 1]?.firstStart ?? null;
     const span =
-      first === null || last === null ? '' : `, for accounts that started from ${heldDate(first)} to ${heldDate(last)}`;
+      begin === null || last === null ? '' : `, for accounts that started from ${heldDate(begin)} to ${heldDate(last)}`;
     const { baseline } = chart;
     said.push(`The chart shows ${countOf(chart.points.length, 'point')}${span}`);
     const end = chart.points.at(-1);
@@ -66,7 +69,7 @@ function finding(input: PictureInput): string {
   const { outcome, since, before, after, headline } = input.verdict;
   const title = shortTitle(input);
   if ((outcome !== 'risen' && outcome !== 'fallen') || !after || !before)
-    return `${title}: ${afterTitle(headline, title)}`;
+    return titleAndRest(input).fromHeadline ? headline : `${title}: ${headline}`;
   const from = since
     ? since.start === null
       ? `from about point ${since.point}`

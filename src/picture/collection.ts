@@ -109,7 +109,7 @@ export function collectionScene(input: PictureInput): Scene {
     band: [],
     levels: [],
     points: [],
-    lineWidth: 0,
+    line: { width: 1, opacity: 1 },
     over: below.strokes,
     marks: below.marks,
     texts: [...texts, ...below.texts],

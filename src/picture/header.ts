@@ -3,7 +3,7 @@ import { capitalised, countOf, grouped, heldDate, percent, percentRange } from '
 import { EMBER, INK, LEAD_SIZE, LEVEL, LINE, MARGIN, QUIET, TEXT_SIZE, TITLE_SIZE, WIDTH } from './palette.ts';
 import type { PlacedText, Stroke } from './scene.ts';
 import { drawable, textWidth } from './textWidth.ts';
-import { afterTitle, shortTitle } from './title.ts';
+import { titleAndRest, wouldSeeWords } from './title.ts';
 import { wrapEvenly } from './wrapText.ts';
 
 /** What is counted, in the order a reader asks: what, of whom, how many a point, up to when. */
@@ -49,9 +49,15 @@ export function header(input: PictureInput): {
     }
   };
   const moved = input.verdict.outcome === 'risen' || input.verdict.outcome === 'fallen';
-  block(shortTitle(input), TITLE_SIZE, 700, moved ? EMBER : INK, 'title');
+  const { title, rest } = titleAndRest(input);
+  block(title, TITLE_SIZE, 700, moved ? EMBER : INK, 'title');
   y += 4;
-  block(afterTitle(input.verdict.headline, shortTitle(input)), LEAD_SIZE, 400, INK, 'headline');
+  block(rest, LEAD_SIZE, 400, INK, 'headline');
+  const wouldSee = wouldSeeWords(input);
+  if (wouldSee !== '') {
+    y += 4;
+    block(wouldSee, TEXT_SIZE, 400, INK, 'headline');
+  }
   y += 6;
   block(countedLine(input), TEXT_SIZE, 400, QUIET, 'counted');
   for (const [i, text] of texts.entries())

@@ -110,7 +110,7 @@ export function layout(input: PictureInput): Scene {
     band: bandRows(chart),
     levels: levelLines(input, chart),
     points: pointMarks(chart, flagged, slotPx),
-    lineWidth: slotPx < 3 ? 1 : 1.6,
+    line: slotPx < 3 ? { width: 0.8, opacity: 0.42 } : { width: 1.6, opacity: 0.55 },
     over: [
       floor,
       ...ghost.strokes,
@@ -222,7 +222,9 @@ function baselineGround(chart: Chart, frame: Frame): { slabs: Slab[]; strokes: S
   const from = Math.max(x2, left + width + 12) + 9;
   if (last < chart.points.length && from + textWidth(judged, TEXT_SIZE, 400) < frame.right)
     texts.push({ ...base, text: judged, x: from, color: QUIET, align: 'left' });
-  const shore: Stroke = { x: x2, y: frame.top, x2, y2: frame.bottom, color: SAND_EDGE, width: 1.6 };
+  // Words wider than their ground run on past its edge; the edge then begins below them.
+  const edgeTop = left + width > x2 - 4 ? frame.top + HEADROOM - 4 : frame.top;
+  const shore: Stroke = { x: x2, y: edgeTop, x2, y2: frame.bottom, color: SAND_EDGE, width: 1.6 };
   return { slabs: [slab], strokes: last < chart.points.length ? [shore] : [], texts };
 }
 

@@ -93,7 +93,7 @@ export interface Scene {
     readonly x: number;
     readonly value: number;
   })[];
-  readonly lineWidth: number;
+  readonly line: { readonly width: number; readonly opacity: number };
   readonly over: readonly Stroke[];
   readonly marks: readonly PlacedMark[];
   readonly texts: readonly PlacedText[];
@@ -110,7 +110,7 @@ export const EMPTY_SCENE: Scene = {
   band: [],
   levels: [],
   points: [],
-  lineWidth: 1,
+  line: { width: 1, opacity: 1 },
   over: [],
   marks: [],
   texts: [],

@@ -135,6 +135,17 @@ export function spec(scene: Scene): TopLevelSpec {
         encoding: { x: x('x'), y: y(edge) },
       })),
       {
+        data: { values: [...scene.points] },
+        mark: {
+          type: 'line',
+          stroke: INK,
+          strokeWidth: scene.line.width,
+          opacity: scene.line.opacity,
+          strokeJoin: 'round',
+        },
+        encoding: { x: x('x'), y: y('value') },
+      },
+      {
         data: { values: [...scene.levels] },
         mark: {
           type: 'rule',
@@ -143,17 +154,6 @@ export function spec(scene: Scene): TopLevelSpec {
           strokeDash: each('dash'),
         },
         encoding: { x: x('x'), x2: { field: 'x2' }, y: y('value') },
-      },
-      {
-        data: { values: [...scene.points] },
-        mark: {
-          type: 'line',
-          stroke: INK,
-          strokeWidth: scene.lineWidth,
-          opacity: 0.55,
-          strokeJoin: 'round',
-        },
-        encoding: { x: x('x'), y: y('value') },
       },
       strokes(scene.over),
       {

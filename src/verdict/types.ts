@@ -81,6 +81,8 @@ export interface PictureInput {
   readonly subject: string;
   /** data complete through this day; null for ready counts */
   readonly asOf: Day | null;
+  /** the smallest moves that would by now have been seen; drawn when nothing moved, so that "steady" never stands alone */
+  readonly wouldSee?: Trust['wouldSee'];
 }
 
 export type { Side };

@@ -42,6 +42,7 @@ export interface Making {
   readonly daysPerPoint?: number;
   readonly waiting?: PictureInput['waiting'];
   readonly immature?: number;
+  readonly wouldSee?: PictureInput['wouldSee'];
   readonly measure?: string;
   readonly subject?: string;
 }
@@ -168,6 +169,7 @@ export function makeInput(making: Making): PictureInput {
     },
     waiting: making.waiting === undefined ? { accounts: 37, of: 85, on: day('2025-12-03') } : making.waiting,
     immature: making.immature ?? 412,
+    ...(making.wouldSee === undefined ? {} : { wouldSee: making.wouldSee }),
     measure: making.measure ?? 'lost within 3 months of starting',
     subject: making.subject ?? 'Marrowby Seed Club export, all plans',
     asOf: dated ? start + making.points * every + 120 : null,

@@ -1,7 +1,7 @@
 import { flag, type Making, makeInput } from './inputs.ts';
 
-const STEADY =
-  'No sign that churn has moved: 6.1 % of accounts are lost within 3 months. A rise to 8.9 % or a fall to 3.6 % would by now have been seen in 8 of 10 cases.';
+const STEADY = 'Churn is steady: the usual 6.1 % are lost within 3 months.';
+const WOULD_SEE = { rise: 0.089, fall: 0.036, chance: 0.8 };
 
 /** Every state a reader can meet, by name. */
 export const makings: Record<string, Making> = {
@@ -11,7 +11,7 @@ export const makings: Record<string, Making> = {
     moved: { from: 40, rate: 0.1, candidates: [37, 43] },
     outcome: 'risen',
     headline:
-      'Yes, churn has risen: of accounts that started from about 11 December 2024, about 10 % are lost within 3 months, against 6 % before.',
+      'Churn has risen: about 10.5 % are lost within 3 months among accounts that started from about 11 December 2024, up from 6.2 % before.',
     signals: [
       flag(2, [41, 52], 'above', 'standing', 'nine points in a row above the usual level'),
       flag(5, [44, 48], 'above', 'standing', 'two of three points far above the usual level'),
@@ -25,7 +25,7 @@ export const makings: Record<string, Making> = {
     moved: { from: 33, rate: 0.04, candidates: [33, 34] },
     outcome: 'fallen',
     headline:
-      'Yes, churn has fallen: of accounts that started from about 7 August 2024, about 4 % are lost within 3 months, against 8.5 % before.',
+      'Churn has fallen for Orchard: about 3.8 % are lost within 3 months among accounts that started from about 7 August 2024, down from 8.8 % before.',
     signals: [
       flag(1, [34, 38], 'below', 'standing', 'one point below what chance alone allows'),
       flag(2, [33, 48], 'below', 'standing', 'sixteen points in a row below the usual level'),
@@ -33,14 +33,13 @@ export const makings: Record<string, Making> = {
     waiting: { accounts: 122, of: 180, on: 20245 },
     immature: 1240,
   },
-  steady: { points: 44, rate: 0.061, outcome: 'steady', headline: STEADY },
+  steady: { points: 44, rate: 0.061, outcome: 'steady', headline: STEADY, wouldSee: WOULD_SEE },
   watching: {
     points: 41,
     rate: 0.061,
     seed: 11,
     outcome: 'steady',
-    headline:
-      'Not moved so far, one to watch: the newest point lies above what chance alone allows; the next two points will settle it.',
+    headline: 'Churn is steady: the usual 6.3 % are lost within 3 months, with one thing to watch.',
     signals: [flag(1, [41, 41], 'above', 'watching', 'one point above what chance alone allows')],
     counts: Array.from({ length: 41 }, (_, i) => (i === 40 ? 14 : [5, 4, 7, 6, 3, 5, 8, 5][i % 8]!)),
   },
@@ -51,13 +50,15 @@ export const makings: Record<string, Making> = {
     moved: undefined as never,
     outcome: 'steady',
     headline: STEADY,
+    wouldSee: WOULD_SEE,
     signals: [flag(2, [29, 38], 'below', 'passed', 'nine points in a row below the usual level')],
   },
   'too-early-none': {
     points: 0,
     rate: 0,
     outcome: 'too-early',
-    headline: 'Too early to tell: no group of 85 accounts has reached 3 months yet.',
+    headline:
+      'Too early to say whether churn has moved: only 37 accounts have had 3 months to leave or stay; about 640 more are needed.',
     next: ['Ask again after 3 July 2025, when the first point can be drawn; a usual level needs about 25 points.'],
   },
   'too-early-few': {
@@ -65,7 +66,7 @@ export const makings: Record<string, Making> = {
     rate: 0.07,
     outcome: 'too-early',
     headline:
-      'Too early to tell: 5 points are not enough to know the usual level; 3 more are needed, by about November 2025.',
+      'Too early to say whether churn has moved: only 425 accounts have had 3 months to leave or stay; about 255 more are needed.',
     next: ['Ask again in November 2025.'],
   },
   'cannot-say': {
@@ -73,14 +74,22 @@ export const makings: Record<string, Making> = {
     rate: 0.07,
     moved: undefined as never,
     outcome: 'cannot-say',
-    headline:
-      'These figures cannot tell: the stretch that should set the usual level was itself not steady, so there is nothing firm to judge against.',
+    headline: 'Cannot say whether churn has moved: the stretch that should set the usual level was not steady itself.',
     cautions: [
       'The first 25 points fall apart into two levels, about 5 % before 12 June 2023 and about 9 % after it.',
       'The Orchard plan and the Windowsill plan differ clearly (11 % against 4 %) and are pooled here.',
       'Two sources seem to take turns.',
     ],
     signals: [flag(4, [8, 24], 'both', 'standing', 'fourteen points alternating up and down')],
+  },
+  'mix-change': {
+    points: 46,
+    rate: 0.07,
+    seed: 5,
+    outcome: 'steady',
+    headline:
+      'Churn is steady within each group; the overall figure went from 6.1 % to 8.4 % because the mix moved: Windowsill grew from 30 % to 62 % of the accounts.',
+    wouldSee: { rise: null, fall: null, chance: 0.8 },
   },
   counts: {
     points: 30,
@@ -126,7 +135,8 @@ export const makings: Record<string, Making> = {
     size: 1600,
     rate: 0.003,
     outcome: 'steady',
-    headline: 'No sign that churn has moved: 0.31 % of accounts are lost within 1 month.',
+    headline: 'Churn is steady: the usual 0.39 % are lost within 1 month.',
+    wouldSee: { rise: 0.0071, fall: null, chance: 0.8 },
     measure: 'lost within 1 month of starting',
     waiting: { accounts: 900, of: 1600, on: null },
   },
@@ -146,6 +156,7 @@ export const makings: Record<string, Making> = {
     rate: 0.09,
     outcome: 'steady',
     headline: STEADY,
+    wouldSee: WOULD_SEE,
     cautions: ['The months differ in size by more than 25 %; the limits therefore change from point to point.'],
     waiting: null,
   },
@@ -155,6 +166,7 @@ export const makings: Record<string, Making> = {
     excluded: [9, 10],
     outcome: 'steady',
     headline: STEADY,
+    wouldSee: WOULD_SEE,
     counts: Array.from({ length: 40 }, (_, i) => (i === 8 ? 15 : i === 9 ? 13 : [5, 4, 7, 6, 3, 5, 8, 5, 6][i % 9]!)),
   },
   provisional: {
@@ -162,6 +174,7 @@ export const makings: Record<string, Making> = {
     rate: 0.062,
     outcome: 'steady',
     headline: STEADY,
+    wouldSee: WOULD_SEE,
     cautions: ['Fewer than 25 points: a later answer may differ.'],
     daysPerPoint: 6,
   },
