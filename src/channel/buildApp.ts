@@ -1,0 +1,100 @@
+import type { RequestListener } from 'node:http';
+import { App, type Receiver, SocketModeReceiver } from '@slack/bolt';
+import { holdAcknowledgement } from './front/holdAcknowledgement.ts';
+import { httpFront } from './front/httpFront.ts';
+import { listenToCommand } from './listeners/command.ts';
+import { listenToJoins } from './listeners/joins.ts';
+import { listenToMendView } from './listeners/mendView.ts';
+import { listenToPosts } from './listeners/posts.ts';
+import { listenToPresses } from './listeners/presses.ts';
+import { listenToSharedFiles } from './listeners/sharedFiles.ts';
+import { listenToShortcut } from './listeners/shortcut.ts';
+import { boltLogger } from './logging.ts';
+import { clientOptions, webClient } from './posting/webClient.ts';
+import type { ChannelDeps } from './types.ts';
+import { createHandler } from './work/worker.ts';
+
+export type Inbound =
+  | { readonly mode: 'http'; readonly signingSecret: string }
+  | { readonly mode: 'socket'; readonly appToken: string; readonly clientPingTimeout?: number };
+
+export interface ChannelApp {
+  /** HTTP mode: what the server listens with; undefined in socket mode */
+  readonly requestListener: RequestListener | undefined;
+  /** Asks the service who the bot is, and starts to work what is in the inbox. @throws when the token is refused */
+  init(): Promise<void>;
+  /** socket mode: opens the connection; resolves once the service has said hello */
+  connect(): Promise<void>;
+  /** takes in nothing more, and waits for what a listener began */
+  stop(): Promise<void>;
+}
+
+const CONCURRENCY = 4;
+
+/**
+ * Wires the bot: listeners that check, write down and acknowledge, and the handler that works what was written down.
+ * Listening is somebody else's business, so that tests can drive it.
+ */
+export function buildApp(deps: ChannelDeps, inbound: Inbound): ChannelApp {
+  let ready = false;
+  const background = new Set<Promise<unknown>>();
+  const inBackground = (work: Promise<unknown>): void => {
+    const settled = work.catch((error: unknown) => deps.log.warn({ err: error }, 'something begun in passing failed'));
+    background.add(settled);
+    void settled.finally(() => background.delete(settled));
+  };
+
+  const front =
+    inbound.mode === 'http'
+      ? httpFront({ signingSecret: inbound.signingSecret, log: deps.log, now: deps.now, ready: () => ready })
+      : undefined;
+  const receiver = front?.receiver ?? socketReceiver(deps, inbound as Extract<Inbound, { mode: 'socket' }>);
+  const app = new App({
+    token: deps.slack.botToken,
+    receiver,
+    logger: boltLogger(deps.log),
+    clientOptions: clientOptions(deps),
+    convoStore: false,
+    deferInitialization: true,
+  });
+  app.error(async (error) => {
+    deps.log.error({ err: error }, 'a listener failed; the service will send the event again');
+    // Swallowed, the request would hang until it times out.
+    throw error;
+  });
+  listenToPosts(app, deps);
+  listenToSharedFiles(app, deps);
+  listenToJoins(app, deps);
+  listenToCommand(app, deps);
+  listenToPresses(app, deps, inBackground);
+  listenToMendView(app, deps);
+  listenToShortcut(app, deps, inBackground);
+
+  return {
+    requestListener: front?.listener,
+    async init() {
+      await app.init();
+      await deps.store.work(createHandler(deps, webClient(deps)), deps.concurrency ?? CONCURRENCY);
+      ready = true;
+    },
+    async connect() {
+      await receiver.start();
+    },
+    async stop() {
+      ready = false;
+      if (inbound.mode === 'socket') await receiver.stop();
+      await Promise.all(background);
+    },
+  };
+}
+
+function socketReceiver(deps: ChannelDeps, inbound: Extract<Inbound, { mode: 'socket' }>): Receiver {
+  return holdAcknowledgement(
+    new SocketModeReceiver({
+      appToken: inbound.appToken,
+      logger: boltLogger(deps.log),
+      installerOptions: { clientOptions: clientOptions(deps) },
+      ...(inbound.clientPingTimeout === undefined ? {} : { clientPingTimeout: inbound.clientPingTimeout }),
+    }),
+  );
+}

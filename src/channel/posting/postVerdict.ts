@@ -1,0 +1,100 @@
+import { setTimeout as pause } from 'node:timers/promises';
+import type { WebClient } from '@slack/web-api';
+import type { Logger } from 'pino';
+import type { Answer } from '../../answers/types.ts';
+import type { HostRule } from '../download/hosts.ts';
+import { shareFailedMessage } from '../messages/plainMessages.ts';
+import { oneLine, shortened } from '../messages/text.ts';
+import { type UnderstoodWords, verdictMessage } from '../messages/verdictMessage.ts';
+import type { Poster } from './poster.ts';
+import { uploadPicture } from './uploadPicture.ts';
+import { mayPass, refusal, refusalDetails } from './webClient.ts';
+
+/** Waits before a message is sent again whose picture the service is not ready to show. */
+const SHOW_WAITS_MS = [200, 600, 1500, 3000] as const;
+
+export interface VerdictPosting {
+  readonly client: WebClient;
+  readonly rule: HostRule;
+  readonly poster: Poster;
+  readonly log: Logger;
+}
+
+/**
+ * Posts a verdict with its picture as one message. When the service will not show the picture in a block, it is shared in the thread;
+ * when it will not take it at all, the words stand alone: they carry the whole meaning.
+ */
+export async function postVerdict(
+  posting: VerdictPosting,
+  answer: Answer,
+  words: UnderstoodWords | null,
+  again: string,
+): Promise<void> {
+  const { poster } = posting;
+  if ((await poster.posted('verdict')) !== undefined) return;
+  const fileId = await uploaded(posting, answer);
+  if (fileId !== null && (await shown(posting, answer, words, fileId, again))) return;
+  await poster.post('verdict', verdictMessage(answer, words, null, again));
+  if (answer.picture && !(await shared(posting, answer))) await poster.post('no-picture', shareFailedMessage());
+}
+
+/** The picture's file id; null when there is none or the service refuses it. */
+async function uploaded({ client, rule, poster, log }: VerdictPosting, answer: Answer): Promise<string | null> {
+  if (!answer.picture) return null;
+  const before = await poster.posted('picture');
+  if (before !== undefined) return before;
+  try {
+    const id = await uploadPicture(client, rule, answer.picture, nameOf(answer), null);
+    await poster.remember('picture', id);
+    return id;
+  } catch (error) {
+    if (mayPass(error)) throw error;
+    log.warn(
+      { err: error, refusal: refusal(error) },
+      'the picture could not be uploaded; the verdict goes out in words',
+    );
+    return null;
+  }
+}
+
+async function shown(
+  { poster, log }: VerdictPosting,
+  answer: Answer,
+  words: UnderstoodWords | null,
+  fileId: string,
+  again: string,
+): Promise<boolean> {
+  for (const wait of [...SHOW_WAITS_MS, null]) {
+    try {
+      await poster.post('verdict', verdictMessage(answer, words, fileId, again));
+      return true;
+    } catch (error) {
+      const aboutPicture =
+        refusal(error) === 'invalid_blocks' && refusalDetails(error).some((line) => line.includes('slack'));
+      if (!aboutPicture) throw error;
+      if (wait !== null) await pause(wait);
+      else
+        log.warn(
+          { refusal: refusalDetails(error) },
+          'the picture is not shown in the message; it is shared in the thread',
+        );
+    }
+  }
+  return false;
+}
+
+async function shared({ client, rule, poster, log }: VerdictPosting, answer: Answer): Promise<boolean> {
+  if (!answer.picture) return true;
+  if ((await poster.posted('share')) !== undefined) return true;
+  try {
+    await poster.remember('share', await uploadPicture(client, rule, answer.picture, nameOf(answer), poster.place));
+    return true;
+  } catch (error) {
+    log.warn({ err: error, refusal: refusal(error) }, 'the picture could not be shared either');
+    return false;
+  }
+}
+
+function nameOf(answer: Answer): { name: string; title: string } {
+  return { name: 'churn.png', title: shortened(oneLine(answer.verdict.headline), 200) };
+}
