@@ -64,7 +64,7 @@ function personNamed({ desk }: PageRouteOptions, id: string | null): Person | un
 }
 
 /** Server-sent events; changes that come together make one snapshot. */
-function stream(options: PageRouteOptions, request: IncomingMessage, response: ServerResponse, url: URL): void {
+function stream(options: PageRouteOptions, request: IncomingMessage, response: ServerResponse, url: URL) {
   const person = personNamed(options, url.searchParams.get('as'));
   if (!person) return sendJson(response, 404, { problem: 'there is no such person' });
   response.writeHead(200, { 'content-type': 'text/event-stream', 'cache-control': 'no-store' });
@@ -124,7 +124,7 @@ async function post(
 }
 
 /** Only pictures are shown in place; anything else is handed over as a download, so that no uploaded page can run here. */
-function file({ desk }: PageRouteOptions, response: ServerResponse, id: string, url: URL): void {
+function file({ desk }: PageRouteOptions, response: ServerResponse, id: string, url: URL) {
   const stored = desk.world.files.get(id);
   if (!stored || stored.deleted) return sendJson(response, 404, { problem: 'there is no such file' });
   const inline = isShowableImage(stored) && !url.searchParams.has('download');

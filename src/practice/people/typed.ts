@@ -13,6 +13,8 @@ export function storedText(world: World, team: string, text: string): string {
   const people = [...world.people.values()].filter((p) => p.team === team);
   const channels = [...world.channels.values()].filter((c) => c.team === team && c.kind !== 'direct');
   return escapeText(text)
+    .replace(/(^|[\s(])(https?:\/\/[^\s<>]*[^\s<>.,;:!?)])/g, '$1<$2>')
+    .replace(/&lt;(https?:\/\/[^\s<>]+?)&gt;/g, '<$1>')
     .replace(/&lt;([@#])([A-Z0-9]+)(?:\|[^&]*)?&gt;/g, (whole, sign: string, id: string) =>
       (sign === '@' ? world.people.get(id) : world.channels.get(id))?.team === team ? `<${sign}${id}>` : whole,
     )

@@ -98,7 +98,7 @@ async function upload(world: World, request: IncomingMessage, response: ServerRe
   sendText(response, 200, `OK - ${bytes.byteLength}`);
 }
 
-function download(world: World, request: IncomingMessage, response: ServerResponse, path: string): void {
+function download(world: World, request: IncomingMessage, response: ServerResponse, path: string) {
   const id = /^\/files-pri\/[A-Z0-9]+-(F[A-Z0-9]+)\//.exec(path)?.[1];
   const file = id === undefined ? undefined : world.files.get(id);
   const install = world.installs.get(bearerOf(request) ?? '');
