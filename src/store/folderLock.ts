@@ -25,6 +25,8 @@ export interface FolderLockTiming {
   readonly beatMs: number;
   /** how long a file from another container or machine must stay untouched before its holder counts as dead */
   readonly silenceMs: number;
+  /** called between looking and taking: a test is slow there on purpose */
+  readonly looked?: () => Promise<void>;
 }
 
 const TIMING: FolderLockTiming = { beatMs: 1_000, silenceMs: 10_000 };
@@ -54,6 +56,7 @@ export async function holdFolder(dataFolder: string, timing: FolderLockTiming = 
   for (;;) {
     const highest = await highestNumber(folder);
     if (highest > 0) await refuseIfHeld(dataFolder, join(folder, String(highest)), own, timing);
+    await timing.looked?.();
     const mine = join(folder, String(highest + 1));
     if (!(await create(dataFolder, folder, mine, record))) continue;
     if ((await highestNumber(folder)) === highest + 1) return held(folder, highest + 1, record, timing);

@@ -102,6 +102,8 @@ function storeOver(
     drained: settled.drained,
 
     async maintain() {
+      // First, since the library also takes back what has not been confirmed for long: after a machine slept, that would be our own jobs.
+      await worker?.confirm();
       await queue.maintain();
       return removeOld(database, now);
     },

@@ -4,6 +4,8 @@ import type { Queue, QueueSettings, TakenJob } from './queue.ts';
 export interface Worker {
   /** look for jobs now */
   wake(): void;
+  /** says that the running jobs are still running, then takes back what dead processes left */
+  confirm(): Promise<void>;
   /** takes no more jobs; waits for the running ones, and puts back those that take too long */
   stop(): Promise<void>;
 }
@@ -77,7 +79,7 @@ export function startWorker(options: {
   };
 
   let tending: Promise<void> | undefined;
-  const tend = (): void => {
+  const confirm = (): Promise<void> => {
     tending ??= (async () => {
       if (running.size > 0) await queue.beat([...running.keys()]);
       if (options.shared) await queue.expire();
@@ -86,14 +88,16 @@ export function startWorker(options: {
       .finally(() => {
         tending = undefined;
       });
+    return tending;
   };
 
   const polling = setInterval(wake, settings.pollMs);
-  const beating = setInterval(tend, settings.beatMs);
+  const beating = setInterval(() => void confirm(), settings.beatMs);
   wake();
 
   return {
     wake,
+    confirm,
     async stop() {
       stopped = true;
       clearInterval(polling);

@@ -2,7 +2,7 @@ import { mkdir, mkdtemp, readdir, readFile, rm, utimes, writeFile } from 'node:f
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
-import { holdFolder } from '../../src/store/folderLock.ts';
+import { type FolderLock, holdFolder } from '../../src/store/folderLock.ts';
 import { ownIdentity } from '../../src/store/processIdentity.ts';
 import { bundled, started } from './support/bundled.ts';
 
@@ -75,6 +75,26 @@ describe('the lock of the data folder', () => {
       expect(held.length).toBe(1);
       await held[0]!.value.release();
     }
+  });
+
+  test('one that looked long ago and acts late steps back, although the number it wants has become free again', async () => {
+    const where = await folder();
+    await lockedBy(where, { startTicks: '1' });
+    let looks = 0;
+    let holder: FolderLock | undefined;
+    const slow = holdFolder(where, {
+      ...QUICK,
+      looked: async () => {
+        looks += 1;
+        if (looks > 1) return;
+        await (await holdFolder(where)).release();
+        holder = await holdFolder(where);
+        await expect.poll(() => readdir(join(where, 'lock'))).toEqual(['9']);
+      },
+    });
+    await expect(slow).rejects.toMatchObject({ code: 'STORE_LOCKED' });
+    expect(await readdir(join(where, 'lock'))).toEqual(['9']);
+    await holder?.release();
   });
 
   test('a process number that went to a later process does not block', async () => {
