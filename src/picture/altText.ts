@@ -39,7 +39,7 @@ function sentences(input: PictureInput): string[] {
     const { baseline } = chart;
     said.push(`The chart shows ${countOf(chart.points.length, 'point')}${span}`);
     const end = chart.points.at(-1);
-    const band = end ? `; chance alone keeps points between ${percentRange(end.lower, end.upper)}` : '';
+    const band = end ? chanceWords(end.lower, end.upper) : '';
     said.push(
       `The usual level is ${percent(chart.center)}, set from points ${baseline.first} to ${baseline.last}${baseline.provisional ? ', provisional' : ''}${band}`,
     );
@@ -47,9 +47,9 @@ function sentences(input: PictureInput): string[] {
   const marked = stretches(input.signals);
   for (const stretch of marked.slice(0, 3)) {
     const state = {
-      standing: 'Marked as standing',
-      watching: 'Marked as one to watch',
-      passed: 'Marked as passed',
+      standing: 'Flagged',
+      watching: 'One to watch',
+      passed: 'Flagged, but did not last',
     }[stretch.state];
     const where = stretch.from === stretch.to ? `point ${stretch.from}` : `points ${stretch.from} to ${stretch.to}`;
     said.push(`${state}, ${where}: ${stretch.words}`);
@@ -63,6 +63,13 @@ function sentences(input: PictureInput): string[] {
     );
   said.push(capitalised(waitingWords(input)), immatureWords(input));
   return said;
+}
+
+function chanceWords(lower: number, upper: number): string {
+  if (upper <= lower) return '';
+  return lower > 0
+    ? `; chance alone keeps points between ${percent(lower)} and ${percent(upper)}`
+    : `; chance alone keeps points below ${percent(upper)}`;
 }
 
 function finding(input: PictureInput): string {

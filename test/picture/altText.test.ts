@@ -26,8 +26,8 @@ describe('altText', () => {
   test('it says how many points there are, what is marked, and what is waiting', () => {
     const text = plain('risen');
     expect(text).toContain('The chart shows 57 points');
-    expect(text).toContain('Marked as standing, points 41 to 52: nine points in a row above the usual level');
-    expect(text).toContain('Marked as passed, point 12');
+    expect(text).toContain('Flagged, points 41 to 52: nine points in a row above the usual level');
+    expect(text).toContain('Flagged, but did not last, point 12');
     expect(text).toContain('Next point: 37 of 85 accounts so far, due about 3 December 2025');
     expect(text).toContain('412 accounts are too young to be counted');
     expect(plain('steady')).toContain('No point is flagged');
