@@ -142,7 +142,7 @@ export function createAppLink(options: {
       options.onChange();
       const outcome = await attempt(delivery, 0, undefined);
       settle(delivery, outcome.ok ? 'acknowledged' : 'failed');
-      return outcome;
+      return outcome.ok ? outcome : { ok: false, error: outcome.error };
     },
     setUrl: (next) => {
       url = next;
