@@ -43,6 +43,7 @@ export async function answerCounts(question: CountsQuestion): Promise<Answer> {
     segmentColumn: null,
     segment: null,
     segmentValues: [],
+    howChosen: [],
     readCautions: [],
   });
   const chartDone = clock();
@@ -51,6 +52,8 @@ export async function answerCounts(question: CountsQuestion): Promise<Answer> {
     dates,
     signals: judgement.signals,
     verdict,
+    wouldSee: judgement.trust.wouldSee,
+    ...(judgement.finding === 'mix-change' ? { flagsExplained: 'explained by the moving mix' } : {}),
     waiting: null,
     immature: 0,
     measure: 'share lost',

@@ -12,7 +12,7 @@ import type { VerdictContext } from '../verdict/context.ts';
 import { LEAST_POINTS } from '../verdict/judgement.ts';
 import type { PictureInput, PointDates } from '../verdict/types.ts';
 import { writeVerdict } from '../verdict/verdict.ts';
-import { counted } from '../verdict/words/format.ts';
+import { capitalised, counted } from '../verdict/words/format.ts';
 import { emptyJudgement } from './emptyJudgement.ts';
 import { readCautions } from './readCautions.ts';
 import type { Answer } from './types.ts';
@@ -84,6 +84,10 @@ export async function answerQuestion(table: AccountTable, question: Question, op
     segmentColumn: report.columns.segment ?? null,
     segment: segment ?? null,
     segmentValues: census.segments.map((entry) => entry.segment),
+    howChosen: [
+      ...(question.tenure ? [] : [`${capitalised(plan.tenureWhy)}.`]),
+      ...(question.subgroupSize ? [] : [`${capitalised(plan.sizeWhy)}.`]),
+    ],
     readCautions: [...caution, ...readCautions(report)],
   };
   const verdict = writeVerdict(chart, judgement, context);
@@ -94,6 +98,8 @@ export async function answerQuestion(table: AccountTable, question: Question, op
     dates,
     signals: judgement.signals,
     verdict,
+    wouldSee: judgement.trust.wouldSee,
+    ...(judgement.finding === 'mix-change' ? { flagsExplained: 'explained by the moving mix' } : {}),
     waiting: {
       accounts: census.waiting,
       of: plan.subgroupSize,

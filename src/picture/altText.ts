@@ -49,7 +49,7 @@ function sentences(input: PictureInput): string[] {
     const state = {
       standing: 'Flagged',
       watching: 'One to watch',
-      passed: 'Flagged, but did not last',
+      passed: input.flagsExplained === undefined ? 'Flagged, but did not last' : `Flagged, ${input.flagsExplained}`,
     }[stretch.state];
     const where = stretch.from === stretch.to ? `point ${stretch.from}` : `points ${stretch.from} to ${stretch.to}`;
     said.push(`${state}, ${where}: ${stretch.words}`);

@@ -42,7 +42,7 @@ function stretchWords(stretch: Stretch, input: PictureInput): { lead: string; re
   const rest = drawable(`${stretch.words}${more}`);
   if (stretch.state === 'standing') return { lead: beganWords(input) || 'flagged', rest };
   return {
-    lead: stretch.state === 'watching' ? 'one to watch' : 'flagged, but did not last',
+    lead: stretch.state === 'watching' ? 'one to watch' : (input.flagsExplained ?? 'flagged, but did not last'),
     rest,
   };
 }

@@ -49,7 +49,11 @@ function planNotes(input: PictureInput, unlabelled: readonly Stretch[], floor: s
     const when = input.dates[stretch.from - 1]?.firstStart ?? null;
     const where = when === null ? `point\u00a0${stretch.from}` : dateShort(when);
     const state =
-      stretch.state === 'passed' ? 'did not last' : stretch.state === 'watching' ? 'one to watch' : 'flagged';
+      stretch.state === 'passed'
+        ? (input.flagsExplained ?? 'did not last')
+        : stretch.state === 'watching'
+          ? 'one to watch'
+          : 'flagged';
     const mark = stretch.state === 'passed' ? PASSED_MARK : WATCHING_MARK;
     notes.push({
       text: `${state}: ${stretch.words} (from\u00a0${where})`,

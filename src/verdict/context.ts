@@ -22,6 +22,8 @@ export interface VerdictContext {
   readonly segmentColumn: string | null;
   readonly segment: string | null;
   readonly segmentValues: readonly string[];
+  /** why this tenure point and this size, when the program chose them: sentences */
+  readonly howChosen: readonly string[];
   /** cautions that reading the file gave rise to */
   readonly readCautions: readonly string[];
 }

@@ -146,7 +146,7 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = []): Ju
   ): Judgement => ({
     ...base,
     finding,
-    signals: readSignals(chart, standing, signalSide),
+    signals: readSignals(chart, standing, signalSide, finding === 'mix-change'),
     ...more,
   });
 

@@ -10,9 +10,15 @@ const NEW_WITHIN = TEST_SPAN[2];
 
 /**
  * All flags of a chart, each told apart: standing, watching (new, not standing yet) or passed.
- * @param moved  side on which the verdict found a standing shift, or null
+ * @param moved      side on which the verdict found a standing shift, or null
+ * @param explained  true when a move was found and something else explains it: its flags are passed, not watched
  */
-export function readSignals(chart: Chart, standing: Standing, moved: 'above' | 'below' | null): Signal[] {
+export function readSignals(
+  chart: Chart,
+  standing: Standing,
+  moved: 'above' | 'below' | null,
+  explained = false,
+): Signal[] {
   const newest = chart.points.length;
   const judgedFrom = chart.baseline.last >= newest ? 1 : chart.baseline.last + 1;
   const values = chart.points.map(({ value, sigma }) => ({
@@ -28,7 +34,7 @@ export function readSignals(chart: Chart, standing: Standing, moved: 'above' | '
     } else {
       const inBlock = episode.until >= Math.max(judgedFrom, standing[episode.side].block.first);
       if (moved === episode.side && inBlock) state = 'standing';
-      else if (moved === null && inBlock && recent) state = 'watching';
+      else if (moved === null && !explained && inBlock && recent) state = 'watching';
       else state = 'passed';
     }
     return { ...episode, state, words: testWords(episode) };

@@ -83,6 +83,8 @@ export interface PictureInput {
   readonly asOf: Day | null;
   /** the smallest moves that would by now have been seen; drawn when nothing moved, so that "steady" never stands alone */
   readonly wouldSee?: Trust['wouldSee'];
+  /** why flags that do not stand were raised, when it is known: replaces "did not last" on the picture */
+  readonly flagsExplained?: string;
 }
 
 export type { Side };

@@ -54,6 +54,7 @@ export function writeVerdict(chart: Chart | null, judgement: Judgement, context:
     ...(aboutMix ? mixSentences(judgement, shiftSignals) : watchSentences(watching, passed, context)),
     ...trustSentences(judgement, context, judgement.finding === 'steady'),
     ...(chart ? [countSentence(chart.points.length, context)] : []),
+    ...context.howChosen,
   ];
 
   return {

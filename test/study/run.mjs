@@ -12,8 +12,12 @@ const each = Number(process.argv[2] ?? 100);
 const seed = Number(process.argv[3] ?? 20_000);
 console.log(`${each} fresh exports per scenario, seeds from ${seed}`);
 for (const scenario of module.STUDY_SCENARIOS) {
-  const [row] = module.summarise(await module.runStudy(each, seed + module.STUDY_SCENARIOS.indexOf(scenario) * 1_000_000, [scenario]));
-  const outcomes = Object.entries(row.outcomes).map(([outcome, n]) => `${outcome} ${n}`).join(', ');
+  const [row] = module.summarise(
+    await module.runStudy(each, seed + module.STUDY_SCENARIOS.indexOf(scenario) * 1_000_000, [scenario]),
+  );
+  const outcomes = Object.entries(row.outcomes)
+    .map(([outcome, n]) => `${outcome} ${n}`)
+    .join(', ');
   const dated = row.dated > 0 ? `; true start among the candidates in ${row.startInCandidates} of ${row.dated}` : '';
   console.log(`${scenario.padEnd(9)} ${outcomes}${dated}`);
 }

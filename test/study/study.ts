@@ -1,8 +1,8 @@
 import { mkdtemp, rm, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import { simulateHistory } from '../../fixtures/generate/history.ts';
 import { toCsv } from '../../fixtures/generate/csv.ts';
+import { simulateHistory } from '../../fixtures/generate/history.ts';
 import type { ScenarioName } from '../../fixtures/generate/scenarios.ts';
 import { openEngine } from '../../src/accounts/engine.ts';
 import { readExport } from '../../src/accounts/readExport.ts';
@@ -51,7 +51,11 @@ async function runOne(scenario: ScenarioName, seed: number, folder: string): Pro
   const engine = await openEngine();
   try {
     const table = await readExport(engine, path, {});
-    const answer = await answerQuestion(table, { kind: 'ask' }, { subject: scenario, picture: false, clock: () => 0, readMs: 0 });
+    const answer = await answerQuestion(
+      table,
+      { kind: 'ask' },
+      { subject: scenario, picture: false, clock: () => 0, readMs: 0 },
+    );
     const { verdict, dates } = answer;
     const changed = accounts.find((account) => account.shifted);
     let startInCandidates: boolean | null = null;
