@@ -6,6 +6,9 @@ export interface DayCount {
   readonly count: number;
 }
 
+/** How far back before the latest start ends are looked at, to know how thickly they come: 13 weeks. */
+export const ENDS_LOOKED_AT_DAYS = 91;
+
 /**
  * The data-through date, from the file alone: never today's date.
  *
@@ -17,16 +20,16 @@ export interface DayCount {
  *
  * An early date costs a few young accounts; a late one counts accounts as mature that are not. In doubt this is early.
  * The rule is ours: common practice, no source.
+ * @param latestStart  from latestSteadyStart
+ * @param ends         at least those later than ENDS_LOOKED_AT_DAYS before it
  */
-export function dataThrough(starts: readonly DayCount[], ends: readonly DayCount[]): Day | undefined {
-  const latestStart = latestSteadyStart(starts);
-  if (latestStart === undefined) return undefined;
+export function dataThrough(latestStart: Day, ends: readonly DayCount[]): Day {
   const before = ends.filter(({ day }) => day <= latestStart);
   const after = ends.filter(({ day }) => day > latestStart);
   const last = after.at(-1);
   if (!last) return latestStart;
   const firstEnd = before[0]?.day ?? latestStart;
-  const span = Math.max(1, Math.min(91, latestStart - firstEnd + 1));
+  const span = Math.max(1, Math.min(ENDS_LOOKED_AT_DAYS, latestStart - firstEnd + 1));
   const perDay = total(before.filter(({ day }) => day > latestStart - span)) / span;
   // Nothing ended before the last start (a single wave of starts, say): the ends themselves are the only witness.
   if (perDay === 0) return last.day;
@@ -47,7 +50,8 @@ export function dataThrough(starts: readonly DayCount[], ends: readonly DayCount
   return short && driesUp ? latestStart : reached;
 }
 
-function latestSteadyStart(starts: readonly DayCount[]): Day | undefined {
+/** The latest start that is no outlier; see dataThrough. */
+export function latestSteadyStart(starts: readonly DayCount[]): Day | undefined {
   const last = starts.at(-1);
   if (!last) return undefined;
   const rows = total(starts);

@@ -44,7 +44,12 @@ function dateSql(column: string): string {
 }
 
 function dateTextSql(column: string, parsed: string): string {
-  return `CASE WHEN ${parsed} IS NULL THEN trim(regexp_replace(trim(${column}), '([0-9])${TIME_PATTERN}', '\\1')) END`;
+  return `CASE WHEN ${parsed} IS NULL AND ${column} IS NOT NULL THEN trim(regexp_replace(trim(${column}), '([0-9])${TIME_PATTERN}', '\\1')) END`;
+}
+
+/** A trimmed value, NULL when nothing is left. Looking for a space first is much cheaper than trimming every value. */
+function valueSql(column: string): string {
+  return `CASE WHEN contains(${column}, ' ') THEN nullif(trim(${column}), '') WHEN ${column} <> '' THEN ${column} END`;
 }
 
 /**
@@ -65,18 +70,16 @@ export async function readRaw(
     `quote = '"', escape = '"', columns = {${Array.from({ length: layout.width }, (_, at) => `'c${at}': 'VARCHAR'`).join(', ')}}, ` +
     `store_rejects = true, rejects_table = 'csv_errors', rejects_scan = 'csv_scans', rejects_limit = 0, ` +
     `buffer_size = ${BUFFER_BYTES}, max_line_size = ${LONGEST_LINE_BYTES * 2}, null_padding = ${layout.padded}, parallel = ${options.parallel})`;
-  const id = columns.id === undefined ? undefined : `nullif(trim(${column(columns.id)}), '')`;
-  const text = (at: number | undefined): string =>
-    at === undefined ? 'NULL::VARCHAR' : `nullif(trim(${column(at)}), '')`;
+  const text = (at: number | undefined): string => (at === undefined ? 'NULL::VARCHAR' : valueSql(column(at)));
   const day = (name: string): string =>
     `CASE WHEN ${name} >= DATE '1900-01-01' AND ${name} <= DATE '9999-12-31' THEN (${name} - DATE '1970-01-01')::INTEGER END`;
   const amount = columns.amount === undefined ? undefined : column(columns.amount);
   await connection.run('DROP TABLE IF EXISTS csv_errors; DROP TABLE IF EXISTS csv_scans');
   await connection.run(
-    `CREATE OR REPLACE TABLE raw AS SELECT ${id === undefined ? 'NULL::UBIGINT' : `CASE WHEN ${id} IS NOT NULL THEN ${keySql(id, options.idKey)} END`} AS key, ` +
+    `CREATE OR REPLACE TABLE raw AS SELECT ${columns.id === undefined ? 'NULL::UBIGINT' : `CASE WHEN id IS NOT NULL THEN ${keySql('id', options.idKey)} END`} AS key, ` +
       `start_day, ${dateTextSql('start_source', 'start_day')} AS start_text, end_day, ${dateTextSql('end_source', 'end_day')} AS end_text, ` +
       `segment, amount, ${amount === undefined ? 'NULL::VARCHAR' : `CASE WHEN amount IS NULL THEN ${amount} END`} AS amount_text, status, flag, id_kind ` +
-      `FROM (SELECT *, ${day('start_date')} AS start_day, ${day('end_date')} AS end_day FROM (SELECT *, ` +
+      `FROM (SELECT *, ${day('start_date')} AS start_day, ${day('end_date')} AS end_day FROM (SELECT *, ${text(columns.id)} AS id, ` +
       `${column(columns.start)} AS start_source, ${dateSql(column(columns.start))} AS start_date, ` +
       `${column(columns.end)} AS end_source, ${dateSql(column(columns.end))} AS end_date, ` +
       `${text(columns.segment)} AS segment, ` +

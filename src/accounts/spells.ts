@@ -24,16 +24,20 @@ export function spellsSql(source: string, bridgeDays: number): string {
 
 /**
  * Puts the accounts of table `kept` into `accounts`. Only the accounts with several rows are merged; the others pass.
+ * @param hasIds  false: every row is an account of its own
  * @returns the number of rows that repeat another one exactly and were left out
  */
 export async function mergeSpells(
   connection: DuckDBConnection,
   bridgeDays: number,
+  hasIds: boolean,
 ): Promise<{ duplicates: number; merged: boolean }> {
-  const { several } = await firstRow(
-    connection,
-    'SELECT count(*)::INTEGER AS several FROM (SELECT key FROM kept GROUP BY key HAVING count(*) > 1)',
-  );
+  const { several } = hasIds
+    ? await firstRow(
+        connection,
+        'SELECT count(*)::INTEGER AS several FROM (SELECT key FROM kept GROUP BY key HAVING count(*) > 1)',
+      )
+    : { several: 0 };
   if (Number(several) === 0) {
     await connection.run(
       'CREATE VIEW accounts AS SELECT key, start_day, end_day, segment, amount, false AS returned FROM kept',
