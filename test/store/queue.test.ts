@@ -2,7 +2,7 @@ import { randomUUID } from 'node:crypto';
 import { beforeAll, expect, test } from 'vitest';
 import { JOBS_SCHEMA, openQueue, QUEUE_SETTINGS, type Queue } from '../../src/store/queue.ts';
 import type { Database } from '../../src/store/sql.ts';
-import { behind, onBothEngines } from './support/engines.ts';
+import { behind, onBothEngines, onEmbedded } from './support/engines.ts';
 
 onBothEngines('the queue', (engine) => {
   let database: Database;
@@ -80,5 +80,26 @@ onBothEngines('the queue', (engine) => {
     );
     expect(row!.started_on.getTime()).toBeGreaterThan(0);
     await queue.complete(id);
+  });
+});
+
+onEmbedded('an entry that ends the process each time', (engine) => {
+  test('is taken back at each start as a further attempt, and given up after the last', async () => {
+    const database = await behind(await engine.migrated());
+    const id = randomUUID();
+    const first = await openQueue(database, QUEUE_SETTINGS);
+    await database.transaction((tx) => first.add(tx, id, { teamId: 'T1', eventKey: 'Ev-deadly' }));
+    await first.stop();
+    const attempts: number[] = [];
+    // Each round is a process that takes the job and never says how it went.
+    for (let start = 1; start <= 6; start++) {
+      const queue = await openQueue(database, QUEUE_SETTINGS);
+      for (const job of await queue.take(1)) attempts.push(job.retryCount + 1);
+      await queue.stop();
+    }
+    expect(attempts).toEqual([1, 2, 3, 4]);
+    expect(await database.query(`SELECT state::text FROM ${JOBS_SCHEMA}.job WHERE id = $1`, [id])).toEqual([
+      { state: 'failed' },
+    ]);
   });
 });

@@ -1,6 +1,6 @@
 import { beforeAll, expect, test } from 'vitest';
 import { bundled, started } from './support/bundled.ts';
-import { onBothEngines, onEmbedded, opened } from './support/engines.ts';
+import { onBothEngines, opened } from './support/engines.ts';
 import { dataset, entry, upload } from './support/samples.ts';
 
 let busy: string;
@@ -57,24 +57,6 @@ onBothEngines('a restart', (engine) => {
     await store.work(async ({ eventKey: worked, attempt }) => void seen.push([worked, attempt]), 1);
     await store.drained(30_000);
     expect(seen).toEqual([[eventKey, 2]]);
-    await store.close();
-  });
-});
-
-onEmbedded('an entry that ends the process each time', (engine) => {
-  test('is given up after its last attempt', async () => {
-    const place = await engine.migrated();
-    const { eventKey } = entry();
-    for (let attempt = 1; attempt <= 4; attempt++) {
-      const child = started(busy, place.dataFolder, '', eventKey);
-      expect(await child.line()).toContain(`working ${eventKey}`);
-      await child.kill();
-    }
-    const store = await opened(place);
-    const seen: string[] = [];
-    await store.work(async (each) => void seen.push(each.eventKey), 1);
-    await store.drained(20_000);
-    expect(seen).toEqual([]);
     await store.close();
   });
 });

@@ -142,5 +142,5 @@ export async function behind(place: Place): Promise<Database> {
 afterAll(async () => {
   await Promise.all(toClose.map((open) => open.close()));
   if (typeof server !== 'string') await server.stop();
-  await Promise.all(folders.map((folder) => rm(folder, { recursive: true, force: true })));
+  await Promise.all(folders.map((folder) => rm(folder, { recursive: true, force: true, maxRetries: 5 })));
 });
