@@ -59,14 +59,11 @@ async function maturedCounts(
   partial: PlanRequest,
 ): Promise<{ matured: number; lost: number; perWeek: number }> {
   const until = lastMaturedStart(partial.asOf, tenure, partial.settleDays);
-  const only = partial.segment === undefined ? '' : ` AND a.segment = '${partial.segment.replaceAll("'", "''")}'`;
+  const only = partial.segment === undefined ? '' : ` AND segment = '${partial.segment.replaceAll("'", "''")}'`;
   const row = await firstRow(
     table.connection,
-    `SELECT count(*)::INTEGER AS matured, count(*) FILTER (WHERE a.end_day <= d.tenure_point)::INTEGER AS lost,
-       count(*) FILTER (WHERE a.start_day > ${until - 91})::INTEGER AS recent
-     FROM ${table.table} AS a JOIN (
-       SELECT start_day, ${tenurePointSql('start_day', tenure)} AS tenure_point FROM (SELECT DISTINCT start_day FROM ${table.table} WHERE start_day <= ${until})
-     ) AS d ON a.start_day = d.start_day WHERE a.start_day <= ${until}${only}`,
+    `SELECT count(*)::INTEGER AS matured, count(*) FILTER (WHERE end_day <= ${tenurePointSql('start_day', tenure)})::INTEGER AS lost,
+       count(*) FILTER (WHERE start_day > ${until - 91})::INTEGER AS recent FROM ${table.table} WHERE start_day <= ${until}${only}`,
   );
   return { matured: Number(row.matured), lost: Number(row.lost), perWeek: Number(row.recent) / 13 };
 }

@@ -32,16 +32,21 @@ export function chanceSeen(size: number, rate: number, moved: number, points = S
   const below = [1, 2, 3].map((k) => binomialBelow(size * (rate - k * sigma), size, moved));
   const [one = 0, two = 0, three = 0] = below;
   const zones = [1 - one, one - two, two - three, three];
-  let states = new Map<string, number>([['0000', 1]]);
+  // A state is the zones of the last four points as the digits of a number in base four, the newest last.
+  let states = new Float64Array(256);
+  states[0] = 1;
   let seen = 0;
   for (let point = 0; point < points; point++) {
-    const next = new Map<string, number>();
-    for (const [state, chance] of states) {
+    const next = new Float64Array(256);
+    for (let state = 0; state < 256; state++) {
+      const chance = states[state] ?? 0;
+      if (chance === 0) continue;
       for (const [zone, zoneChance] of zones.entries()) {
-        if (zoneChance <= 0) continue;
-        const recent = `${state}${zone}`;
-        if (flags(recent)) seen += chance * zoneChance;
-        else next.set(recent.slice(1), (next.get(recent.slice(1)) ?? 0) + chance * zoneChance);
+        if (flags(state, zone)) seen += chance * zoneChance;
+        else {
+          const after = ((state << 2) | zone) & 255;
+          next[after] = (next[after] ?? 0) + chance * zoneChance;
+        }
       }
     }
     states = next;
@@ -49,12 +54,14 @@ export function chanceSeen(size: number, rate: number, moved: number, points = S
   return seen;
 }
 
-function flags(lastFive: string): boolean {
-  const zones = [...lastFive].map(Number);
-  const newest = zones[4] ?? 0;
+function flags(lastFour: number, newest: number): boolean {
   if (newest === 3) return true;
-  if (newest >= 2 && zones.slice(2).filter((zone) => zone >= 2).length >= 2) return true;
-  return newest >= 1 && zones.filter((zone) => zone >= 1).length >= 4;
+  const zoneBefore = (points: number): number => (lastFour >> (2 * (points - 1))) & 3;
+  if (newest === 2 && (zoneBefore(1) >= 2 || zoneBefore(2) >= 2)) return true;
+  if (newest === 0) return false;
+  let beyondOne = 1;
+  for (let points = 1; points <= 4; points++) if (zoneBefore(points) >= 1) beyondOne++;
+  return beyondOne >= 4;
 }
 
 /** P(X < limit) for X binomial; strictly below, as "beyond" is strict. */
