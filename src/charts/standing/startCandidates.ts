@@ -50,7 +50,10 @@ export function startCandidates(
   );
   drops.sort((a, b) => a - b);
   const allowed = drops[Math.ceil(BOOTSTRAP_HISTORIES * CANDIDATE_COVERAGE) - 1]!;
-  const inside = here.ratios.flatMap((ratio, i) => (here.best - ratio <= allowed ? [i + 1] : []));
+  // A start on the other side is no start of this move, however wide the set.
+  const inside = here.ratios.flatMap((ratio, i) =>
+    ratio > Number.NEGATIVE_INFINITY && here.best - ratio <= allowed ? [i + 1] : [],
+  );
   return {
     first: here.first,
     candidates: [Math.min(here.first, ...inside), Math.max(here.first, ...inside)],
