@@ -11,7 +11,7 @@ export interface RunLength {
   readonly runs: number;
 }
 
-/** A run is cut here so that a chart that can hardly flag still answers; the mean is then a lower bound, and is marked so. */
+/** A run this long ends the simulation without an answer: the chart can hardly flag, and a mean of cut runs would be too low. */
 const LONGEST_RUN = 20_000;
 const POINT_BUDGET = 400_000;
 const MOST_RUNS = 3_000;
@@ -21,7 +21,7 @@ const MOST_RUNS = 3_000;
  * @param sizes   accounts per point; with unequal sizes they are gone through again and again
  * @param center  rate the limits are computed from
  * @param rate    true rate of the simulated accounts (equal to center for the false-alarm figure)
- * @returns       mean in points with its standard error; null when no run flagged within the budget
+ * @returns       mean in points with its standard error; null when a run went on for 20,000 points without a flag
  */
 export function simulatedRunLength(
   sizes: readonly number[],
