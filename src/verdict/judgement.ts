@@ -109,22 +109,19 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = []): Ju
 
   // Quasi-likelihood: when the points vary more than the binomial allows, every log likelihood ratio shrinks by that factor.
   // Source: McCullagh P and Nelder JA, Generalized Linear Models, 1989, section 4.5 (section from memory).
-  const used = counts.filter((_, i) => i < chart.baseline.last && !chart.baseline.excluded.includes(i + 1));
+  const used = chart.points.filter(
+    ({ index }) => index <= chart.baseline.last && !chart.baseline.excluded.includes(index),
+  );
   // On trial limits a block lies in the baseline itself; its move must not be taken for spread.
   const blockFirst = trial && standing[side].score > threshold.ratio ? standing[side].block.first : newest + 1;
   const isBefore = ({ index }: { index: number }): boolean => index < blockFirst;
-  const spread = trial
-    ? dispersion(
-        ...splitBy(
-          chart.points.filter((point) => !chart.baseline.excluded.includes(point.index)),
-          isBefore,
-        ),
-      )
-    : dispersion(used);
+  const spread = dispersion(...splitBy(used, isBefore));
   const shrink = spread && spread.pValue < OVERDISPERSED ? Math.max(1, spread.ratio) : 1;
   const moved = standing[side].score / shrink > threshold.ratio ? side : null;
-  const level = trial && moved ? counts.slice(0, blockFirst - 1) : used;
-  const split = steadiness(level, shrink);
+  const level = moved ? used.filter(isBefore) : used;
+  const within = steadiness(level, shrink);
+  // Numbered as on the chart, where left-out points count too.
+  const split = within && { ...within, splitAfter: level[within.splitAfter - 1]!.index };
 
   const base: Omit<Judgement, 'finding' | 'signals'> & {
     mix: MixReading | null;
@@ -151,7 +148,7 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = []): Ju
   });
 
   if (split && split.pValue < UNSTEADY) {
-    const mix = readMix(segments, split.splitAfter + 1, level.length, split.splitAfter, threshold.ratio);
+    const mix = readMix(segments, split.splitAfter + 1, level.at(-1)!.index, split.splitAfter, threshold.ratio);
     if (mix?.explains !== 'all') return judged('unsteady-baseline', null);
     // Steady within the groups: the level moved with the mix, which is told, and the rest is judged as usual.
     base.mix = mix;
