@@ -48,7 +48,12 @@ export function buildApp(deps: ChannelDeps, inbound: Inbound): ChannelApp {
     inbound.mode === 'http'
       ? httpFront({ signingSecret: inbound.signingSecret, log: deps.log, now: deps.now, ready: () => ready })
       : undefined;
-  const receiver = front?.receiver ?? socketReceiver(deps, inbound as Extract<Inbound, { mode: 'socket' }>);
+  let stopping = false;
+  const receiver =
+    front?.receiver ??
+    socketReceiver(deps, inbound as Extract<Inbound, { mode: 'socket' }>, () => {
+      if (!stopping) deps.onConnectionLost?.();
+    });
   const app = new App({
     token: deps.slack.botToken,
     receiver,
@@ -82,19 +87,25 @@ export function buildApp(deps: ChannelDeps, inbound: Inbound): ChannelApp {
     },
     async stop() {
       ready = false;
+      stopping = true;
       if (inbound.mode === 'socket') await receiver.stop();
       await Promise.all(background);
     },
   };
 }
 
-function socketReceiver(deps: ChannelDeps, inbound: Extract<Inbound, { mode: 'socket' }>): Receiver {
-  return holdAcknowledgement(
-    new SocketModeReceiver({
-      appToken: inbound.appToken,
-      logger: boltLogger(deps.log),
-      installerOptions: { clientOptions: clientOptions(deps) },
-      ...(inbound.clientPingTimeout === undefined ? {} : { clientPingTimeout: inbound.clientPingTimeout }),
-    }),
-  );
+function socketReceiver(
+  deps: ChannelDeps,
+  inbound: Extract<Inbound, { mode: 'socket' }>,
+  onLost: () => void,
+): Receiver {
+  const receiver = new SocketModeReceiver({
+    appToken: inbound.appToken,
+    logger: boltLogger(deps.log),
+    installerOptions: { clientOptions: clientOptions(deps) },
+    ...(inbound.clientPingTimeout === undefined ? {} : { clientPingTimeout: inbound.clientPingTimeout }),
+  });
+  // Said only when the client has given up, not when it connects anew.
+  receiver.client.on('disconnected', onLost);
+  return holdAcknowledgement(receiver);
 }

@@ -31,4 +31,6 @@ export interface ChannelDeps {
   readonly practice: boolean;
   /** entries worked at a time; those of one channel are worked one after the other */
   readonly concurrency?: number;
+  /** socket mode: the connection is gone and will not be tried again */
+  readonly onConnectionLost?: () => void;
 }

@@ -26,6 +26,11 @@ export function code(text: string, longest = 80): string {
   return shown === '' ? '(no name)' : `\`${escaped(shown)}\``;
 }
 
+/** For places that take plain text only (alternative text, titles), where nothing is escaped: brackets that look the same do nothing. */
+export function plainLine(text: string): string {
+  return oneLine(text).replaceAll('<', '‹').replaceAll('>', '›');
+}
+
 export function oneLine(text: string): string {
   // biome-ignore lint/suspicious/noControlCharactersInRegex: control characters are what must go
   return text.replace(/[\u0000-\u001F\u007F-\u009F\u2028\u2029\u202A-\u202E\u2066-\u2069]+/g, ' ').trim();

@@ -1,7 +1,7 @@
 import type { Answer } from '../../answers/types.ts';
 import { ACTION } from '../names.ts';
 import { type Block, bullets, button, context, type Message, message, section } from './blocks.ts';
-import { inert, oneLine, shortened } from './text.ts';
+import { inert, plainLine, shortened } from './text.ts';
 
 export interface UnderstoodWords {
   /** the question put back into words; shown when somebody asked in words */
@@ -10,7 +10,7 @@ export interface UnderstoodWords {
 }
 
 /** Most lines shown of each kind: the whole list of passed flags of a long history would bury the answer. */
-const MOST_LINES = 8;
+const MOST_LINES = 14;
 const ALT_LENGTH = 2000;
 const BUTTON_VALUE_LENGTH = 2000;
 
@@ -37,7 +37,8 @@ export function verdictMessage(
       ? {
           type: 'image',
           slack_file: { id: fileId },
-          alt_text: shortened(oneLine(picture.altText), ALT_LENGTH) || shortened(oneLine(verdict.headline), ALT_LENGTH),
+          alt_text:
+            shortened(plainLine(picture.altText), ALT_LENGTH) || shortened(plainLine(verdict.headline), ALT_LENGTH),
         }
       : undefined;
   return message(

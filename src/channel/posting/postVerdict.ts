@@ -4,7 +4,7 @@ import type { Logger } from 'pino';
 import type { Answer } from '../../answers/types.ts';
 import type { HostRule } from '../download/hosts.ts';
 import { shareFailedMessage } from '../messages/plainMessages.ts';
-import { oneLine, shortened } from '../messages/text.ts';
+import { plainLine, shortened } from '../messages/text.ts';
 import { type UnderstoodWords, verdictMessage } from '../messages/verdictMessage.ts';
 import type { Poster } from './poster.ts';
 import { uploadPicture } from './uploadPicture.ts';
@@ -96,5 +96,5 @@ async function shared({ client, rule, poster, log }: VerdictPosting, answer: Ans
 }
 
 function nameOf(answer: Answer): { name: string; title: string } {
-  return { name: 'churn.png', title: shortened(oneLine(answer.verdict.headline), 200) };
+  return { name: 'churn.png', title: shortened(plainLine(answer.verdict.headline), 200) };
 }

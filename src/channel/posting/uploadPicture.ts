@@ -3,7 +3,7 @@ import type { WebClient } from '@slack/web-api';
 import { z } from 'zod';
 import type { Picture } from '../../picture/picture.ts';
 import { type HostRule, isAllowed } from '../download/hosts.ts';
-import { oneLine, shortened } from '../messages/text.ts';
+import { plainLine, shortened } from '../messages/text.ts';
 import type { Place } from './poster.ts';
 
 const urlReply = z.object({ upload_url: z.string(), file_id: z.string() });
@@ -36,7 +36,7 @@ export async function uploadPicture(
   const asked = await client.apiCall('files.getUploadURLExternal', {
     filename: file.name,
     length: picture.png.byteLength,
-    alt_txt: shortened(oneLine(picture.altText), ALT_LENGTH),
+    alt_txt: shortened(plainLine(picture.altText), ALT_LENGTH),
   });
   const { upload_url, file_id } = urlReply.parse(asked);
   const url = new URL(upload_url);
