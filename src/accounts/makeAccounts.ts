@@ -46,7 +46,7 @@ export async function makeAccounts(
   const ragged = raw.ragged.slice(layout.raggedAbove).map(({ offset }) => offset);
   const state = await firstRow(
     connection,
-    `SELECT count(*)::INTEGER AS rows, count(start_text) + count(end_text) AS date_texts, count(amount_text)::INTEGER AS amount_texts,
+    `SELECT count(*)::INTEGER AS rows, ${raw.texts ? 'count(start_text) + count(end_text) AS date_texts, count(amount_text)' : '0 AS date_texts, 0'} AS amount_texts,
        count(*) FILTER (WHERE id_kind = ${ID_KIND.test})::INTEGER AS test_ids FROM ${data}`,
   );
   const rows = Number(state.rows);
@@ -59,7 +59,10 @@ export async function makeAccounts(
     statuses: distinct.status.map(({ value }) => value),
     flags: distinct.flag.map(({ value }) => value),
   });
-  const reason = reasonSql(columns, telling, { testIds: Number(state.test_ids) <= rows * TEST_ID_SHARE });
+  const reason = reasonSql(columns, telling, {
+    testIds: Number(state.test_ids) <= rows * TEST_ID_SHARE,
+    texts: raw.texts,
+  });
   const key = columns.id === undefined ? 'hash(rowid)' : 'key';
   await connection.run(
     `CREATE VIEW judged AS SELECT rowid AS n, ${key} AS key, start_day, ${TRUE_END_SQL} AS end_day, segment, amount, ${reason} AS reason FROM ${data}`,

@@ -18,6 +18,8 @@ export interface RawTable {
   readonly ragged: readonly RaggedRecord[];
   /** some row is not valid UTF-8 */
   readonly badEncoding: boolean;
+  /** table raw has start_text, end_text and amount_text; without them there was nothing to put there */
+  readonly texts: boolean;
   /** the number of rows above the data (preamble and header), which come first */
   readonly rowsAbove: number;
 }
@@ -53,16 +55,18 @@ function valueSql(column: string): string {
 }
 
 /**
- * Reads the file once into table `raw`: key, start_day, start_text, end_day, end_text, segment, amount, amount_text, status, flag, id_kind; the table's
- * rowid is the row's ordinal. Days are filled where the text is an ISO date; every other text is kept beside, untouched but for a time
- * of day behind the date.
+ * Reads the file into table `raw`: key, start_day, end_day, segment, amount, id_kind, and status and flag where there are such columns; the
+ * table's rowid is the row's ordinal. Days are filled where the text is an ISO date. Every other text is kept beside (start_text, end_text,
+ * amount_text), untouched but for a time of day behind the date.
+ * @param options.texts  false when the beginning of the file holds nothing but ISO dates and plain numbers: three text columns are then
+ *   spared, which is a third of the time. Should other texts turn up after all, the file is read again with them.
  */
 export async function readRaw(
   connection: DuckDBConnection,
   path: string,
   layout: Layout,
   columns: Columns,
-  options: { readonly idKey: string | undefined; readonly parallel: boolean },
+  options: { readonly idKey: string | undefined; readonly parallel: boolean; readonly texts: boolean },
 ): Promise<RawTable> {
   const column = (at: number): string => quoteName(`c${at}`);
   const source =
@@ -74,18 +78,34 @@ export async function readRaw(
   const day = (name: string): string =>
     `CASE WHEN ${name} >= DATE '1900-01-01' AND ${name} <= DATE '9999-12-31' THEN (${name} - DATE '1970-01-01')::INTEGER END`;
   const amount = columns.amount === undefined ? undefined : column(columns.amount);
+  const amountText = amount === undefined ? 'NULL::VARCHAR' : `CASE WHEN amount IS NULL THEN ${amount} END`;
+  const odd = [
+    '(start_day IS NULL AND start_source IS NOT NULL)',
+    '(end_day IS NULL AND end_source IS NOT NULL)',
+    ...(amount === undefined ? [] : [`(amount IS NULL AND ${amount} IS NOT NULL)`]),
+  ];
+  const texts = options.texts
+    ? `${dateTextSql('start_source', 'start_day')} AS start_text, ${dateTextSql('end_source', 'end_day')} AS end_text, ${amountText} AS amount_text`
+    : `(${odd.join(' OR ')}) AS odd`;
+  const ruled = (['status', 'flag'] as const).filter((role) => columns[role] !== undefined);
   await connection.run('DROP TABLE IF EXISTS csv_errors; DROP TABLE IF EXISTS csv_scans');
   await connection.run(
     `CREATE OR REPLACE TABLE raw AS SELECT ${columns.id === undefined ? 'NULL::UBIGINT' : `CASE WHEN id IS NOT NULL THEN ${keySql('id', options.idKey)} END`} AS key, ` +
-      `start_day, ${dateTextSql('start_source', 'start_day')} AS start_text, end_day, ${dateTextSql('end_source', 'end_day')} AS end_text, ` +
-      `segment, amount, ${amount === undefined ? 'NULL::VARCHAR' : `CASE WHEN amount IS NULL THEN ${amount} END`} AS amount_text, status, flag, id_kind ` +
+      `${['start_day', 'end_day', 'segment', 'amount', 'id_kind', ...ruled].join(', ')}, ${texts} ` +
       `FROM (SELECT *, ${day('start_date')} AS start_day, ${day('end_date')} AS end_day FROM (SELECT *, ${text(columns.id)} AS id, ` +
       `${column(columns.start)} AS start_source, ${dateSql(column(columns.start))} AS start_date, ` +
       `${column(columns.end)} AS end_source, ${dateSql(column(columns.end))} AS end_date, ` +
-      `${text(columns.segment)} AS segment, ` +
-      `${amount === undefined ? 'NULL::DOUBLE' : `try_cast(${amount} AS DOUBLE)`} AS amount, ${text(columns.status)} AS status, ${text(columns.flag)} AS flag, ` +
+      `${text(columns.segment)} AS segment, ${amount === undefined ? 'NULL::DOUBLE' : `try_cast(${amount} AS DOUBLE)`} AS amount, ` +
+      `${ruled.map((role) => `${text(columns[role])} AS ${role}, `).join('')}` +
       `${columns.id === undefined ? '0::UTINYINT' : idKindSql(column(columns.id))} AS id_kind FROM ${source}))`,
   );
+  if (!options.texts) {
+    const { found } = await firstRow(
+      connection,
+      `SELECT count(*) FILTER (WHERE odd) AS found FROM raw WHERE rowid >= ${layout.widthRecordsAbove}`,
+    );
+    if (Number(found) > 0) return readRaw(connection, path, layout, columns, { ...options, texts: true });
+  }
   const errors = await rowsOf(
     connection,
     `SELECT line_byte_position - 1 AS at, bool_or(error_type::VARCHAR = 'INVALID ENCODING') AS encoding
@@ -96,6 +116,7 @@ export async function readRaw(
     rows: Number(rows),
     ragged: errors.map((row) => ({ offset: Number(row.at) })),
     badEncoding: errors.some((row) => row.encoding === true),
+    texts: options.texts,
     rowsAbove: layout.widthRecordsAbove,
   };
 }

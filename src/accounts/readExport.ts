@@ -94,7 +94,11 @@ async function readRows(
 ): Promise<RawTable> {
   const read = async (parallel: boolean): Promise<RawTable> => {
     try {
-      return await readRaw(connection, path, layout, columns, { idKey: options.idKey, parallel });
+      return await readRaw(connection, path, layout, columns, {
+        idKey: options.idKey,
+        parallel,
+        texts: hasOtherTexts(layout, columns),
+      });
     } catch (error) {
       if (isCopy) throw unreadable(error);
       throw new NeedsCopy('utf-8', error);
@@ -133,4 +137,15 @@ async function withProgress<T>(
   } finally {
     clearInterval(timer);
   }
+}
+
+/** The beginning of the file holds dates that are not plain ISO dates, or amounts that are not plain numbers. */
+function hasOtherTexts(layout: Layout, columns: Columns): boolean {
+  const plain = (text: string, pattern: RegExp): boolean => text === '' || pattern.test(text);
+  return layout.sample.some(
+    ({ fields }) =>
+      !plain(fields[columns.start] ?? '', /^\d{4}-\d{2}-\d{2}$/) ||
+      !plain(fields[columns.end] ?? '', /^\d{4}-\d{2}-\d{2}$/) ||
+      !plain(columns.amount === undefined ? '' : (fields[columns.amount] ?? ''), /^-?\d+(\.\d+)?$/),
+  );
 }

@@ -95,7 +95,11 @@ function oneOf(column: string, values: readonly string[]): string[] {
  * amount, status, flag. A trial is left out only while no amount above zero stands beside it: whoever paid is a customer, whatever the plan
  * is called.
  */
-export function reasonSql(columns: Columns, telling: TellingValues, use: { readonly testIds: boolean }): string {
+export function reasonSql(
+  columns: Columns,
+  telling: TellingValues,
+  use: { readonly testIds: boolean; readonly texts: boolean },
+): string {
   const internal = [
     ...(use.testIds ? [`id_kind = ${ID_KIND.test}`] : []),
     ...oneOf('segment', telling.testSegments),
@@ -113,9 +117,9 @@ export function reasonSql(columns: Columns, telling: TellingValues, use: { reado
         ]),
     ...when(internal, 'internal'),
     ...when(trial, 'trial', ' AND coalesce(amount, 0) <= 0'),
-    "WHEN start_day IS NULL AND start_text IS NULL THEN 'start-missing'",
+    `WHEN start_day IS NULL${use.texts ? ' AND start_text IS NULL' : ''} THEN 'start-missing'`,
     `WHEN start_day IS NULL OR start_day <= ${NO_DATE_UNTIL} OR start_day >= ${NEVER_FROM} THEN 'start-unreadable'`,
-    "WHEN end_day IS NULL AND end_text IS NOT NULL THEN 'end-unreadable'",
+    ...(use.texts ? ["WHEN end_day IS NULL AND end_text IS NOT NULL THEN 'end-unreadable'"] : []),
     ...when(
       oneOf('status', telling.endedStatuses),
       'end-missing',
