@@ -7,6 +7,7 @@ import { type Columns, recogniseColumns } from './columns.ts';
 import type { Engine } from './engine.ts';
 import { type Encoding, type FileStart, lineTooLong, readFileStart } from './fileStart.ts';
 import { type Layout, layoutOf } from './layout.ts';
+import { countRecords } from './lines.ts';
 import { makeAccounts } from './makeAccounts.ts';
 import { type RawTable, readRaw } from './rawTable.ts';
 import type { AccountTable, ReadOptions } from './types.ts';
@@ -72,7 +73,7 @@ async function readFile(
   const connection = await engine.open(path);
   try {
     const raw = await withProgress(connection, options.onProgress, () =>
-      readRows(connection, path, layout, columns, options, start, isCopy),
+      readRows(connection, path, layout, columns, options, isCopy),
     );
     const report = await makeAccounts(connection, { path, layout, columns, raw, encoding }, options);
     options.onProgress?.(1);
@@ -89,7 +90,6 @@ async function readRows(
   layout: Layout,
   columns: Columns,
   options: ReadOptions,
-  start: FileStart,
   isCopy: boolean,
 ): Promise<RawTable> {
   const read = async (parallel: boolean): Promise<RawTable> => {
@@ -106,9 +106,24 @@ async function readRows(
   };
   let raw = await read(true);
   if (raw.badEncoding && !isCopy) throw new NeedsCopy('windows-1252');
-  // Read in pieces, a quoted line break at the edge of a piece can pass for a broken row: where there are any, one thread decides.
-  if (raw.ragged.length > 0 && start.sizeBytes > 4_000_000) raw = await read(false);
+  if (raw.ragged.length === 0) return raw;
+  // Broken rows: hold the engine's count against our own. Read in pieces, a quoted line break at the edge of a piece can pass for a
+  // broken row; then one thread decides.
+  const { records, unclosedLine } = countRecords(path, layout.delimiter);
+  if (unclosedLine !== undefined) throw quoteUnclosed(unclosedLine);
+  const all = (): boolean => raw.rows + raw.ragged.length === records;
+  if (!all()) raw = await read(false);
+  if (!all()) throw unreadable(undefined);
   return raw;
+}
+
+function quoteUnclosed(line: number): EbbError {
+  return new EbbError(
+    'FILE_NOT_CSV',
+    `the row that begins in line ${line} opens a quote (") that is never closed, so the rows after it cannot be told apart`,
+    `Close the quote in line ${line} or take it out, and send the file again.`,
+    { detail: { line } },
+  );
 }
 
 function unreadable(error: unknown): EbbError {

@@ -120,10 +120,20 @@ describe('a file that cannot be used gets one clear error, and the next one is r
     expect(report.accounts).toBe(20_001);
   });
 
-  it('a quote that is never closed is listed at its line', async () => {
-    const report = await files.report('id,start,end\n1,2024-01-02,\n"2,2024-01-03,\n3,2024-01-04,\n');
+  it('a quote that is never closed would swallow all rows after it: the file is refused with its line', async () => {
+    for (const count of [3, 30_000]) {
+      const error = await files.refused(
+        `id,start,end\n1,2024-01-02,\n"2,2024-01-03,\n${rows(count, (at) => `${at + 3},2024-01-04,`)}\n`,
+      );
+      expect(error.code).toBe('FILE_NOT_CSV');
+      expect(error.message).toContain('line 3');
+    }
+  });
+
+  it('a quote in the wrong place breaks its own row only', async () => {
+    const report = await files.report('id,start,end\n1,2024-01-02,\n"2"x,2024-01-03,\n3,2024-01-04,\n');
     expect(report.rejected).toMatchObject([{ code: 'ragged', rows: 1, firstLine: 3 }]);
-    expect(report.accounts).toBe(1);
+    expect(report).toMatchObject({ rows: 3, accounts: 2 });
   });
 
   it('names with quotes and SQL in them stay text', async () => {
