@@ -1,6 +1,16 @@
 import { EbbError } from '../errors.ts';
+import {
+  amountWords,
+  endWords,
+  flagWords,
+  idWords,
+  segmentWords,
+  startWords,
+  statusWords,
+  type WordScore,
+} from './columnWords.ts';
 import { type DateReadings, dateReadings } from './dateText.ts';
-import { hasAny, headerWords } from './headerWords.ts';
+import { headerWords } from './headerWords.ts';
 import type { Layout } from './layout.ts';
 import { shorten } from './layout.ts';
 import type { ColumnMap, ColumnRole } from './types.ts';
@@ -51,323 +61,25 @@ function contentOf(layout: Layout, column: number): Content {
   };
 }
 
-type Score = (words: readonly string[], content: Content) => number;
-
-/*
- * Points per role: words of the header first, content second. A column that can't hold the role by its content gets none.
- * The weights are ours, settled on the header list in test/accounts/columns.test.ts; no source.
- */
-const OTHER_DATES = [
-  'trial',
-  'next',
-  'updated',
-  'modified',
-  'login',
-  'seen',
-  'birth',
-  'dob',
-  'birthday',
-  'invoice',
-  'billing',
-  'renewal',
-  'renews',
-  'synced',
-  'exported',
-  'contacted',
-  'period',
-  'current',
-  'refreshed',
-  'snapshot',
-];
-
-const startWords: Score = (words) => {
-  if (
-    hasAny(words, [
-      'end',
-      'ended',
-      'ends',
-      'cancel',
-      'cancelled',
-      'canceled',
-      'churn',
-      'churned',
-      'until',
-      'expiry',
-      'expired',
-      'expires',
-    ])
-  )
-    return 0;
-  let points = 0;
-  if (
-    hasAny(words, [
-      'start',
-      'started',
-      'starts',
-      'begin',
-      'began',
-      'begins',
-      'beginning',
-      'commenced',
-      'beginn',
-      'startdatum',
-      'vertragsbeginn',
-      'debut',
-      'inicio',
-      'inizio',
-    ])
-  )
-    points = 12;
-  else if (
-    hasAny(words, [
-      'signup',
-      'subscribed',
-      'joined',
-      'join',
-      'joining',
-      'activated',
-      'activation',
-      'since',
-      'enrolled',
-      'enrolment',
-      'enrollment',
-      'onboarded',
-      'converted',
-      'conversion',
-      'opened',
-      'acquired',
-      'alta',
-    ])
-  )
-    points = 10;
-  else if (hasAny(words, ['sign', 'signed']) && hasAny(words, ['up', 'on', 'date', 'at', 'signed'])) points = 10;
-  else if (hasAny(words, ['first'])) points = hasAny(words, ['name']) ? 0 : 10;
-  else if (hasAny(words, ['from', 'effective', 'inception'])) points = 8;
-  else if (
-    hasAny(words, ['created', 'creation', 'registered', 'registration', 'purchased', 'purchase', 'bought', 'ordered'])
-  )
-    points = 7;
-  else if (hasAny(words, ['live', 'open', 'new'])) points = 5;
-  else if (words.length === 1 && words[0] === 'date') points = 4;
-  if (
-    points > 0 &&
-    hasAny(words, [
-      'subscription',
-      'sub',
-      'contract',
-      'paid',
-      'payment',
-      'paying',
-      'customer',
-      'membership',
-      'member',
-      'account',
-      'plan',
-    ])
-  )
-    points += 1;
-  if (hasAny(words, ['paid', 'payment', 'paying']) && points > 0) points += 2;
-  return hasAny(words, OTHER_DATES) ? points * 0.3 : points;
-};
-
-const endWords: Score = (words) => {
-  let points = 0;
-  if (
-    hasAny(words, [
-      'churn',
-      'churned',
-      'cancel',
-      'cancelled',
-      'canceled',
-      'cancellation',
-      'cancelation',
-      'cancels',
-      'terminated',
-      'termination',
-      'kundigung',
-      'gekundigt',
-      'baja',
-    ])
-  )
-    points = 11;
-  else if (
-    hasAny(words, ['end', 'ended', 'ends', 'ending', 'ende', 'enddatum', 'vertragsende', 'fin', 'finished', 'finish'])
-  )
-    points = 12;
-  else if (
-    hasAny(words, [
-      'expired',
-      'expires',
-      'expiry',
-      'expiration',
-      'lapsed',
-      'lapse',
-      'closed',
-      'close',
-      'closing',
-      'left',
-      'leave',
-      'leaving',
-      'departed',
-      'unsubscribed',
-      'unsubscribe',
-      'deactivated',
-      'deactivation',
-      'stopped',
-      'stop',
-      'stops',
-      'quit',
-      'exit',
-      'exited',
-      'lost',
-      'inactive',
-      'offboarded',
-      'attrition',
-      'disconnected',
-    ])
-  )
-    points = 10;
-  else if (hasAny(words, ['until', 'thru', 'through'])) points = 9;
-  else if (hasAny(words, ['to', 'last', 'off'])) points = 5;
-  if (points > 0 && hasAny(words, ['reason', 'by', 'type', 'note', 'notes', 'comment', 'score', 'probability', 'risk']))
-    points *= 0.2;
-  return hasAny(words, OTHER_DATES) ? points * 0.3 : points;
-};
-
-const idWords: Score = (words) => {
-  const idLike = hasAny(words, [
-    'id',
-    'uuid',
-    'guid',
-    'key',
-    'number',
-    'no',
-    'nr',
-    'num',
-    'ref',
-    'reference',
-    'code',
-    'identifier',
-    'kundennummer',
-  ]);
-  const account = hasAny(words, [
-    'account',
-    'acct',
-    'customer',
-    'cust',
-    'client',
-    'member',
-    'user',
-    'subscriber',
-    'company',
-    'organisation',
-    'organization',
-    'org',
-    'tenant',
-    'logo',
-    'household',
-    'kunde',
-    'kunden',
-    'kundennummer',
-    'cliente',
-    'workspace',
-    'team',
-  ]);
-  if (
-    hasAny(words, [
-      'plan',
-      'product',
-      'price',
-      'coupon',
-      'campaign',
-      'country',
-      'region',
-      'parent',
-      'invoice',
-      'referral',
-      'referrer',
-      'postal',
-      'zip',
-      'phone',
-      'status',
-      'type',
-      'segment',
-      'tier',
-      'channel',
-      'since',
-    ])
-  )
-    return 0;
-  if (idLike && account) return 12;
-  if (idLike && hasAny(words, ['subscription', 'sub', 'contract', 'membership'])) return 8;
-  if (idLike && words.length === 1) return 9;
-  if (idLike) return 5;
-  if (hasAny(words, ['email', 'mail'])) return 6;
-  if (account) return hasAny(words, ['name']) ? 6 : 7;
-  return 0;
-};
-
-const segmentWords: Score = (words) => {
-  if (hasAny(words, ['id', 'start', 'end', 'date', 'at'])) return 0;
-  if (hasAny(words, ['plan', 'segment', 'tier', 'tarif'])) return 10;
-  if (hasAny(words, ['product', 'package', 'edition', 'level', 'sku', 'subscription'])) return 8;
-  if (hasAny(words, ['channel', 'region', 'market', 'country', 'cohort', 'group', 'vertical', 'industry'])) return 6;
-  if (
-    hasAny(words, [
-      'source',
-      'category',
-      'type',
-      'size',
-      'interval',
-      'frequency',
-      'cycle',
-      'term',
-      'campaign',
-      'territory',
-      'state',
-      'city',
-      'billing',
-    ])
-  )
-    return 4;
-  return 0;
-};
-
-const amountWords: Score = (words) => {
-  if (hasAny(words, ['id', 'date', 'at', 'currency', 'count'])) return 0;
-  if (hasAny(words, ['mrr', 'arr', 'acv', 'arpa', 'arpu', 'arpc'])) return 10;
-  if (hasAny(words, ['amount', 'revenue', 'price', 'betrag', 'preis', 'importe'])) return 9;
-  if (hasAny(words, ['value', 'fee', 'fees', 'charge', 'cost', 'spend', 'total', 'sales', 'paid', 'billed', 'monthly']))
-    return 6;
-  return 0;
-};
-
-const statusWords: Score = (words) => (hasAny(words, ['status', 'state', 'stage']) ? 10 : 0);
-const flagWords: Score = (words) =>
-  hasAny(words, ['test', 'internal', 'demo', 'staff']) && !hasAny(words, ['date', 'at', 'id', 'score', 'group'])
-    ? 10
-    : 0;
-
 interface Wanted {
-  readonly words: Score;
-  readonly content: Score;
+  readonly words: WordScore;
+  readonly content: (content: Content) => number;
 }
 
 const WANTED: Readonly<Record<ColumnRole | 'status' | 'flag', Wanted>> = {
-  start: { words: startWords, content: (_, c) => (c.filled > 0 && c.dates >= 0.5 ? 1 : 0) },
-  end: { words: endWords, content: (_, c) => (c.filled === 0 || c.dates >= 0.5 ? 1 : 0) },
+  start: { words: startWords, content: (c) => (c.filled > 0 && c.dates >= 0.5 ? 1 : 0) },
+  end: { words: endWords, content: (c) => (c.filled === 0 || c.dates >= 0.5 ? 1 : 0) },
   id: {
     words: idWords,
-    content: (_, c) =>
-      c.filled > 0 && c.dates < 0.9 ? 0.5 + c.distinct / 2 : c.filled > 0 && c.distinct > 0.5 ? 0.6 : 0,
+    content: (c) => (c.filled > 0 && c.dates < 0.9 ? 0.5 + c.distinct / 2 : c.filled > 0 && c.distinct > 0.5 ? 0.6 : 0),
   },
   segment: {
     words: segmentWords,
-    content: (_, c) => (c.filled > 0 && c.dates < 0.5 && c.numbers < 0.9 && (c.distinct <= 0.5 || c.rows < 20) ? 1 : 0),
+    content: (c) => (c.filled > 0 && c.dates < 0.5 && c.numbers < 0.9 && (c.distinct <= 0.5 || c.rows < 20) ? 1 : 0),
   },
-  amount: { words: amountWords, content: (_, c) => (c.filled > 0 && c.numbers >= 0.8 ? 1 : 0) },
-  status: { words: statusWords, content: (_, c) => (c.dates < 0.5 && c.distinct <= 0.5 ? 1 : 0) },
-  flag: { words: flagWords, content: (_, c) => (c.dates < 0.5 && c.distinct <= 0.5 ? 1 : 0) },
+  amount: { words: amountWords, content: (c) => (c.filled > 0 && c.numbers >= 0.8 ? 1 : 0) },
+  status: { words: statusWords, content: (c) => (c.dates < 0.5 && c.distinct <= 0.5 ? 1 : 0) },
+  flag: { words: flagWords, content: (c) => (c.dates < 0.5 && c.distinct <= 0.5 ? 1 : 0) },
 };
 
 /**
@@ -390,7 +102,7 @@ export function recogniseColumns(layout: Layout, named: ColumnMap = {}): Columns
     for (const [column, header] of words.entries()) {
       const content = contents[column];
       if (taken.has(column) || !content) continue;
-      const score = WANTED[role].words(header, content) * (contentMatters ? WANTED[role].content(header, content) : 1);
+      const score = WANTED[role].words(header) * (contentMatters ? WANTED[role].content(content) : 1);
       if (score > (best?.score ?? 0)) best = { column, score };
     }
     if (!best) return undefined;
