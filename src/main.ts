@@ -10,7 +10,7 @@ import { EbbError } from './errors.ts';
 import { createLog } from './log.ts';
 import { warmPicture } from './picture/picture.ts';
 import type { PracticeService } from './practice/service.ts';
-import { loadInventedBusiness, samples, startOnFreePort } from './practiceWorkspace.ts';
+import { furnish, samples, startOnFreePort } from './practiceWorkspace.ts';
 import { type Settings, settingsOfProcess } from './settings.ts';
 import { openStore } from './store/openStore.ts';
 
@@ -72,7 +72,7 @@ async function start(settings: Settings, log: Logger, stops: Stop[]): Promise<st
   if (settings.mode === 'socket') await app.connect();
   void warmPicture().catch((error: unknown) => log.warn({ err: error }, 'the picture could not be prepared'));
   if (reach.service) {
-    await loadInventedBusiness(reach.service, store);
+    await furnish(reach.service, store, app);
     return `The practice workspace is open at ${reach.service.url} (Ctrl+C ends it)`;
   }
   return `Ebbline is ready (${settings.mode} mode)`;

@@ -1,6 +1,7 @@
 import { readFile } from 'node:fs/promises';
 import { fileURLToPath } from 'node:url';
 import { z } from 'zod';
+import type { ChannelApp } from './channel/buildApp.ts';
 import type { PracticeService, PracticeServiceOptions } from './practice/service.ts';
 import { startPracticeService } from './practice/service.ts';
 import type { Store } from './store/types.ts';
@@ -40,11 +41,21 @@ export async function startOnFreePort(
   }
 }
 
-/** Drops the invented business into its channel, as a person would, when nothing was handed in there yet. */
-export async function loadInventedBusiness(service: PracticeService, store: Store): Promise<void> {
+/**
+ * Drops the invented business into its channel, as a person would, when nothing was handed in there yet; else says what is still there.
+ */
+export async function furnish(
+  service: PracticeService,
+  store: Store,
+  app: Pick<ChannelApp, 'sayStillHere'>,
+): Promise<void> {
   const channel = service.world.channel(CHANNEL);
   const workspace = await store.workspace(channel.team);
-  if (await workspace.currentDataset(channel.id)) return;
+  const dataset = await workspace.currentDataset(channel.id);
+  if (dataset) {
+    await app.sayStillHere(channel.id, dataset);
+    return;
+  }
   service.as('wren').drop(CHANNEL, [{ path: fileURLToPath(new URL(LOADED, EXPORTS)) }], {
     text: 'Our accounts up to the end of June. Did anything change?',
   });

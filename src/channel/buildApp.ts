@@ -1,5 +1,6 @@
 import type { RequestListener } from 'node:http';
 import { App, type Receiver, SocketModeReceiver } from '@slack/bolt';
+import type { Dataset } from '../store/types.ts';
 import { holdAcknowledgement } from './front/holdAcknowledgement.ts';
 import { httpFront } from './front/httpFront.ts';
 import { listenToCommand } from './listeners/command.ts';
@@ -10,6 +11,7 @@ import { listenToPresses } from './listeners/presses.ts';
 import { listenToSharedFiles } from './listeners/sharedFiles.ts';
 import { listenToShortcut } from './listeners/shortcut.ts';
 import { boltLogger } from './logging.ts';
+import { stillHereMessage } from './messages/plainMessages.ts';
 import { clientOptions, webClient } from './posting/webClient.ts';
 import type { ChannelDeps } from './types.ts';
 import { createHandler } from './work/worker.ts';
@@ -25,6 +27,8 @@ export interface ChannelApp {
   init(): Promise<void>;
   /** socket mode: opens the connection; resolves once the service has said hello */
   connect(): Promise<void>;
+  /** says in a channel which export it still has; for the practice workspace, whose messages do not last */
+  sayStillHere(channel: string, dataset: Pick<Dataset, 'name' | 'report'>): Promise<void>;
   /** takes in nothing more, and waits for what a listener began */
   stop(): Promise<void>;
 }
@@ -84,6 +88,10 @@ export function buildApp(deps: ChannelDeps, inbound: Inbound): ChannelApp {
     },
     async connect() {
       await receiver.start();
+    },
+    async sayStillHere(channel, { name, report }) {
+      const { text, blocks } = stillHereMessage(name, report.accounts);
+      await app.client.chat.postMessage({ channel, text, blocks });
     },
     async stop() {
       ready = false;

@@ -62,6 +62,15 @@ export function commandRoot(user: string, text: string): Message {
   return message([line], [section([line])]);
 }
 
+/** Said when the practice workspace starts again: its messages are gone, what was read is not. */
+export function stillHereMessage(name: string, accounts: number): Message {
+  const lines = [
+    `I still have ${code(name)} from last time: ${accounts.toLocaleString('en-US')} accounts.`,
+    'Mention me with a question (“has churn moved?”), or drop another export.',
+  ];
+  return message(lines, [section(lines)]);
+}
+
 export function shareFailedMessage(): Message {
   const line = 'The picture could not be shown here; the words above carry all of it.';
   return message([line], [context([line])]);
