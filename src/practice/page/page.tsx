@@ -166,7 +166,7 @@ export function Page() {
               {fresh ? (
                 <section class="first" aria-label="First steps">
                   <h2>Ask whether churn has moved</h2>
-                  <p>
+                  <p class="try">
                     Try{' '}
                     <button
                       type="button"
