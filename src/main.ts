@@ -169,6 +169,13 @@ async function main(): Promise<void> {
         void shutDown(stops, started, 0);
       });
     }
+    process.on('uncaughtException', (error) => {
+      started.fatal(
+        { err: error },
+        'something unexpected outside any work; stopping, so that a supervisor can start it again',
+      );
+      void shutDown(stops, started, 1);
+    });
     process.stdout.write(`${await start(settings, log, stops)}\n`);
   } catch (error) {
     // Stopped while starting: what was closed under the start's feet is no failure.

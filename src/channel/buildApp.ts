@@ -1,5 +1,6 @@
 import type { RequestListener } from 'node:http';
 import { App, type Receiver, SocketModeReceiver } from '@slack/bolt';
+import { EbbError } from '../errors.ts';
 import type { Dataset } from '../store/types.ts';
 import { holdAcknowledgement } from './front/holdAcknowledgement.ts';
 import { httpFront } from './front/httpFront.ts';
@@ -12,7 +13,7 @@ import { listenToSharedFiles } from './listeners/sharedFiles.ts';
 import { listenToShortcut } from './listeners/shortcut.ts';
 import { boltLogger } from './logging.ts';
 import { stillHereMessage } from './messages/plainMessages.ts';
-import { clientOptions, webClient } from './posting/webClient.ts';
+import { clientOptions, refusal, webClient } from './posting/webClient.ts';
 import type { ChannelDeps } from './types.ts';
 import { createHandler } from './work/worker.ts';
 
@@ -82,7 +83,11 @@ export function buildApp(deps: ChannelDeps, inbound: Inbound): ChannelApp {
   return {
     requestListener: front?.listener,
     async init() {
-      await app.init();
+      try {
+        await app.init();
+      } catch (error) {
+        throw refusedToken(error);
+      }
       await deps.store.work(createHandler(deps, webClient(deps)), deps.concurrency ?? CONCURRENCY);
       ready = true;
     },
@@ -100,6 +105,18 @@ export function buildApp(deps: ChannelDeps, inbound: Inbound): ChannelApp {
       await Promise.all(background);
     },
   };
+}
+
+/** In the service's words "invalid_auth" and the like; in ours what to do about it. */
+function refusedToken(error: unknown): unknown {
+  const why = refusal(error);
+  if (why === undefined) return error;
+  return new EbbError(
+    'SETTINGS_INVALID',
+    `the chat service refuses the bot token (${why})`,
+    'Copy SLACK_BOT_TOKEN again from OAuth & Permissions of your app; after a change of scopes, reinstall the app first.',
+    { kind: 'settings', cause: error },
+  );
 }
 
 function socketReceiver(

@@ -21,6 +21,7 @@ const BETWEEN = new Set([
   'first',
   'level',
   'for',
+  'to',
   'an',
   'extra',
   'points',

@@ -4,6 +4,11 @@ type Nearest = string | ((context: RequestContext) => string);
 
 const set = (words: string): ReadonlySet<string> => new Set(words.split(' '));
 
+/** Words of a stretch of the calendar; a bare year counts too. */
+const WINDOWS = set(
+  'last past previous recent this every ago during between before until till through window since after january february march april june july august september october november december jan feb mar apr jun jul aug sep sept oct nov dec',
+);
+
 const onePlan = (context: RequestContext): string =>
   context.segments.length > 0
     ? `I can look at one ${context.segmentColumn ?? 'group'} at a time: ${shortList(context.segments)}.`
@@ -37,10 +42,7 @@ const ROWS: readonly (readonly [ReadonlySet<string>, Nearest])[] = [
     set('monthly weekly daily calendar mom yoy wow annual annually yearly quarterly'),
     'I do not count by calendar month: I read every account at one fixed age. Say the age, such as “at 1 month” or “at 12 months”.',
   ],
-  [
-    set('last past previous recent this every ago during between before until till through window'),
-    'I judge by when accounts started. Say the first start date you mean, such as “since 1 March 2025”.',
-  ],
+  [WINDOWS, 'I judge by when accounts started. Say the first start date you mean, such as “since 1 March 2025”.'],
   [
     set('renewal renewals renew renewed renewing'),
     'I count from the start of an account, not from its renewals. Say an age just after the renewal, such as “at 12 months”.',
@@ -60,7 +62,8 @@ const ROWS: readonly (readonly [ReadonlySet<string>, Nearest])[] = [
 /** The nearest thing Ebbline can do for a piece of a sentence that found no use. */
 export function nearestTo(words: readonly string[], context: RequestContext): string {
   for (const [known, nearest] of ROWS) {
-    if (words.some((word) => known.has(word))) return typeof nearest === 'string' ? nearest : nearest(context);
+    if (words.some((word) => known.has(word) || (known === WINDOWS && /^(19|2\d)\d\d$/.test(word))))
+      return typeof nearest === 'string' ? nearest : nearest(context);
   }
   const segments =
     context.segments.length > 0 ? `, for one ${context.segmentColumn ?? 'group'} (${shortList(context.segments)})` : '';

@@ -6,7 +6,8 @@ export const ASKING = list(`
   lose loses losing lost loss losses leave leaves leaving left quit quitting cancel cancels cancelled canceled cancelling canceling
   cancellation cancellations up down rise rises risen rising rose increase increased increasing fall falls fallen falling fell drop
   dropped dropping decrease decreased decreasing higher lower worse better worsened improved improve improving steady verdict chart
-  picture more fewer less ask again stay staying stayed`);
+  picture more fewer less ask again stay staying stayed
+  doubled halved real significant significantly noise chance`);
 
 /** Words that carry no meaning for the grammar. */
 export const NOISE = list(`
@@ -17,7 +18,7 @@ export const NOISE = list(`
   client clients logo rate rates level usual figure figures number numbers percentage percent question tell show give check look see
   know think want like let's let what what's how about whether any anything some ever now today currently still yet really actually
   just only recently lately much many early first point points among started starting start starts joined who've
-  our's new since plan tier data through read late settle days go going gone went get getting got out off right ok okay well s t`);
+  before set statistically problem our's new since plan tier data through read late settle days go going gone went get getting got out off right ok okay well s t`);
 
 /** Words that may stand around a segment value: "the Orchard plan". */
 export const SEGMENT_WORDS = list(
@@ -26,5 +27,5 @@ export const SEGMENT_WORDS = list(
 
 /** Prepositions that belong to the piece that follows when that piece is reported back. */
 export const LEADING = list(
-  'by per in for of with within on than through until before during over between to via at from',
+  'since after by per in for of with within on than through until before during over between to via at from',
 );

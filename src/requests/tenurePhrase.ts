@@ -29,6 +29,7 @@ const UNITS: Readonly<Record<string, readonly [Tenure['unit'], number]>> = {
 
 /** Before a length of time these words turn it into a stretch of the calendar, which is no age. */
 const WINDOW = new Set(['last', 'past', 'previous', 'recent', 'this', 'next', 'coming', 'every', 'each']);
+const ORDINAL = new Set(['st', 'nd', 'rd', 'th']);
 const SHORT = new Set(['d', 'w', 'm', 'y']);
 /** Longest age that is read, in the unit's own count. */
 const LONGEST = { day: 36_525, week: 5_218, month: 1_200 } as const;
@@ -62,12 +63,19 @@ function at(tokens: readonly Token[], i: number): TenureFound | undefined {
   if (count !== undefined) {
     // "a half year"
     if (tokens[i + 1]?.text === 'half') return undefined;
-    return scaled(tokens, i, i + 1, count, token);
+    // "after the 3rd month"
+    const ordinal = ORDINAL.has(tokens[i + 1]?.text ?? '') ? 1 : 0;
+    return scaled(tokens, i, i + 1 + ordinal, count, token);
   }
   // "by month 3", "at day 90": the unit first, when a preposition makes it an age
   const before = tokens[i - 1]?.text;
   const after = numberOf(tokens[i + 1]);
   if (UNITS[token.text] && after !== undefined && (before === 'by' || before === 'at' || before === 'to')) {
+    const built = tenure(UNITS[token.text]!, after);
+    return built && { tenure: built, from: i, to: i + 2 };
+  }
+  // "m3", "d90": a lone letter that touches its number
+  if (SHORT.has(token.text) && after !== undefined && tokens[i + 1]?.from === token.to) {
     const built = tenure(UNITS[token.text]!, after);
     return built && { tenure: built, from: i, to: i + 2 };
   }

@@ -71,7 +71,8 @@ export function message(text: readonly string[], blocks: readonly (Block | undef
     .filter((line) => line !== '')
     .map(cutLine)
     .join('\n');
-  return { text: cut(whole, TEXT_LENGTH), blocks: kept };
+  // The service refuses a message whose text is empty.
+  return { text: whole.trim() === '' ? '…' : cut(whole, TEXT_LENGTH), blocks: kept };
 }
 
 function cutLine(line: string): string {

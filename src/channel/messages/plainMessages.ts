@@ -5,7 +5,7 @@ import { type UnderstoodWords, understoodLines } from './verdictMessage.ts';
 
 const EXAMPLES = [
   '“has churn moved?”',
-  '“has churn moved at 6 months for the Orchard plan since March?”',
+  '“has churn moved at 6 months for the annual plan since March?”',
   '“has churn moved in subgroups of 120, baseline 30?”',
   '“what did you read?”',
 ];
