@@ -37,8 +37,10 @@ export function verdictMessage(
       ? {
           type: 'image',
           slack_file: { id: fileId },
-          alt_text:
-            shortened(plainLine(picture.altText), ALT_LENGTH) || shortened(plainLine(verdict.headline), ALT_LENGTH),
+          alt_text: shortened(
+            plainLine(picture.altText) || plainLine(verdict.headline) || 'Chart of churn',
+            ALT_LENGTH,
+          ),
         }
       : undefined;
   return message(
