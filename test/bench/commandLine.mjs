@@ -23,11 +23,21 @@ export function commandLineBench({ rows = 1_000_000, pairs = 7 } = {}) {
   try {
     const file = join(folder, 'accounts.csv');
     writeExportRows(file, rows);
-    const ours = [here('../../dist/cli/ebb.js'), 'ask', file, '--tenure', '3 months', '--json', '--picture', join(folder, 'chart.png')];
+    const ours = [
+      here('../../dist/cli/ebb.js'),
+      'ask',
+      file,
+      '--tenure',
+      '3 months',
+      '--json',
+      '--picture',
+      join(folder, 'chart.png'),
+    ];
     const answer = JSON.parse(timed(ours).stdout);
     const bare = [here('bareCensus.mjs'), file, String(answer.chart.subgroupSize)];
     const subgroups = Number.parseInt(timed(bare).stdout, 10);
-    if (subgroups !== answer.chart.points.length) throw new Error(`the two disagree: ${subgroups} and ${answer.chart.points.length} subgroups`);
+    if (subgroups !== answer.chart.points.length)
+      throw new Error(`the two disagree: ${subgroups} and ${answer.chart.points.length} subgroups`);
     const runs = Array.from({ length: pairs }, () => {
       const b = timed(bare).ms;
       const a = timed(ours).ms;

@@ -120,8 +120,8 @@ describe('ebb ask on the Marrowby exports', () => {
     const first = chart.points[verdict.since!.candidates[0] - 1]!;
     const last = chart.points[verdict.since!.candidates[1] - 1]!;
     expect(first.firstStart <= entry.change!.date && entry.change!.date <= last.lastStart).toBe(true);
-    expect(verdict.before!.low).toBeLessThan(entry.rateBefore);
-    expect(verdict.before!.high).toBeGreaterThan(entry.rateBefore);
+    expect(verdict.before!.low).toBeLessThan(entry.rateBefore!);
+    expect(verdict.before!.high).toBeGreaterThan(entry.rateBefore!);
     expect(verdict.after!.low).toBeLessThan(entry.rateAfter!);
     expect(verdict.after!.high).toBeGreaterThan(entry.rateAfter!);
   });

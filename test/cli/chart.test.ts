@@ -2,8 +2,7 @@ import { describe, expect, it } from 'vitest';
 import checkValues from '../published/checkValues.json' with { type: 'json' };
 import { runEbb } from './runEbb.ts';
 
-const values = checkValues as readonly { readonly id: string; readonly inputs: Record<string, unknown> }[];
-const wafers = values.find((entry) => entry.id === 'p-nist-wafer')!.inputs['counts'] as number[];
+const wafers = checkValues.entries.find((entry) => entry.id === 'p-nist-wafer')!.inputs.counts as number[];
 
 describe('ebb chart on ready counts', () => {
   it('gives the published centre line and limits of the wafer p chart', async () => {

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { checkMessageBlocks, checkView } from '../../src/practice/wire/checkBlocks.ts';
-import { hygieneOf } from '../../src/practice/wire/hygiene.ts';
+import { hygieneOf } from './hygiene.ts';
 import { LIMITS } from '../../src/practice/wire/limits.ts';
 import { Refusal } from '../../src/practice/wire/refusal.ts';
 
