@@ -22,7 +22,7 @@ export interface PictureFile {
 
 /**
  * Uploads a picture in the three steps and waits until it may be shown.
- * The client's own helper for this loses the alternative text, hence by hand.
+ * The client's own upload call loses the alternative text, hence by hand.
  * @param share where to share it; null keeps it for a block of a message
  * @returns the file's id, as soon as the service knows that it is a picture, or when it has been given its time
  */
