@@ -18,8 +18,8 @@ import { code, inert } from '../../src/channel/messages/text.ts';
 import { verdictMessage } from '../../src/channel/messages/verdictMessage.ts';
 import { EbbError } from '../../src/errors.ts';
 import { checkMessageBlocks, checkView } from '../../src/practice/wire/checkBlocks.ts';
-import { hygieneOf } from '../practice/hygiene.ts';
 import { LIMITS } from '../../src/practice/wire/limits.ts';
+import { hygieneOf } from '../practice/hygiene.ts';
 
 /** Texts as somebody may write them into a header or a cell: long, empty, marked up, out of the ordinary. */
 const written = fc.oneof(
