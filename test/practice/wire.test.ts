@@ -1,8 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import { checkMessageBlocks, checkView } from '../../src/practice/wire/checkBlocks.ts';
-import { hygieneOf } from './hygiene.ts';
 import { LIMITS } from '../../src/practice/wire/limits.ts';
 import { Refusal } from '../../src/practice/wire/refusal.ts';
+import { hygieneOf } from './hygiene.ts';
 
 const plain = (text: string) => ({ type: 'plain_text', text });
 const mrkdwn = (text: string) => ({ type: 'mrkdwn', text });
