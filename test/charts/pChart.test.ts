@@ -120,6 +120,14 @@ describe('p chart', () => {
   });
 });
 
+test('a baseline of 25 points is a full one, of 24 a provisional one, left-out points not counted', () => {
+  const counts = Array.from({ length: 40 }, () => ({ accounts: 10, lost: 1 }));
+  expect(poolBaseline(counts, 25).provisional).toBe(false);
+  expect(poolBaseline(counts, 24).provisional).toBe(true);
+  expect(poolBaseline(counts, 25, [7]).provisional).toBe(true);
+  expect(poolBaseline(counts, 26, [7]).provisional).toBe(false);
+});
+
 test('the recommended baseline is everything up to 30 points, then 25, and 30 from 60 points on', () => {
   expect([1, 24, 30, 31, 59, 60, 400].map(recommendedBaseline)).toEqual([1, 24, 30, 25, 25, 30, 30]);
 });

@@ -27,6 +27,14 @@ describe('is it the mix?', () => {
     expect(mix.explains).toBe('all');
   });
 
+  test('yes, even when the groups’ own move the other way would stand by itself', () => {
+    const mix = read([segment('Windowsill', [9000, 450], [3000, 90]), segment('Orchard', [1000, 300], [7000, 1750])])!;
+    expect(mix.pooledDifference).toBeGreaterThan(0);
+    expect(mix.within.difference).toBeLessThan(0);
+    expect(mix.within.chiSquare / 2).toBeGreaterThan(5);
+    expect(mix.explains).toBe('all');
+  });
+
   test('no, when the shares stay and every group moves', () => {
     const mix = read([segment('Windowsill', [600, 30], [600, 72]), segment('Orchard', [400, 40], [400, 80])])!;
     expect(mix.explains).toBe('none');

@@ -35,6 +35,13 @@ describe('a flag', () => {
     expect(ofTest(signals, 1)).toMatchObject([{ point: 11, state: 'passed' }]);
   });
 
+  test('on the side of a standing move, but over before it began, has passed', () => {
+    const signals = signalsOf([...calm(26), 15, ...calm(12), ...calm(12, [13, 15, 12, 14])]);
+    const ones = ofTest(signals, 1).filter(({ side }) => side === 'above');
+    expect(ones[0]).toMatchObject({ point: 27, state: 'passed' });
+    expect(ones.slice(1).some(({ state }) => state === 'standing')).toBe(true);
+  });
+
   test('on the other side of a standing move has passed', () => {
     const signals = signalsOf([...calm(25, [14, 12, 16, 13, 15]), 30, ...calm(14, [5, 4, 6])]);
     const [up] = ofTest(signals, 1).filter(({ side }) => side === 'above');
