@@ -16,6 +16,8 @@ import { openStore } from './store/openStore.ts';
 
 /** How long an open connection may keep a stopping server. */
 const SERVER_STOP_MS = 3000;
+/** How often records that are no longer needed are removed. */
+const TIDY_EVERY_MS = 3_600_000;
 const EVENTS_PATH = '/slack/events';
 
 /** What was started, undone in reverse order. */
@@ -70,6 +72,11 @@ async function start(settings: Settings, log: Logger, stops: Stop[]): Promise<st
   stops.push(() => app.stop());
   await app.init();
   if (settings.mode === 'socket') await app.connect();
+  const tidying = setInterval(() => {
+    store.maintain().catch((error: unknown) => log.warn({ err: error }, 'old records could not be tidied away'));
+  }, TIDY_EVERY_MS);
+  tidying.unref();
+  stops.push(async () => clearInterval(tidying));
   void warmPicture().catch((error: unknown) => log.warn({ err: error }, 'the picture could not be prepared'));
   if (reach.service) {
     await furnish(reach.service, store, app);

@@ -158,7 +158,7 @@ function knownSegment(table: AccountTable, wanted: NonNullable<Question['segment
     throw new EbbError(
       'SEGMENT_UNKNOWN',
       'the export has no column that groups accounts',
-      'Name one with --columns segment=COLUMN, or in the Correct this form.',
+      'Name the column that does (on the command line: --columns segment=COLUMN).',
     );
   }
   const exact = report.segments.find((entry) => entry.value === wanted.value);
