@@ -10,7 +10,7 @@ import { answerText } from './answerText.ts';
 import type { CliOptions } from './arguments.ts';
 import { contractJson, pointsCsv } from './contractJson.ts';
 import { progressBar } from './progressBar.ts';
-import type { CliSurroundings } from './runCli.ts';
+import type { CliSurroundings } from './types.ts';
 import { writeOutput } from './writeOutput.ts';
 
 /** ebb ask FILE [words]: reads the export, answers, writes what was asked for. */

@@ -4,7 +4,7 @@ import { answerText } from './answerText.ts';
 import type { CliOptions } from './arguments.ts';
 import { contractJson, pointsCsv } from './contractJson.ts';
 import { readyCounts } from './readyCounts.ts';
-import type { CliSurroundings } from './runCli.ts';
+import type { CliSurroundings } from './types.ts';
 import { writeOutput } from './writeOutput.ts';
 
 /** ebb chart --counts … --sizes …: charts ready counts. */

@@ -1,5 +1,5 @@
 import { statSync } from 'node:fs';
-import type { CliSurroundings } from './runCli.ts';
+import type { CliSurroundings } from './types.ts';
 
 /** Reads of smaller files end before a bar could be read. */
 const LONG_READ_BYTES = 20_000_000;

@@ -1,15 +1,7 @@
 import { readFileSync } from 'node:fs';
 import { EbbError } from '../errors.ts';
 import { type CliOptions, readArguments } from './arguments.ts';
-
-export interface CliSurroundings {
-  readonly stdout: (text: string) => void;
-  readonly stderr: (text: string) => void;
-  /** milliseconds, for timing only */
-  readonly clock: () => number;
-  /** whether somebody is watching standard error */
-  readonly progressWanted: boolean;
-}
+import type { CliSurroundings } from './types.ts';
 
 const HELP = `Ebbline: has churn moved?
 

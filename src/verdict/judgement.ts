@@ -159,7 +159,7 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = []): Ju
     segments,
     start.first,
     newest,
-    trial ? start.first - 1 : chart.baseline.last,
+    Math.min(chart.baseline.last, start.first - 1),
     threshold.ratio * shrink,
   );
   if (mix?.explains === 'all') return judged('mix-change', null, { start, mix });

@@ -152,6 +152,7 @@ describe('start candidates', () => {
     ['a rise by 60 % 7 points ago', equal(85, 57, 25), 51, 1.6],
     ['a rise by 30 % 19 points ago', equal(85, 57, 25), 39, 1.3],
     ['a halving on a short chart', equal(120, 40, 25), 28, 0.5],
+    ['a rise by 60 % that began inside the baseline', equal(85, 57, 25), 20, 1.6],
     ['a fall by 60 % on trial limits', equal(100, 20, 20), 13, 0.4],
   ];
   test.each(moves)('hold the true start as often as they claim, of %s, once it is read', (_, design, from, factor) => {

@@ -74,7 +74,8 @@ export function startCandidates(
 function profiler(design: BlockDesign) {
   const { accounts, baselineLast, excluded } = design;
   const count = accounts.length;
-  const earliest = baselineLast >= count ? LEAST_BEFORE : baselineLast;
+  // A move may have begun before the points that are judged: dating it looks at the baseline's own points too.
+  const earliest = Math.min(LEAST_BEFORE, baselineLast);
   const left = new Set(excluded);
   const weight = Float64Array.from(accounts, (n, i) => (i < baselineLast && left.has(i + 1) ? 0 : n));
   const all = weight.reduce((sum, n) => sum + n, 0);
