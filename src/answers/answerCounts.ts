@@ -1,4 +1,4 @@
-import type { SubgroupCount } from '../charts/types.ts';
+import type { ChartKind, SubgroupCount } from '../charts/types.ts';
 import { drawPicture } from '../picture/picture.ts';
 import { chartAndJudge } from '../verdict/chartAndJudge.ts';
 import type { PictureInput, PointDates } from '../verdict/types.ts';
@@ -9,6 +9,7 @@ export interface CountsQuestion {
   readonly counts: readonly SubgroupCount[];
   readonly baseline?: number;
   readonly excluded?: readonly number[];
+  readonly chart?: ChartKind;
   readonly picture: boolean;
   readonly clock: () => number;
 }
@@ -21,6 +22,7 @@ export async function answerCounts(question: CountsQuestion): Promise<Answer> {
     counts,
     ...(question.baseline === undefined ? {} : { baselineLast: question.baseline }),
     ...(question.excluded ? { excluded: question.excluded } : {}),
+    ...(question.chart ? { kind: question.chart } : {}),
   });
   const dates: PointDates[] = counts.map(() => ({
     firstStart: null,

@@ -66,7 +66,12 @@ export async function answerQuestion(table: AccountTable, question: Question, op
   const { baseline, caution } = chooseBaseline(question, census);
   const { chart, judgement } =
     census.subgroups.length > 0
-      ? chartAndJudge({ counts: census.subgroups, segments: census.segments, ...baseline })
+      ? chartAndJudge({
+          counts: census.subgroups,
+          segments: census.segments,
+          ...baseline,
+          ...(question.chart ? { kind: question.chart } : {}),
+        })
       : { chart: null, judgement: emptyJudgement() };
   const tenureWords = tenureInWords(tenure);
   const context: VerdictContext = {

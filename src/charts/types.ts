@@ -20,7 +20,7 @@ export interface SubgroupCount {
 }
 
 /** The chart kinds built so far. */
-export type ChartKind = 'p';
+export type ChartKind = 'p' | 'p-prime';
 
 /** Points are numbered from 1 in time order. */
 export interface ChartPoint {
@@ -50,6 +50,8 @@ export interface Baseline {
 
 export interface Chart {
   readonly kind: ChartKind;
+  /** for a p' chart: how much more the points vary than the binomial allows, as a factor on sigma; else 1 */
+  readonly sigmaZ: number;
   /** n when every subgroup has the same size, else null */
   readonly subgroupSize: number | null;
   readonly center: number;

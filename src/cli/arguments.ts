@@ -2,6 +2,7 @@ import { parseArgs } from 'node:util';
 import type { ColumnMap, ColumnRole, DateOrder } from '../accounts/types.ts';
 import { parseTenure } from '../census/parseTenure.ts';
 import type { Tenure } from '../census/types.ts';
+import type { ChartKind } from '../charts/types.ts';
 import { type Day, dayFromIso } from '../days.ts';
 import { EbbError } from '../errors.ts';
 
@@ -18,6 +19,8 @@ export interface CliOptions {
   readonly segment?: { readonly column: string; readonly value: string };
   readonly columns?: ColumnMap;
   readonly dates?: DateOrder;
+  /** absent: the kind that fits */
+  readonly chart?: ChartKind;
   readonly picture?: string;
   readonly points?: string;
   readonly counts?: string;
@@ -44,6 +47,7 @@ const KNOWN = {
 } as const;
 
 const ROLES: readonly ColumnRole[] = ['id', 'start', 'end', 'segment', 'amount'];
+const CHARTS: readonly ChartKind[] = ['p', 'p-prime'];
 const ORDERS: readonly DateOrder[] = ['iso', 'dmy', 'mdy'];
 
 /**
@@ -53,7 +57,8 @@ const ORDERS: readonly DateOrder[] = ['iso', 'dmy', 'mdy'];
 export function readArguments(args: readonly string[]): CliOptions {
   const { values, positionals } = parse(args);
   onlyChoice('by', values.by, ['start'], ['renewal', 'calendar']);
-  onlyChoice('chart', values.chart, ['auto', 'p'], ['p-prime', 'g', 't', 'individuals', 'ewma', 'cusum']);
+  onlyChoice('chart', values.chart, ['auto', ...CHARTS], ['g', 't', 'individuals', 'ewma', 'cusum']);
+  const chart = CHARTS.find((kind) => kind === values.chart);
   const segment = values.segment === undefined ? undefined : columnValue(values.segment);
   const columns = values.columns === undefined ? undefined : columnMap(values.columns);
   const named = segment ? { ...columns, segment: segment.column } : columns;
@@ -71,6 +76,7 @@ export function readArguments(args: readonly string[]): CliOptions {
     ...(segment ? { segment } : {}),
     ...(named ? { columns: named } : {}),
     ...(values.dates === undefined ? {} : { dates: choice('--dates', values.dates, ORDERS) }),
+    ...(chart ? { chart } : {}),
     ...(values.picture === undefined ? {} : { picture: values.picture }),
     ...(values.points === undefined ? {} : { points: values.points }),
     ...(values.counts === undefined ? {} : { counts: values.counts }),

@@ -15,6 +15,7 @@ export async function chartCommand(options: CliOptions, around: CliSurroundings)
   const answer = await answerCounts({
     counts,
     ...(options.baseline === undefined ? {} : { baseline: options.baseline }),
+    ...(options.chart ? { chart: options.chart } : {}),
     picture: options.picture !== undefined,
     clock: around.clock,
   });

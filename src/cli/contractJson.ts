@@ -14,6 +14,7 @@ export function contractJson(answer: Answer): Record<string, unknown> {
     },
     chart: {
       kind: chart?.kind ?? 'p',
+      sigmaZ: chart?.sigmaZ ?? 1,
       subgroupSize: chart ? chart.subgroupSize : (census?.request.subgroupSize ?? null),
       center: chart?.center ?? null,
       baseline: chart ? chart.baseline : null,

@@ -1,4 +1,5 @@
 import type { PictureInput } from '../verdict/types.ts';
+import { withinLimits } from '../verdict/words/testWords.ts';
 import { capitalised, countOf, heldDate, percent, percentRange } from './figures.ts';
 import { candidateWords, immatureWords, waitingWords } from './notes.ts';
 import { stretches } from './stretches.ts';
@@ -39,7 +40,7 @@ function sentences(input: PictureInput): string[] {
     const { baseline } = chart;
     said.push(`The chart shows ${countOf(chart.points.length, 'point')}${span}`);
     const end = chart.points.at(-1);
-    const band = end ? chanceWords(end.lower, end.upper) : '';
+    const band = end ? chanceWords(withinLimits(chart.kind), end.lower, end.upper) : '';
     said.push(
       `The usual level is ${percent(chart.center)}, set from points ${baseline.first} to ${baseline.last}${baseline.provisional ? ', provisional' : ''}${band}`,
     );
@@ -65,11 +66,11 @@ function sentences(input: PictureInput): string[] {
   return said;
 }
 
-function chanceWords(lower: number, upper: number): string {
+function chanceWords(within: string, lower: number, upper: number): string {
   if (upper <= lower) return '';
   return lower > 0
-    ? `; chance alone keeps points between ${percent(lower)} and ${percent(upper)}`
-    : `; chance alone keeps points below ${percent(upper)}`;
+    ? `; ${within} keeps points between ${percent(lower)} and ${percent(upper)}`
+    : `; ${within} keeps points below ${percent(upper)}`;
 }
 
 function finding(input: PictureInput): string {

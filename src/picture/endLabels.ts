@@ -1,4 +1,5 @@
 import type { PictureInput } from '../verdict/types.ts';
+import { withinLimits } from '../verdict/words/testWords.ts';
 import { percent } from './figures.ts';
 import { EMBER, INK, LEVEL, TEXT_SIZE, WATER_EDGE } from './palette.ts';
 import { type Frame, type PlacedText, type Stroke, xAt, yAt } from './scene.ts';
@@ -22,9 +23,10 @@ export function endLabels(input: PictureInput): EndLabel[] {
   if (!chart || !last) return [];
   const labels: EndLabel[] = [];
   const spread = last.upper > last.lower;
+  const within = withinLimits(chart.kind);
   if (spread && last.upper < 1)
     labels.push({
-      lines: ['chance alone', 'stays below', percent(last.upper)],
+      lines: [within, 'stays below', percent(last.upper)],
       value: last.upper,
       color: INK,
       line: WATER_EDGE,
@@ -39,7 +41,7 @@ export function endLabels(input: PictureInput): EndLabel[] {
   });
   if (spread && last.lower > 0)
     labels.push({
-      lines: last.upper < 1 ? ['and above', percent(last.lower)] : ['chance alone', 'stays above', percent(last.lower)],
+      lines: last.upper < 1 ? ['and above', percent(last.lower)] : [within, 'stays above', percent(last.lower)],
       value: last.lower,
       color: INK,
       line: WATER_EDGE,

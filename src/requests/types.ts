@@ -1,4 +1,5 @@
 import type { Tenure } from '../census/types.ts';
+import type { ChartKind } from '../charts/types.ts';
 import type { Day } from '../days.ts';
 
 /** "has churn moved?" with whatever the asker pinned down; everything left out is recommended from the data. */
@@ -13,6 +14,8 @@ export interface Question {
   readonly since?: Day;
   readonly asOf?: Day;
   readonly settleDays?: number;
+  /** the kind of chart somebody insists on; else the one that fits */
+  readonly chart?: ChartKind;
 }
 
 /** All that can be asked for in words so far. */

@@ -1,11 +1,14 @@
 import type { SegmentCounts } from '../census/types.ts';
 import { recommendedBaseline } from '../charts/baseline.ts';
 import { pChart } from '../charts/kinds/pChart.ts';
-import type { Chart, SubgroupCount } from '../charts/types.ts';
-import { type Judgement, judge, LEAST_POINTS } from './judgement.ts';
+import { pPrimeChart } from '../charts/kinds/pPrimeChart.ts';
+import type { Chart, ChartKind, SubgroupCount } from '../charts/types.ts';
+import { type Judgement, judge, LEAST_POINTS, OVERDISPERSED } from './judgement.ts';
 
 export interface ChartRequest {
   readonly counts: readonly SubgroupCount[];
+  /** the kind somebody asked for; else the one that fits */
+  readonly kind?: ChartKind;
   /** last baseline point, when the asker fixed it; else the recommended one, shortened if a move begins inside it */
   readonly baselineLast?: number;
   readonly excluded?: readonly number[];
@@ -17,8 +20,12 @@ export interface JudgedChart {
   readonly judgement: Judgement;
 }
 
+const KINDS = { p: pChart, 'p-prime': pPrimeChart } as const;
+
 /**
  * Charts the counts and judges them.
+ *
+ * The kind, when nobody asked for one: a p chart, or Laney's p' chart when the points of the baseline clearly vary more than the binomial allows.
  *
  * When nobody fixed the baseline and the recommended one turns out not to come from one rate, a move may simply have begun inside it.
  * Then the points before the split, if there are enough, set the level instead; the answer counts only if the points since then really
@@ -27,7 +34,13 @@ export interface JudgedChart {
  */
 export function chartAndJudge(request: ChartRequest): JudgedChart {
   const { counts, excluded = [], segments = [] } = request;
-  const usual = chartWith(request.baselineLast ?? recommendedBaseline(counts.length));
+  const last = request.baselineLast ?? recommendedBaseline(counts.length);
+  let kind = request.kind ?? 'p';
+  let usual = chartWith(last);
+  if (request.kind === undefined && isOverdispersed(usual.judgement)) {
+    kind = 'p-prime';
+    usual = chartWith(last);
+  }
   if (request.baselineLast !== undefined || usual.judgement.finding !== 'unsteady-baseline') return usual;
   const before = usual.judgement.steadiness?.splitAfter ?? 0;
   if (before < LEAST_POINTS || before >= usual.chart.baseline.last) return usual;
@@ -36,7 +49,11 @@ export function chartAndJudge(request: ChartRequest): JudgedChart {
   return finding === 'risen' || finding === 'fallen' || finding === 'mix-change' ? shortened : usual;
 
   function chartWith(baselineLast: number): JudgedChart {
-    const chart = pChart(counts, { baselineLast: Math.min(baselineLast, counts.length), excluded });
+    const chart = KINDS[kind](counts, { baselineLast: Math.min(baselineLast, counts.length), excluded });
     return { chart, judgement: judge(chart, segments) };
   }
+}
+
+function isOverdispersed({ dispersion }: Judgement): boolean {
+  return dispersion !== null && dispersion.pValue < OVERDISPERSED;
 }

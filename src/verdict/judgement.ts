@@ -5,7 +5,7 @@ import { type Homogeneity, homogeneity } from '../charts/checks/homogeneity.ts';
 import { type Steadiness, steadiness } from '../charts/checks/steadiness.ts';
 import { simulatedRunLength } from '../charts/runLength/simulatedRunLength.ts';
 import { smallestDetectable } from '../charts/standing/detectable.ts';
-import { LEAST_BEFORE } from '../charts/standing/lastBlock.ts';
+import { type BlockDesign, LEAST_BEFORE } from '../charts/standing/lastBlock.ts';
 import { type Standing, standingJudge } from '../charts/standing/standing.ts';
 import { type StartCandidates, startCandidates } from '../charts/standing/startCandidates.ts';
 import { standingThreshold } from '../charts/standing/threshold.ts';
@@ -21,7 +21,7 @@ export const LEAST_POINTS = 12;
 /** A baseline this unlikely to come from one rate is not a level to judge by. */
 const UNSTEADY = 0.01;
 /** Spread this unlikely under the binomial is taken as real. */
-const OVERDISPERSED = 0.01;
+export const OVERDISPERSED = 0.01;
 const WOULD_SEE_CHANCE = 0.8;
 
 export type Finding =
@@ -67,7 +67,7 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = []): Ju
     lost,
   }));
   const lost = counts.map((count) => count.lost);
-  const design = {
+  const binomialDesign = {
     accounts: counts.map((count) => count.accounts),
     baselineLast: chart.baseline.last,
     excluded: chart.baseline.excluded,
@@ -103,23 +103,25 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = []): Ju
       signals: readSignals(chart, quiet, null),
     };
 
-  const standing = standingJudge(design)(lost);
-  const threshold = standingThreshold(design, chart.center);
-  const side = standing.above.score >= standing.below.score ? 'above' : 'below';
-
-  // Quasi-likelihood: when the points vary more than the binomial allows, every log likelihood ratio shrinks by that factor.
-  // Source: McCullagh P and Nelder JA, Generalized Linear Models, 1989, section 4.5 (section from memory).
   const used = chart.points.filter(
     ({ index }) => index <= chart.baseline.last && !chart.baseline.excluded.includes(index),
   );
-  // On trial limits a block lies in the baseline itself; its move must not be taken for spread.
-  const blockFirst = trial && standing[side].score > threshold.ratio ? standing[side].block.first : newest + 1;
-  const isBefore = ({ index }: { index: number }): boolean => index < blockFirst;
-  const spread = dispersion(...splitBy(used, isBefore));
-  const shrink = spread && spread.pValue < OVERDISPERSED ? Math.max(1, spread.ratio) : 1;
+  const spread = excessSpread(used);
+  // A p' chart carries the spread in its limits and its threshold. On a p chart that somebody asked for, every log likelihood ratio shrinks
+  // by it (quasi-likelihood; McCullagh P and Nelder JA, Generalized Linear Models, 1989, section 4.5, section from memory).
+  const excess = spread && spread.pValue < OVERDISPERSED ? Math.max(1, spread.ratio) : 1;
+  const prime = chart.kind === 'p-prime';
+  const shrink = prime ? 1 : excess;
+  const design: BlockDesign = prime ? { ...binomialDesign, correlation: correlationOf(excess, used) } : binomialDesign;
+
+  const standing = standingJudge(design)(lost);
+  const threshold = standingThreshold(design, chart.center);
+  const side = standing.above.score >= standing.below.score ? 'above' : 'below';
   const moved = standing[side].score / shrink > threshold.ratio ? side : null;
-  const level = moved ? used.filter(isBefore) : used;
-  const within = steadiness(level, shrink);
+  // On trial limits the moved block lies in the baseline itself; the level is what lies before it.
+  const blockFirst = trial && moved ? standing[moved].block.first : newest + 1;
+  const level = used.filter(({ index }) => index < blockFirst);
+  const within = steadiness(level, excess);
   // Numbered as on the chart, where left-out points count too.
   const split = within && { ...within, splitAfter: level[within.splitAfter - 1]!.index };
 
@@ -128,7 +130,7 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = []): Ju
   } = {
     ...nothing,
     trust: {
-      ...runLengthTrust(design.accounts, chart.center),
+      ...runLengthTrust(chart, design.correlation ?? 0),
       falseVerdictChance: threshold.falseVerdictChance,
       wouldSee: smallestDetectable(design, chart.center, wouldSeeFrom, threshold.ratio * shrink, WOULD_SEE_CHANCE),
     },
@@ -167,12 +169,32 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = []): Ju
   return judged(moved === 'above' ? 'risen' : 'fallen', moved, { start, mix });
 }
 
-function splitBy<T>(values: readonly T[], first: (value: T) => boolean): [T[], T[]] {
-  return [values.filter(first), values.filter((value) => !first(value))];
+/**
+ * How much the baseline's points vary beyond the binomial. One step inside the baseline must not be taken for spread: when the points are
+ * clearly not of one rate, each side of the largest split is compared with its own.
+ */
+function excessSpread(used: readonly SubgroupCount[]): Dispersion | null {
+  const step = steadiness(used);
+  return step && step.pValue < UNSTEADY
+    ? dispersion(used.slice(0, step.splitAfter), used.slice(step.splitAfter))
+    : dispersion(used);
 }
 
-function runLengthTrust(sizes: readonly number[], center: number) {
-  const length = simulatedRunLength(sizes, center, center, SHIFT_TESTS);
+/** Intra-class correlation that gives this dispersion at the mean size of the points. */
+function correlationOf(excess: number, used: readonly SubgroupCount[]): number {
+  const size = used.reduce((sum, { accounts }) => sum + accounts, 0) / used.length;
+  return size > 1 ? Math.min(0.9, (excess - 1) / (size - 1)) : 0;
+}
+
+function runLengthTrust(chart: Chart, correlation: number) {
+  const length = simulatedRunLength(
+    chart.points.map((point) => point.accounts),
+    chart.center,
+    chart.center,
+    SHIFT_TESTS,
+    undefined,
+    { correlation, sigmaZ: chart.sigmaZ },
+  );
   return {
     falseAlarmEvery: length?.mean ?? null,
     method: 'simulated' as const,

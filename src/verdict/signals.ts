@@ -3,7 +3,7 @@ import { nelsonTests } from '../charts/tests/nelsonTests.ts';
 import { TEST_SPAN } from '../charts/tests/patterns.ts';
 import type { Chart } from '../charts/types.ts';
 import type { Signal, SignalState } from './types.ts';
-import { testWords } from './words/testWords.ts';
+import { testWords, withinLimits } from './words/testWords.ts';
 
 /** A flag is new while it was completed within the longest shift pattern's span of the newest point. */
 const NEW_WITHIN = TEST_SPAN[2];
@@ -37,6 +37,6 @@ export function readSignals(
       else if (moved === null && !explained && inBlock && recent) state = 'watching';
       else state = 'passed';
     }
-    return { ...episode, state, words: testWords(episode) };
+    return { ...episode, state, words: testWords(episode, withinLimits(chart.kind)) };
   });
 }

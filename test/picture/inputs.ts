@@ -105,6 +105,7 @@ export function makeInput(making: Making): PictureInput {
       ? null
       : {
           kind: 'p',
+          sigmaZ: 1,
           subgroupSize: typeof making.size === 'function' ? null : (making.size ?? 85),
           center,
           baseline: {

@@ -24,6 +24,7 @@ export function pChart(counts: readonly SubgroupCount[], options: PChartOptions 
   const firstSize = counts[0]!.accounts;
   return {
     kind: 'p',
+    sigmaZ: 1,
     subgroupSize: counts.every((count) => count.accounts === firstSize) ? firstSize : null,
     center,
     baseline,

@@ -1,4 +1,4 @@
-import { binomialSampler } from '../random/binomialSampler.ts';
+import { betaBinomialSampler } from '../random/betaBinomialSampler.ts';
 import { seededUniform } from '../random/uniform.ts';
 import { PatternMachine, patternMask } from '../tests/patterns.ts';
 import { moveOf, zoneOf } from '../tests/zone.ts';
@@ -17,10 +17,11 @@ const POINT_BUDGET = 200_000;
 const MOST_RUNS = 3_000;
 
 /**
- * Average run length of a p chart by simulation: points from the start to the first flag of any of the tests, with the limits known.
+ * Average run length of a p or p' chart by simulation: points from the start to the first flag of any of the tests, with the limits known.
  * @param sizes   accounts per point; with unequal sizes they are gone through again and again
  * @param center  rate the limits are computed from
  * @param rate    true rate of the simulated accounts (equal to center for the false-alarm figure)
+ * @param excess  for a p' chart: what the accounts of a subgroup have in common, and the factor by which the limits are widened for it
  * @returns       mean in points with its standard error; null when a run went on for 20,000 points without a flag
  */
 export function simulatedRunLength(
@@ -29,12 +30,13 @@ export function simulatedRunLength(
   rate: number,
   tests: readonly TestNumber[],
   seed = 4,
+  excess: { readonly correlation: number; readonly sigmaZ: number } = { correlation: 0, sigmaZ: 1 },
 ): RunLength | null {
   const uniform = seededUniform(seed);
   const mask = patternMask(tests);
   const machine = new PatternMachine();
-  const spread = Math.sqrt(center * (1 - center));
-  const samplers = new Map([...new Set(sizes)].map((n) => [n, binomialSampler(n, rate)]));
+  const spread = Math.sqrt(center * (1 - center)) * excess.sigmaZ;
+  const samplers = new Map([...new Set(sizes)].map((n) => [n, betaBinomialSampler(n, rate, excess.correlation)]));
   let points = 0;
   let runs = 0;
   let sum = 0;

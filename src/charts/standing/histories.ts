@@ -1,4 +1,5 @@
-import { type BinomialSampler, binomialSampler } from '../random/binomialSampler.ts';
+import { betaBinomialSampler } from '../random/betaBinomialSampler.ts';
+import type { CountSampler } from '../random/tableSampler.ts';
 import { seededUniform } from '../random/uniform.ts';
 import type { BlockDesign } from './lastBlock.ts';
 
@@ -32,13 +33,13 @@ export function simulateHistories(
   visit: (lost: Int32Array) => void,
 ): void {
   const uniform = seededUniform(seed);
-  const known = new Map<string, BinomialSampler>();
+  const known = new Map<string, CountSampler>();
   const samplers = design.accounts.map((n, i) => {
     const rate = rates.findLast((piece) => piece.from <= i + 1)!.rate;
     const key = `${n}:${rate}`;
     let sampler = known.get(key);
     if (!sampler) {
-      sampler = binomialSampler(n, rate);
+      sampler = betaBinomialSampler(n, rate, design.correlation ?? 0);
       known.set(key, sampler);
     }
     return sampler;

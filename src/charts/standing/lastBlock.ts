@@ -20,6 +20,11 @@ export interface BlockDesign {
   readonly baselineLast: number;
   /** baseline points left out by decision */
   readonly excluded: readonly number[];
+  /**
+   * Given for a p' chart: the points vary more than the binomial allows, by this intra-class correlation of accounts in a subgroup. Then
+   * every history, real or simulated, estimates its own sigmaZ and dispersion from its baseline, as the chart does.
+   */
+  readonly correlation?: number;
 }
 
 /** Fewest points that must lie before a block when the baseline is every point there is: fewer would be no level to compare with. */

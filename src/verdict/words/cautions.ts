@@ -17,8 +17,11 @@ export function cautions(chart: Chart | null, judgement: Judgement, context: Ver
       list.push('Every point helped to set the usual level, so a move had to stand out from its own effect on it.');
     }
     if (judgement.dispersion && judgement.dispersion.pValue < 0.01 && judgement.finding !== 'unsteady-baseline') {
+      const times = judgement.dispersion.ratio.toFixed(1);
       list.push(
-        `The points vary about ${judgement.dispersion.ratio.toFixed(1)} times as much as chance alone would make them (overdispersion), so flags are raised too easily; the verdict asks for that much more evidence.`,
+        chart.kind === 'p-prime'
+          ? `The points vary about ${times} times as much as chance alone would make them (overdispersion), so the limits are set by how much they really vary from one point to the next (Laney p′ chart).`
+          : `The points vary about ${times} times as much as chance alone would make them (overdispersion), so flags are raised too easily; the verdict asks for that much more evidence.`,
       );
     }
     const { neighbours } = judgement;

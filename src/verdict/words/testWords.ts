@@ -1,19 +1,27 @@
-import type { TestEpisode } from '../../charts/types.ts';
+import type { ChartKind, TestEpisode } from '../../charts/types.ts';
 import { numberWord } from './format.ts';
+
+/** What keeps points within the limits: on a p' chart they are set by how much the points really vary. */
+export function withinLimits(kind: ChartKind): string {
+  return kind === 'p-prime' ? 'the usual spread' : 'chance alone';
+}
 
 /**
  * A flag in words; a test is never shown as a bare number. "By chance" and "usual level" are the two terms the replies lean on: the
  * usual level is the centre line, and each of the three steps away from it is one sigma.
  */
-export function testWords(episode: Pick<TestEpisode, 'test' | 'side' | 'point' | 'until'>): string {
+export function testWords(
+  episode: Pick<TestEpisode, 'test' | 'side' | 'point' | 'until'>,
+  within: string = withinLimits('p'),
+): string {
   const { test, side } = episode;
   const beyond = side === 'above' ? 'above' : 'below';
   const longer = (least: number): string => numberWord(least + episode.until - episode.point);
   switch (test) {
     case 1:
       return episode.until > episode.point
-        ? `${numberWord(episode.until - episode.point + 1)} points in a row ${beyond} what chance alone allows`
-        : `one point ${beyond} what chance alone allows`;
+        ? `${numberWord(episode.until - episode.point + 1)} points in a row ${beyond} what ${within} allows`
+        : `one point ${beyond} what ${within} allows`;
     case 2:
       return `${longer(9)} points in a row ${beyond} the usual level`;
     case 3:

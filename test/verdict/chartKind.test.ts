@@ -1,0 +1,44 @@
+import { describe, expect, it } from 'vitest';
+import { betaBinomialSampler } from '../../src/charts/random/betaBinomialSampler.ts';
+import { seededUniform } from '../../src/charts/random/uniform.ts';
+import { chartAndJudge } from '../../src/verdict/chartAndJudge.ts';
+
+function counts(points: number, size: number, rate: (point: number) => number, correlation: number, seed: number) {
+  const uniform = seededUniform(seed);
+  return Array.from({ length: points }, (_, i) => ({
+    accounts: size,
+    lost: betaBinomialSampler(size, rate(i + 1), correlation).draw(uniform),
+  }));
+}
+
+describe('the kind of chart', () => {
+  it('is a p chart for binomial counts, and a p′ chart when the points clearly vary more', () => {
+    expect(chartAndJudge({ counts: counts(50, 400, () => 0.06, 0, 1) }).chart.kind).toBe('p');
+    const wide = chartAndJudge({ counts: counts(50, 400, () => 0.06, 0.02, 1) });
+    expect(wide.chart.kind).toBe('p-prime');
+    expect(wide.chart.sigmaZ).toBeGreaterThan(1.5);
+    expect(wide.judgement.finding).toBe('steady');
+  });
+
+  it('is the one asked for, whatever the counts', () => {
+    const wide = counts(50, 400, () => 0.06, 0.02, 1);
+    expect(chartAndJudge({ counts: wide, kind: 'p' }).chart.kind).toBe('p');
+    expect(chartAndJudge({ counts: counts(50, 400, () => 0.06, 0, 1), kind: 'p-prime' }).chart.kind).toBe('p-prime');
+  });
+
+  it('a step inside the baseline is not taken for spread: it stays a p chart, and the step is found', () => {
+    const { chart, judgement } = chartAndJudge({ counts: counts(50, 400, (point) => (point < 18 ? 0.06 : 0.1), 0, 3) });
+    expect(chart.kind).toBe('p');
+    expect(judgement.finding).toBe('risen');
+    expect(judgement.start!.candidates[0]).toBeLessThanOrEqual(18);
+    expect(judgement.start!.candidates[1]).toBeGreaterThanOrEqual(18);
+  });
+
+  it('a p′ chart finds a large step in counts that vary too much', () => {
+    const { chart, judgement } = chartAndJudge({
+      counts: counts(60, 400, (point) => (point < 42 ? 0.06 : 0.14), 0.01, 4),
+    });
+    expect(chart.kind).toBe('p-prime');
+    expect(judgement.finding).toBe('risen');
+  });
+});
