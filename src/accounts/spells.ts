@@ -32,13 +32,14 @@ export async function mergeSpells(
   bridgeDays: number,
   hasIds: boolean,
 ): Promise<{ duplicates: number; merged: boolean }> {
+  // Counting distinct keys takes little more than half of what looking for the repeated ones takes.
   const { several } = hasIds
     ? await firstRow(
         connection,
-        'SELECT count(*)::INTEGER AS several FROM (SELECT key FROM kept GROUP BY key HAVING count(*) > 1)',
+        'SELECT (SELECT count(*) FROM kept) > (SELECT count(*) FROM (SELECT DISTINCT key FROM kept)) AS several',
       )
-    : { several: 0 };
-  if (Number(several) === 0) {
+    : { several: false };
+  if (several !== true) {
     await connection.run(
       'CREATE VIEW accounts AS SELECT key, start_day, end_day, segment, amount, false AS returned FROM kept',
     );

@@ -62,8 +62,13 @@ async function maturedCounts(
   const only = partial.segment === undefined ? '' : ` AND segment = '${partial.segment.replaceAll("'", "''")}'`;
   const row = await firstRow(
     table.connection,
-    `SELECT count(*)::INTEGER AS matured, count(*) FILTER (WHERE end_day <= ${tenurePointSql('start_day', tenure)})::INTEGER AS lost,
-       count(*) FILTER (WHERE start_day > ${until - 91})::INTEGER AS recent FROM ${table.table} WHERE start_day <= ${until}${only}`,
+    // The tenure point is worked out once a day: calendar months are slow to add.
+    `WITH points AS (
+       SELECT start_day, ${tenurePointSql('start_day', tenure)} AS tenure_point FROM (SELECT DISTINCT start_day FROM ${table.table} WHERE start_day <= ${until})
+     )
+     SELECT count(*)::INTEGER AS matured, count(*) FILTER (WHERE end_day <= tenure_point)::INTEGER AS lost,
+       count(*) FILTER (WHERE start_day > ${until - 91})::INTEGER AS recent
+     FROM ${table.table} JOIN points USING (start_day) WHERE start_day <= ${until}${only}`,
   );
   return { matured: Number(row.matured), lost: Number(row.lost), perWeek: Number(row.recent) / 13 };
 }

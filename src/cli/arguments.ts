@@ -19,8 +19,8 @@ export interface CliOptions {
   readonly segment?: { readonly column: string; readonly value: string };
   readonly columns?: ColumnMap;
   readonly dates?: DateOrder;
-  /** absent: the kind that fits */
-  readonly chart?: ChartKind;
+  /** auto: the kind that fits */
+  readonly chart?: ChartKind | 'auto';
   readonly picture?: string;
   readonly points?: string;
   readonly counts?: string;
@@ -47,7 +47,7 @@ const KNOWN = {
 } as const;
 
 const ROLES: readonly ColumnRole[] = ['id', 'start', 'end', 'segment', 'amount'];
-const CHARTS: readonly ChartKind[] = ['p', 'p-prime'];
+const CHARTS: readonly (ChartKind | 'auto')[] = ['auto', 'p', 'p-prime'];
 const ORDERS: readonly DateOrder[] = ['iso', 'dmy', 'mdy'];
 
 /**
@@ -57,7 +57,7 @@ const ORDERS: readonly DateOrder[] = ['iso', 'dmy', 'mdy'];
 export function readArguments(args: readonly string[]): CliOptions {
   const { values, positionals } = parse(args);
   onlyChoice('by', values.by, ['start'], ['renewal', 'calendar']);
-  onlyChoice('chart', values.chart, ['auto', ...CHARTS], ['g', 't', 'individuals', 'ewma', 'cusum']);
+  onlyChoice('chart', values.chart, CHARTS, ['g', 't', 'individuals', 'ewma', 'cusum']);
   const chart = CHARTS.find((kind) => kind === values.chart);
   const segment = values.segment === undefined ? undefined : columnValue(values.segment);
   const columns = values.columns === undefined ? undefined : columnMap(values.columns);

@@ -70,7 +70,7 @@ function withOptions(question: Question, options: CliOptions): Question {
     ...(options.subgroupSize === undefined ? {} : { subgroupSize: options.subgroupSize }),
     ...(options.baseline === undefined ? {} : { baseline: options.baseline }),
     ...(options.segment ? { segment: options.segment } : {}),
-    ...(options.chart ? { chart: options.chart } : {}),
+    ...(options.chart && options.chart !== 'auto' ? { chart: options.chart } : {}),
     ...(options.asOf === undefined ? {} : { asOf: options.asOf }),
   };
 }

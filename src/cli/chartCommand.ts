@@ -15,7 +15,8 @@ export async function chartCommand(options: CliOptions, around: CliSurroundings)
   const answer = await answerCounts({
     counts,
     ...(options.baseline === undefined ? {} : { baseline: options.baseline }),
-    ...(options.chart ? { chart: options.chart } : {}),
+    // Ready counts come from a table or a spreadsheet whose owner expects the plain chart; auto chooses.
+    ...(options.chart === 'auto' ? {} : { chart: options.chart ?? 'p' }),
     picture: options.picture !== undefined,
     clock: around.clock,
   });

@@ -14,7 +14,8 @@ Options
   --subgroup-size N          accounts a point
   --baseline K               points that set the usual level
   --segment COLUMN=VALUE     only these accounts
-  --chart auto|p|p-prime     p-prime: limits from how much the points really vary
+  --chart auto|p|p-prime     p-prime: limits from how much the points really vary;
+                             ask chooses (auto), chart draws p unless told
   --columns start=COL,end=COL,id=COL,segment=COL,amount=COL
   --dates iso|dmy|mdy        how dates are written
   --picture OUT.png          draw the chart

@@ -59,3 +59,23 @@ describe('ebb chart on ready counts', () => {
     });
   }
 });
+
+describe('ebb chart --chart', () => {
+  const run = async (...args: string[]) =>
+    JSON.parse((await runEbb('chart', '--counts', wafers.join(','), '--sizes', '50', '--json', ...args)).stdout);
+
+  it('draws the plain p chart unless told, and says that the points vary too much for it', async () => {
+    const { chart, verdict } = await run();
+    expect(chart.kind).toBe('p');
+    expect(verdict.cautions.join(' ')).toMatch(/overdispersion/);
+  });
+
+  it('auto takes the p-prime chart for counts that clearly vary more than the binomial; p-prime always does', async () => {
+    for (const kind of ['auto', 'p-prime']) {
+      const { chart } = await run('--chart', kind);
+      expect(chart.kind).toBe('p-prime');
+      // NIST/SEMATECH e-Handbook 6.3.3.2 wafers: sigma_z 1.660867, recomputed.
+      expect(chart.sigmaZ).toBeCloseTo(1.660867, 4);
+    }
+  });
+});

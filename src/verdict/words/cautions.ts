@@ -20,7 +20,7 @@ export function cautions(chart: Chart | null, judgement: Judgement, context: Ver
       const times = judgement.dispersion.ratio.toFixed(1);
       list.push(
         chart.kind === 'p-prime'
-          ? `The points vary about ${times} times as much as chance alone would make them (overdispersion), so the limits are set by how much they really vary from one point to the next (Laney p′ chart).`
+          ? `The points vary about ${times} times as much as chance alone would make them (overdispersion), so the limits are set by how much they really vary from one point to the next (a Laney p-prime chart).`
           : `The points vary about ${times} times as much as chance alone would make them (overdispersion), so flags are raised too easily; the verdict asks for that much more evidence.`,
       );
     }
