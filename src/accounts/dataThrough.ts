@@ -17,13 +17,16 @@ export const ENDS_LOOKED_AT_DAYS = 91;
  * 2. Ends later than that extend it only while they come as thickly as before: in windows of a week (longer when ends are rare: a
  *    window in which five are expected), at least 4 in 10 of the number in a window of the 13 weeks before. Ends that are sparse or that
  *    dry up within five weeks are cancellations already booked for later, which say nothing about how far the file reaches.
+ * 3. Nor do ends of up to five weeks extend it past a silence of more than five usual gaps between start days: where accounts start every
+ *    day, four weeks without any show where the file stops, however many cancellations are booked for them.
  *
  * An early date costs a few young accounts; a late one counts accounts as mature that are not. In doubt this is early.
  * The rule is ours: common practice, no source.
  * @param latestStart  from latestSteadyStart
  * @param ends         at least those later than ENDS_LOOKED_AT_DAYS before it
+ * @param starts       all of them
  */
-export function dataThrough(latestStart: Day, ends: readonly DayCount[]): Day {
+export function dataThrough(latestStart: Day, ends: readonly DayCount[], starts: readonly DayCount[]): Day {
   const before = ends.filter(({ day }) => day <= latestStart);
   const after = ends.filter(({ day }) => day > latestStart);
   const last = after.at(-1);
@@ -47,7 +50,15 @@ export function dataThrough(latestStart: Day, ends: readonly DayCount[]): Day {
   const half = Math.floor(counts.length / 2);
   const driesUp = half > 0 && mean(counts.slice(-half)) < 0.7 * mean(counts.slice(0, half));
   const short = reached - latestStart <= 35;
-  return short && driesUp ? latestStart : reached;
+  const silent = reached - latestStart > 5 * usualStartGap(starts, latestStart);
+  return short && (driesUp || silent) ? latestStart : reached;
+}
+
+/** Mean days between two days with a start, over the last quarter of a year of starts; unknown (endless) for a single one. */
+function usualStartGap(starts: readonly DayCount[], latestStart: Day): number {
+  const recent = starts.filter(({ day }) => day <= latestStart && day > latestStart - ENDS_LOOKED_AT_DAYS);
+  const first = recent[0]?.day ?? latestStart;
+  return recent.length > 1 ? (latestStart - first) / (recent.length - 1) : Number.POSITIVE_INFINITY;
 }
 
 /** The latest start that is no outlier; see dataThrough. */

@@ -79,7 +79,7 @@ export async function makeAccounts(
     bad === 0
       ? `(SELECT *, ${TRUE_END_SQL} AS true_end FROM ${data})`
       : '(SELECT *, end_day AS true_end FROM judged WHERE reason IS NULL)';
-  const asOf = options.asOf ?? (await inferAsOf(connection, clean, latest));
+  const asOf = options.asOf ?? (await inferAsOf(connection, clean, latest, starts));
   const future = total(starts.filter(({ day }) => day > asOf));
   if (future === rows - bad) throw allInFuture(asOf, starts[0]?.day);
   if (future > 0)
@@ -178,12 +178,17 @@ async function startsOf(connection: DuckDBConnection): Promise<DayCount[]> {
   return dayCounts(connection, 'SELECT start_day AS day FROM judged WHERE reason IS NULL');
 }
 
-async function inferAsOf(connection: DuckDBConnection, clean: string, latestStart: Day): Promise<Day> {
+async function inferAsOf(
+  connection: DuckDBConnection,
+  clean: string,
+  latestStart: Day,
+  starts: readonly DayCount[],
+): Promise<Day> {
   const ends = await dayCounts(
     connection,
     `SELECT true_end AS day FROM ${clean} WHERE true_end > ${latestStart - ENDS_LOOKED_AT_DAYS}`,
   );
-  return dataThrough(latestStart, ends);
+  return dataThrough(latestStart, ends, starts);
 }
 
 async function dayCounts(connection: DuckDBConnection, days: string): Promise<DayCount[]> {

@@ -5,7 +5,7 @@ const daily = (from: number, to: number, count: number): DayCount[] =>
   Array.from({ length: to - from + 1 }, (_, at) => ({ day: from + at, count }));
 const asOf = (starts: DayCount[], ends: DayCount[]): number | undefined => {
   const latest = latestSteadyStart(starts);
-  return latest === undefined ? undefined : dataThrough(latest, ends);
+  return latest === undefined ? undefined : dataThrough(latest, ends, starts);
 };
 
 describe('the data-through date', () => {
@@ -29,6 +29,16 @@ describe('the data-through date', () => {
 
   it('follows ends that come as thickly after the last start as before', () => {
     expect(asOf(daily(1000, 1700, 10), daily(1050, 1790, 3))).toBe(1790);
+  });
+
+  it('is not moved past weeks of silence by ends, however thick, when accounts used to start every day', () => {
+    // After a surge of starts, cancellations already booked for the next four weeks come as thickly as those of the weeks before.
+    expect(asOf(daily(1000, 1700, 200), daily(1650, 1728, 30))).toBe(1700);
+  });
+
+  it('follows ends for some days where starts come only now and then', () => {
+    const weekly = Array.from({ length: 100 }, (_, at) => ({ day: 1000 + 7 * at, count: 60 }));
+    expect(asOf(weekly, daily(1050, 1715, 3))).toBe(1715);
   });
 
   it('is the latest end when all accounts started at once', () => {
