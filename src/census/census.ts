@@ -24,7 +24,10 @@ export async function takeCensus(table: AccountTable, request: CensusRequest): P
     request.segment === undefined && table.report.segments.length > 1
       ? table.report.segments.slice(0, SEGMENTS).map(({ value }) => value)
       : [];
-  const rows = await rowsOf(connection, censusSql(table.table, request, maturedUntil, segmentNames));
+  const rows = await rowsOf(
+    connection,
+    censusSql(table.table, request, table.report.firstStart, maturedUntil, segmentNames),
+  );
   const starts = await startsFrom(table, maturedUntil - 2 * QUARTER_DAYS, request.segment);
 
   const all: {

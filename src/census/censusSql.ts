@@ -14,12 +14,14 @@ export const OTHER_SEGMENT = 'other';
  * once a day for the same reason: calendar months are slow to add.
  * It keeps to what DuckDB and Postgres have in common.
  * @param table         columns key, start_day, end_day, segment
+ * @param firstStart    the first day on which an account started
  * @param maturedUntil  the last start day that has matured
  * @param segments      values counted by themselves; all others are pooled; none: no split
  */
 export function censusSql(
   table: string,
   request: CensusRequest,
+  firstStart: Day,
   maturedUntil: Day,
   segments: readonly string[],
 ): string {
@@ -29,29 +31,31 @@ export function censusSql(
       : `CASE WHEN a.segment IN (${segments.map(text).join(', ')}) THEN a.segment ELSE ${text(OTHER_SEGMENT)} END`;
   const only = request.segment === undefined ? '' : ` AND a.segment = ${text(request.segment)}`;
   const matured = `a.start_day <= ${maturedUntil}${only}`;
-  const n = request.subgroupSize;
+  // As a decimal: dividing whole numbers cuts off in one engine and not in the other.
+  const size = `${request.subgroupSize}.0`;
   return `
-WITH started AS (
-  SELECT DISTINCT a.start_day FROM ${table} AS a WHERE ${matured}
-), points AS (
-  SELECT start_day, ${tenurePointSql('start_day', request.tenure)} AS tenure_point FROM started
+WITH points AS (
+  SELECT start_day, ${tenurePointSql('start_day', request.tenure)} AS tenure_point
+  FROM (SELECT CAST(day AS INTEGER) AS start_day FROM generate_series(${firstStart}, ${maturedUntil}) AS every(day)) AS series
 ), counted AS (
   SELECT a.start_day, ${segment} AS segment, COUNT(*) AS accounts, COUNT(CASE WHEN a.end_day <= p.tenure_point THEN 1 END) AS lost
   FROM ${table} AS a JOIN points AS p ON a.start_day = p.start_day WHERE ${matured} GROUP BY 1, 2
 ), days AS (
-  SELECT start_day, SUM(SUM(accounts)) OVER (ORDER BY start_day) - SUM(accounts) AS earlier, SUM(accounts) AS accounts
+  SELECT start_day, CAST(SUM(SUM(accounts)) OVER (ORDER BY start_day) - SUM(accounts) AS INTEGER) AS earlier, CAST(SUM(accounts) AS INTEGER) AS accounts
   FROM counted GROUP BY start_day
+), placed AS (
+  SELECT start_day, earlier, FLOOR(earlier / ${size}) AS first_subgroup, FLOOR((earlier + accounts - 1) / ${size}) AS last_subgroup FROM days
+), ordered AS (
+  SELECT d.earlier + ROW_NUMBER() OVER (PARTITION BY a.start_day ORDER BY a.key) - 1 AS place, a.start_day, a.end_day, a.segment
+  FROM ${table} AS a JOIN placed AS d ON a.start_day = d.start_day WHERE d.first_subgroup < d.last_subgroup AND ${matured}
 ), members AS (
-  SELECT CAST(FLOOR(d.earlier / ${n}) AS INTEGER) AS subgroup, c.segment, c.accounts, c.lost, c.start_day
-  FROM counted AS c JOIN days AS d ON c.start_day = d.start_day
-  WHERE FLOOR(d.earlier / ${n}) = FLOOR((d.earlier + d.accounts - 1) / ${n})
+  SELECT d.first_subgroup AS subgroup, c.segment, c.accounts, c.lost, c.start_day
+  FROM counted AS c JOIN placed AS d ON c.start_day = d.start_day WHERE d.first_subgroup = d.last_subgroup
   UNION ALL
-  SELECT CAST(FLOOR((d.earlier + ROW_NUMBER() OVER (PARTITION BY a.start_day ORDER BY a.key) - 1) / ${n}) AS INTEGER) AS subgroup,
-    ${segment} AS segment, 1 AS accounts, CASE WHEN a.end_day <= p.tenure_point THEN 1 ELSE 0 END AS lost, a.start_day
-  FROM ${table} AS a JOIN days AS d ON a.start_day = d.start_day JOIN points AS p ON a.start_day = p.start_day
-  WHERE FLOOR(d.earlier / ${n}) < FLOOR((d.earlier + d.accounts - 1) / ${n}) AND ${matured}
+  SELECT FLOOR(a.place / ${size}), ${segment}, COUNT(*), COUNT(CASE WHEN a.end_day <= p.tenure_point THEN 1 END), a.start_day
+  FROM ordered AS a JOIN points AS p ON a.start_day = p.start_day GROUP BY 1, 2, 5
 )
-SELECT subgroup, segment, CAST(SUM(accounts) AS INTEGER) AS accounts, CAST(SUM(lost) AS INTEGER) AS lost,
+SELECT CAST(subgroup AS INTEGER) AS subgroup, segment, CAST(SUM(accounts) AS INTEGER) AS accounts, CAST(SUM(lost) AS INTEGER) AS lost,
   MIN(start_day) AS first_start, MAX(start_day) AS last_start
 FROM members GROUP BY subgroup, segment ORDER BY subgroup, segment`;
 }

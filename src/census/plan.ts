@@ -64,7 +64,8 @@ async function maturedCounts(
     table.connection,
     // The tenure point is worked out once a day: calendar months are slow to add.
     `WITH points AS (
-       SELECT start_day, ${tenurePointSql('start_day', tenure)} AS tenure_point FROM (SELECT DISTINCT start_day FROM ${table.table} WHERE start_day <= ${until})
+       SELECT start_day, ${tenurePointSql('start_day', tenure)} AS tenure_point 
+       FROM (SELECT unnest(range(${table.report.firstStart}, ${until + 1}))::INTEGER AS start_day)
      )
      SELECT count(*)::INTEGER AS matured, count(*) FILTER (WHERE end_day <= tenure_point)::INTEGER AS lost,
        count(*) FILTER (WHERE start_day > ${until - 91})::INTEGER AS recent
