@@ -8,10 +8,22 @@ import { build } from 'vite';
 const here = (path) => fileURLToPath(new URL(path, import.meta.url));
 
 rmSync(here('../dist/cli/parts'), { recursive: true, force: true });
+/** The drawing's specification is the same for every picture: its compiled form goes in, the compiler stays out. */
+const { compiledDrawing } = await import('../dist/picture/compiledDrawing.js');
+const compiledAhead = {
+  name: 'compiled-drawing',
+  enforce: 'pre',
+  load: (id) =>
+    id === here('../src/picture/compiledDrawing.ts')
+      ? `export const compiledDrawing = () => (${JSON.stringify(compiledDrawing())});`
+      : undefined,
+};
+
 await build({
   root: here('..'),
   configFile: false,
   publicDir: false,
+  plugins: [compiledAhead],
   logLevel: 'warn',
   ssr: { noExternal: true, external: ['@duckdb/node-bindings'] },
   build: {

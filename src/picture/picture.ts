@@ -3,7 +3,6 @@ import { altText } from './altText.ts';
 import { useShippedFonts } from './fonts.ts';
 import { layout } from './layout.ts';
 import { EMPTY_SCENE } from './scene.ts';
-import { spec } from './spec.ts';
 
 export interface Picture {
   readonly png: Uint8Array;
@@ -17,7 +16,7 @@ export interface Picture {
 const DENSITY = 1.5;
 
 interface Renderer {
-  readonly renderSvg: typeof import('./vectorDrawing.ts').renderSvg;
+  readonly drawScene: typeof import('./vectorDrawing.ts').drawScene;
   readonly renderPng: typeof import('./raster.ts').renderPng;
 }
 
@@ -29,9 +28,9 @@ function loadRenderer(): Promise<Renderer> {
     useShippedFonts();
     const { openFonts, renderPng } = await import('./raster.ts');
     const fontsOpen = openFonts();
-    const { renderSvg } = await import('./vectorDrawing.ts');
+    const { drawScene } = await import('./vectorDrawing.ts');
     await fontsOpen;
-    return { renderSvg, renderPng };
+    return { drawScene, renderPng };
   })();
   return renderer;
 }
@@ -42,8 +41,8 @@ function loadRenderer(): Promise<Renderer> {
  */
 export async function warmPicture(): Promise<void> {
   try {
-    const { renderSvg } = await loadRenderer();
-    await renderSvg(spec(EMPTY_SCENE));
+    const { drawScene } = await loadRenderer();
+    await drawScene(EMPTY_SCENE);
   } catch {
     renderer = undefined;
   }
@@ -56,9 +55,9 @@ export async function warmPicture(): Promise<void> {
  * @throws  Error when Vega warns: a warning would mean a part of the drawing is missing
  */
 export async function drawPicture(input: PictureInput): Promise<Picture> {
-  const { renderPng, renderSvg } = await loadRenderer();
+  const { renderPng, drawScene } = await loadRenderer();
   const scene = layout(input);
-  const svg = await renderSvg(spec(scene));
+  const svg = await drawScene(scene);
   const png = await renderPng(svg, DENSITY);
   return {
     png,

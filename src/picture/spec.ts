@@ -1,21 +1,39 @@
 import type { TopLevelSpec } from 'vega-lite';
 import { FONT_FAMILY } from './fonts.ts';
 import { INK, PAPER, WATER_DEEP, WATER_EDGE, WATER_PALE } from './palette.ts';
-import type { Scene } from './scene.ts';
+
+/** The parts of a scene that are lists of things to draw: the specification's data sets, by name. */
+export const DATA_SETS = ['slabs', 'band', 'veils', 'under', 'points', 'levels', 'over', 'marks', 'texts'] as const;
+
+/** The single numbers of a scene: the specification's parameters. */
+export const PARAMETERS = [
+  'left',
+  'right',
+  'top',
+  'bottom',
+  'x0',
+  'x1',
+  'y0',
+  'y1',
+  'lineWidth',
+  'lineOpacity',
+] as const;
 
 /**
- * The Vega-Lite specification of a scene. The view covers the whole drawing and both scales get their pixel ranges, so that Vega
- * places nothing by itself and never needs to know how wide a text is.
+ * The Vega-Lite specification of every drawing. A scene comes in only as data and parameters, so that it need be compiled once. The view
+ * covers the whole drawing and both scales get their pixel ranges, so that Vega places nothing by itself and never needs to know how wide
+ * a text is.
  */
-export function spec(scene: Scene): TopLevelSpec {
-  const { frame } = scene;
+export function drawingSpec(): TopLevelSpec {
+  const named = (name: (typeof DATA_SETS)[number]) => ({ name });
+  const value = (name: (typeof PARAMETERS)[number]) => ({ expr: name });
   const x = (field: string) => ({
     field,
     type: 'quantitative' as const,
     axis: null,
     scale: {
-      domain: [...frame.xDomain],
-      range: [frame.left, frame.right],
+      domain: [value('x0'), value('x1')],
+      range: [value('left'), value('right')],
       nice: false,
       zero: false,
     },
@@ -25,8 +43,8 @@ export function spec(scene: Scene): TopLevelSpec {
     type: 'quantitative' as const,
     axis: null,
     scale: {
-      domain: [...frame.yDomain],
-      range: [frame.bottom, frame.top],
+      domain: [value('y0'), value('y1')],
+      range: [value('bottom'), value('top')],
       nice: false,
       zero: false,
     },
@@ -55,8 +73,8 @@ export function spec(scene: Scene): TopLevelSpec {
       { offset: 1, color: to },
     ],
   });
-  const strokes = (values: Scene['under']) => ({
-    data: { values: [...values] },
+  const strokes = (name: 'under' | 'over') => ({
+    data: named(name),
     mark: {
       type: 'rule' as const,
       stroke: each('color'),
@@ -79,11 +97,13 @@ export function spec(scene: Scene): TopLevelSpec {
     strokeWidth: each('strokeWidth'),
     opacity: 1,
   };
-  const band = { values: [...scene.band] };
+  const band = named('band');
   return {
     $schema: 'https://vega.github.io/schema/vega-lite/v6.json',
-    width: scene.widthPx,
-    height: scene.heightPx,
+    params: PARAMETERS.map((name) => ({ name, value: 0 })),
+    // The size is the scene's as well; it is put in when a scene is drawn.
+    width: 1,
+    height: 1,
     padding: 0,
     autosize: { type: 'none' },
     background: PAPER,
@@ -91,7 +111,7 @@ export function spec(scene: Scene): TopLevelSpec {
     resolve: { scale: { x: 'shared', y: 'shared' } },
     layer: [
       {
-        data: { values: [...scene.slabs] },
+        data: named('slabs'),
         mark: { type: 'rect', fill: each('color') },
         encoding: {
           x: px('x'),
@@ -119,7 +139,7 @@ export function spec(scene: Scene): TopLevelSpec {
         encoding: { x: x('x'), y: y('center'), y2: { field: 'lower' } },
       },
       {
-        data: { values: [...scene.veils] },
+        data: named('veils'),
         mark: { type: 'rect', fill: each('color'), opacity: 0.55 },
         encoding: {
           x: px('x'),
@@ -128,25 +148,25 @@ export function spec(scene: Scene): TopLevelSpec {
           y2: { field: 'y2' },
         },
       },
-      strokes(scene.under),
+      strokes('under'),
       ...(['upper', 'lower'] as const).map((edge) => ({
         data: band,
         mark: { type: 'line' as const, stroke: WATER_EDGE, strokeWidth: 1.8 },
         encoding: { x: x('x'), y: y(edge) },
       })),
       {
-        data: { values: [...scene.points] },
+        data: named('points'),
         mark: {
           type: 'line',
           stroke: INK,
-          strokeWidth: scene.line.width,
-          opacity: scene.line.opacity,
+          strokeWidth: value('lineWidth'),
+          opacity: value('lineOpacity'),
           strokeJoin: 'round',
         },
         encoding: { x: x('x'), y: y('value') },
       },
       {
-        data: { values: [...scene.levels] },
+        data: named('levels'),
         mark: {
           type: 'rule',
           stroke: each('color'),
@@ -155,19 +175,19 @@ export function spec(scene: Scene): TopLevelSpec {
         },
         encoding: { x: x('x'), x2: { field: 'x2' }, y: y('value') },
       },
-      strokes(scene.over),
+      strokes('over'),
       {
-        data: { values: [...scene.points] },
+        data: named('points'),
         mark: { type: 'point', ...marks },
         encoding: { x: x('x'), y: y('value') },
       },
       {
-        data: { values: [...scene.marks] },
+        data: named('marks'),
         mark: { type: 'point', ...marks },
         encoding: { x: px('x'), y: px('y') },
       },
       {
-        data: { values: [...scene.texts] },
+        data: named('texts'),
         mark: {
           type: 'text',
           baseline: 'alphabetic',

@@ -1,9 +1,11 @@
 import sharp from 'sharp';
 import { describe, expect, test } from 'vitest';
+import { compiledDrawing } from '../../src/picture/compiledDrawing.ts';
+import { complainingLogger } from '../../src/picture/complainingLogger.ts';
 import { layout } from '../../src/picture/layout.ts';
 import { drawPicture, warmPicture } from '../../src/picture/picture.ts';
-
 import { boxOf } from '../../src/picture/scene.ts';
+import { DATA_SETS, PARAMETERS } from '../../src/picture/spec.ts';
 import { renderSvg } from '../../src/picture/vectorDrawing.ts';
 import { state } from './states.ts';
 
@@ -102,13 +104,31 @@ describe('drawPicture', () => {
   });
 });
 
-describe('renderSvg', () => {
-  test('anything Vega warns about is an error', async () => {
+describe('a drawing that Vega would warn about', () => {
+  test('is an error when it is compiled', async () => {
+    const { compile } = await import('vega-lite');
     const spec = {
       data: { values: [{ a: 1 }] },
       mark: 'bar',
       encoding: { x: { field: 'a', type: 'quantitative' }, nonsense: { field: 'a' } },
     };
-    await expect(renderSvg(spec as never)).rejects.toThrow(/drawing the picture/);
+    expect(() => compile(spec as never, { logger: complainingLogger() })).toThrow(/drawing the picture/);
+  });
+
+  test('is an error when it is drawn', async () => {
+    const drawing = {
+      width: 10,
+      height: 10,
+      data: [{ name: 'rows', values: [{ a: 1 }] }],
+      marks: [{ type: 'rect', from: { data: 'rows' }, encode: { update: { x: { scale: 'missing', field: 'a' } } } }],
+    };
+    await expect(renderSvg(drawing as never)).rejects.toThrow(/drawing the picture/);
+  });
+
+  test('a scene goes into a compiled drawing that has a place for every part of it', () => {
+    const drawing = compiledDrawing();
+    expect(drawing.data?.map(({ name }) => name)).toEqual(expect.arrayContaining([...DATA_SETS]));
+    expect(drawing.signals?.map(({ name }) => name)).toEqual(expect.arrayContaining([...PARAMETERS]));
+    expect(drawing).toEqual(JSON.parse(JSON.stringify(drawing)));
   });
 });
