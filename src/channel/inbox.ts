@@ -3,7 +3,10 @@ import type { InboxEntry } from '../store/types.ts';
 
 const id = z.string().min(1);
 const dateOrder = z.enum(['iso', 'dmy', 'mdy']);
-const target = z.union([z.strictObject({ upload: id }), z.strictObject({ dataset: id })]);
+/** the upload, with the reading that the message showed when it showed one; or a dataset whose upload is not at hand */
+const target = z.union([z.strictObject({ upload: id, dataset: id.optional() }), z.strictObject({ dataset: id })]);
+
+export type MendTarget = z.infer<typeof target>;
 
 export const mendPlaceSchema = z.strictObject({ target, channel: id, threadTs: id });
 

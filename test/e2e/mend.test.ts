@@ -7,6 +7,7 @@ const VERDICT = /^Churn (has|is)|^Cannot say|^Too early/;
 
 interface Element {
   readonly action_id: string;
+  readonly initial_option?: { readonly text: { readonly text: string } };
   readonly options?: { readonly text: { readonly text: string }; readonly value: string }[];
 }
 
@@ -75,6 +76,33 @@ describe('mending how a file is read', () => {
     expect(again.text).toContain('31 December 2025 (as you said)');
     await bot.store.drained(20_000);
     expect(saidIn(bot, post.ts)).toHaveLength(4);
+  });
+
+  it('offers the reading that a message shows, not the last try that failed', async () => {
+    const wren = bot.service.as('wren');
+    const post = wren.drop('#retention', [{ path: SAMPLE }]);
+    const read = await heard(bot, post.ts, 'Read: marrowby-recipe-cards.csv');
+    await heard(bot, post.ts, VERDICT);
+    const opened = async (before?: string) => {
+      const modal = await bot.service.waitFor(() => {
+        const open = wren.modal();
+        return open && open.id !== before && JSON.stringify(open.content).includes('mend_start') ? open : undefined;
+      });
+      const blocks = modal.content.blocks as unknown as { block_id?: string; element?: Element }[];
+      const end = blocks.find((block) => block.block_id === 'mend_end')?.element?.initial_option?.text.text;
+      return { id: modal.id, end };
+    };
+    await wren.press(read, 'mend_open');
+    const first = await opened();
+    expect(first.end).toBe('end_date');
+    wren.fill({ view: first.id }, 'value', '1', 'mend_end');
+    await wren.submit();
+    const failed = await heard(bot, post.ts, 'I could not use');
+    await wren.press(read, 'mend_open');
+    const second = await opened(first.id);
+    expect(second.end).toBe('end_date');
+    await wren.press(failed, 'mend_open');
+    expect((await opened(second.id)).end).toBe('household');
   });
 
   it('offers the columns when none looks like a start, and answers when they are chosen', async () => {

@@ -80,11 +80,12 @@ export function listenToPresses(app: App, deps: ChannelDeps, background: (work: 
 async function formFor(deps: ChannelDeps, teamId: string, place: MendPlace) {
   const workspace = await deps.store.workspace(teamId);
   const upload = 'upload' in place.target ? await workspace.upload(place.target.upload) : undefined;
-  const datasetId = 'dataset' in place.target ? place.target.dataset : upload?.datasetId;
-  const dataset = datasetId ? await workspace.dataset(datasetId) : undefined;
+  const shown = place.target.dataset === undefined ? undefined : await workspace.dataset(place.target.dataset);
+  const dataset = shown ?? (upload?.datasetId ? await workspace.dataset(upload.datasetId) : undefined);
   const headers = upload && upload.headers.length > 0 ? upload.headers : (dataset?.report.headers ?? []);
   if (headers.length === 0) return mendUnavailable(place);
-  const choices = upload?.choices ?? dataset?.choices ?? {};
+  // The upload remembers the last try, also one that failed: a message that shows a reading offers that reading.
+  const choices = (shown ?? upload)?.choices ?? {};
   return mendModal(place, {
     fileName: upload?.fileName ?? dataset?.name ?? 'the file',
     headers,

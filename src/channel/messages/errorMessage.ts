@@ -1,7 +1,7 @@
 import type { EbbError } from '../../errors.ts';
+import type { MendTarget } from '../inbox.ts';
 import { ACTION } from '../names.ts';
 import { button, type Message, message, section } from './blocks.ts';
-import type { MendTarget } from './readMessage.ts';
 import { code, inert, shortened } from './text.ts';
 
 /**

@@ -1,13 +1,14 @@
 import type { types } from '@slack/bolt';
 import type { ColumnMap, DateOrder } from '../../accounts/types.ts';
 import { type Day, isoDay } from '../../days.ts';
+import type { MendTarget } from '../inbox.ts';
 import { MEND, NO_COLUMN, VIEW_MEND } from '../names.ts';
 import { plain } from './blocks.ts';
 import { code } from './text.ts';
 
 /** What the modal carries along, as text in its private metadata. */
 export interface MendPlace {
-  readonly target: { readonly upload: string } | { readonly dataset: string };
+  readonly target: MendTarget;
   readonly channel: string;
   readonly threadTs: string;
 }

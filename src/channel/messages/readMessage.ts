@@ -1,11 +1,9 @@
 import type { ReadReport } from '../../accounts/types.ts';
 import { readText } from '../../verdict/words/readText.ts';
+import type { MendTarget } from '../inbox.ts';
 import { ACTION } from '../names.ts';
 import { bullets, button, type Message, message, section } from './blocks.ts';
 import { code, inert, shortened } from './text.ts';
-
-/** What a mend is about: the upload in whose thread it stands, or a dataset when its upload is not at hand. */
-export type MendTarget = { readonly upload: string } | { readonly dataset: string };
 
 /**
  * What was read, with the means to mend it.

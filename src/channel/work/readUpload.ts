@@ -53,7 +53,11 @@ export async function readUpload(
     return;
   }
   const { dataset } = read;
-  await poster.replace('read', 'reading', readMessage(dataset.report, dataset.name, { upload: upload.id }, lead));
+  await poster.replace(
+    'read',
+    'reading',
+    readMessage(dataset.report, dataset.name, { upload: upload.id, dataset: dataset.id }, lead),
+  );
   const words = asked === '' ? null : understand(asked, requestContext(deps.now(), dataset));
   const question = words?.request.kind === 'ask' ? words.request : ({ kind: 'ask' } as const);
   await answerQuestion(job, poster, dataset, question, words?.request.kind === 'ask' ? words : null);

@@ -21,10 +21,13 @@ export async function workMend(job: Job, payload: Payload<'mend'>): Promise<void
     const header = at === undefined ? undefined : upload.headers[at];
     if (header !== undefined) columns[role] = header;
   }
-  const inferred = upload.datasetId ? (await workspace.dataset(upload.datasetId))?.report.asOf : undefined;
+  const { target } = payload;
+  const shown = target.dataset === undefined ? undefined : await workspace.dataset(target.dataset);
+  const latest = upload.datasetId ? await workspace.dataset(upload.datasetId) : undefined;
+  const inferred = (shown ?? latest)?.report.asOf;
   const chosenDay = payload.asOf === null ? undefined : dayFromIso(payload.asOf);
   // A day left as it was inferred stays inferred.
-  const asOf = upload.choices.asOf === undefined && chosenDay === inferred ? undefined : chosenDay;
+  const asOf = (shown ?? upload).choices.asOf === undefined && chosenDay === inferred ? undefined : chosenDay;
   await readAgain(job, upload, payload, {
     columns: columns satisfies ColumnMap,
     ...(payload.dates === null ? {} : { dates: payload.dates }),
