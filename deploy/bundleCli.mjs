@@ -19,11 +19,20 @@ const compiledAhead = {
       : undefined,
 };
 
+/** Families of Vega transforms that the drawing has no use for: maps, forces, trees, clouds, …; a drawing that needed one would fail at once. */
+const UNUSED_TRANSFORMS = ['crossfilter', 'force', 'geo', 'hierarchy', 'label', 'regression', 'voronoi', 'wordcloud'];
+const leftOut = {
+  name: 'unused-transforms',
+  enforce: 'pre',
+  load: (id) =>
+    UNUSED_TRANSFORMS.some((family) => id.includes(`/node_modules/vega-${family}/`)) ? 'export {};' : undefined,
+};
+
 await build({
   root: here('..'),
   configFile: false,
   publicDir: false,
-  plugins: [compiledAhead],
+  plugins: [compiledAhead, leftOut],
   logLevel: 'warn',
   ssr: { noExternal: true, external: ['@duckdb/node-bindings'] },
   build: {

@@ -44,19 +44,21 @@ WITH points AS (
   SELECT start_day, CAST(SUM(SUM(accounts)) OVER (ORDER BY start_day) - SUM(accounts) AS INTEGER) AS earlier, CAST(SUM(accounts) AS INTEGER) AS accounts
   FROM counted GROUP BY start_day
 ), placed AS (
-  SELECT start_day, earlier, FLOOR(earlier / ${size}) AS first_subgroup, FLOOR((earlier + accounts - 1) / ${size}) AS last_subgroup FROM days
+  SELECT d.start_day, p.tenure_point, d.earlier, FLOOR(d.earlier / ${size}) AS first_subgroup, FLOOR((d.earlier + d.accounts - 1) / ${size}) AS last_subgroup
+  FROM days AS d JOIN points AS p ON d.start_day = p.start_day
 ), ordered AS (
-  SELECT d.earlier + ROW_NUMBER() OVER (PARTITION BY a.start_day ORDER BY a.key) - 1 AS place, a.start_day, a.end_day, a.segment
+  SELECT d.earlier + ROW_NUMBER() OVER (PARTITION BY a.start_day ORDER BY a.key) - 1 AS place, a.start_day, ${segment} AS segment,
+    CASE WHEN a.end_day <= d.tenure_point THEN 1 END AS lost
   FROM ${table} AS a JOIN placed AS d ON a.start_day = d.start_day WHERE d.first_subgroup < d.last_subgroup AND ${matured}
 ), members AS (
-  SELECT d.first_subgroup AS subgroup, c.segment, c.accounts, c.lost, c.start_day
-  FROM counted AS c JOIN placed AS d ON c.start_day = d.start_day WHERE d.first_subgroup = d.last_subgroup
+  SELECT CAST(d.first_subgroup AS INTEGER) AS subgroup, c.segment, SUM(c.accounts) AS accounts, SUM(c.lost) AS lost,
+    MIN(c.start_day) AS first_start, MAX(c.start_day) AS last_start
+  FROM counted AS c JOIN placed AS d ON c.start_day = d.start_day WHERE d.first_subgroup = d.last_subgroup GROUP BY 1, 2
   UNION ALL
-  SELECT FLOOR(a.place / ${size}), ${segment}, COUNT(*), COUNT(CASE WHEN a.end_day <= p.tenure_point THEN 1 END), a.start_day
-  FROM ordered AS a JOIN points AS p ON a.start_day = p.start_day GROUP BY 1, 2, 5
+  SELECT CAST(FLOOR(place / ${size}) AS INTEGER), segment, COUNT(*), COUNT(lost), MIN(start_day), MAX(start_day) FROM ordered GROUP BY 1, 2
 )
-SELECT CAST(subgroup AS INTEGER) AS subgroup, segment, CAST(SUM(accounts) AS INTEGER) AS accounts, CAST(SUM(lost) AS INTEGER) AS lost,
-  MIN(start_day) AS first_start, MAX(start_day) AS last_start
+SELECT subgroup, segment, CAST(SUM(accounts) AS INTEGER) AS accounts, CAST(SUM(lost) AS INTEGER) AS lost,
+  MIN(first_start) AS first_start, MAX(last_start) AS last_start
 FROM members GROUP BY subgroup, segment ORDER BY subgroup, segment`;
 }
 
