@@ -1,8 +1,8 @@
 import type { PictureInput } from '../verdict/types.ts';
 import { withinLimits } from '../verdict/words/testWords.ts';
-import { capitalised, countOf, heldDate, percent, percentRange } from './figures.ts';
+import { capitalised, count, countOf, heldDate, limitPercent, percent, percentRange } from './figures.ts';
 import { candidateWords, immatureWords, waitingWords } from './notes.ts';
-import { stretches } from './stretches.ts';
+import { moreFlags, stretches } from './stretches.ts';
 import { shortTitle, titleAndRest, wouldSeeWords } from './title.ts';
 
 /** Longest alternative text, in characters. */
@@ -52,15 +52,18 @@ function sentences(input: PictureInput): string[] {
       watching: 'One to watch',
       passed: input.flagsExplained === undefined ? 'Flagged, but did not last' : `Flagged, ${input.flagsExplained}`,
     }[stretch.state];
-    const where = stretch.from === stretch.to ? `point ${stretch.from}` : `points ${stretch.from} to ${stretch.to}`;
-    said.push(`${state}, ${where}: ${stretch.words}`);
+    const [from, to] = stretch.said;
+    const where = from === to ? `point ${from}` : `points ${from} to ${to}`;
+    said.push(`${state}, ${where}: ${stretch.words}${moreFlags(stretch)}`);
   }
   if (marked.length > 3) said.push(`${countOf(marked.length - 3, 'more marked stretch', 'more marked stretches')}`);
   if (chart && marked.length === 0) said.push('No point is flagged');
+  if (input.split)
+    said.push(`Not one level: the points change about between point ${input.split.after} and ${input.split.after + 1}`);
   said.push(capitalised(candidateWords(input)));
   if (verdict.after && verdict.before && verdict.since)
     said.push(
-      `Before: ${verdict.before.lost} of ${countOf(verdict.before.accounts, 'account')} lost; since: ${verdict.after.lost} of ${countOf(verdict.after.accounts, 'account')}`,
+      `Before: ${count(verdict.before.lost)} of ${countOf(verdict.before.accounts, 'account')} lost; since then: ${count(verdict.after.lost)} of ${countOf(verdict.after.accounts, 'account')}`,
     );
   said.push(capitalised(waitingWords(input)), immatureWords(input));
   return said;
@@ -69,7 +72,7 @@ function sentences(input: PictureInput): string[] {
 function chanceWords(within: string, lower: number, upper: number): string {
   if (upper <= lower) return '';
   return lower > 0
-    ? `; ${within} keeps points between ${percent(lower)} and ${percent(upper)}`
+    ? `; ${within} keeps points between ${limitPercent(lower, upper)} and ${percent(upper)}`
     : `; ${within} keeps points below ${percent(upper)}`;
 }
 

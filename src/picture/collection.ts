@@ -1,5 +1,5 @@
 import type { PictureInput } from '../verdict/types.ts';
-import { countOf, grouped, heldDate } from './figures.ts';
+import { count, countOf, heldDate } from './figures.ts';
 import { header } from './header.ts';
 import { immatureWords, notes } from './notes.ts';
 import {
@@ -71,7 +71,7 @@ export function collectionScene(input: PictureInput): Scene {
       width: 4,
     });
     y = bottom + 14;
-    say(`${grouped(waiting.accounts)} of ${countOf(waiting.of, 'account')} for the first point so far`, 26, 700, INK);
+    say(`${count(waiting.accounts)} of ${countOf(waiting.of, 'account')} for the first point so far`, 26, 700, INK);
     say(
       waiting.on === null
         ? 'Not enough accounts have started yet to fill it.'

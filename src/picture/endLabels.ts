@@ -1,6 +1,6 @@
 import type { PictureInput } from '../verdict/types.ts';
 import { withinLimits } from '../verdict/words/testWords.ts';
-import { percent } from './figures.ts';
+import { limitPercent, percent } from './figures.ts';
 import { EMBER, INK, LEVEL, TEXT_SIZE, WATER_EDGE } from './palette.ts';
 import { type Frame, type PlacedText, type Stroke, xAt, yAt } from './scene.ts';
 import { textWidth } from './textWidth.ts';
@@ -26,7 +26,7 @@ export function endLabels(input: PictureInput): EndLabel[] {
   const within = withinLimits(chart.kind);
   if (spread && last.upper < 1)
     labels.push({
-      lines: [within, 'stays below', percent(last.upper)],
+      lines: [within, 'stays below', limitPercent(last.upper, last.lower)],
       value: last.upper,
       color: INK,
       line: WATER_EDGE,
@@ -41,7 +41,7 @@ export function endLabels(input: PictureInput): EndLabel[] {
   });
   if (spread && last.lower > 0)
     labels.push({
-      lines: last.upper < 1 ? ['and above', percent(last.lower)] : [within, 'stays above', percent(last.lower)],
+      lines: [within, 'stays above', limitPercent(last.lower, last.upper)],
       value: last.lower,
       color: INK,
       line: WATER_EDGE,

@@ -1,25 +1,22 @@
 import { type Day, dayInWords } from '../days.ts';
+import * as spoken from '../verdict/words/format.ts';
 
-/** A rate as people read it: "6.2 %", one decimal, two below 1 %. The space does not break. */
+export { capitalised, count } from '../verdict/words/format.ts';
+
+/** A rate as people read it, "6.2 %", as in the message but for the space, which does not break. */
 export function percent(rate: number): string {
-  return `${percentDigits(rate)}\u00a0%`;
+  return rate === 1 ? '100\u00a0%' : spoken.percent(rate).replace(' ', '\u00a0');
 }
 
 /** "5.5–7.1 %" */
 export function percentRange(low: number, high: number): string {
-  return `${percentDigits(low)}–${percent(high)}`;
+  return `${percent(low).replace('\u00a0%', '')}–${percent(high)}`;
 }
 
-function percentDigits(rate: number): string {
-  const value = rate * 100;
-  if (value === 0 || value === 100) return String(value);
-  return value.toFixed(Math.abs(value) < 0.995 ? 2 : 1);
-}
-
-/** A whole number with thin groups: "12 480". Four digits stay together. */
-export function grouped(value: number): string {
-  const digits = String(Math.round(value));
-  return digits.length < 5 ? digits : digits.replace(/\B(?=(\d{3})+$)/g, '\u00a0');
+/** A limit beside another one: one decimal when the other has one, unless nothing would be left of it. */
+export function limitPercent(rate: number, beside: number): string {
+  const short = (rate * 100).toFixed(1);
+  return rate > 0 && beside >= 0.00995 && Number(short) > 0 && rate < 1 ? `${short}\u00a0%` : percent(rate);
 }
 
 /** A date that holds together on one line: "12 March 2025". */
@@ -47,10 +44,6 @@ export function monthNumber(day: Day): number {
 }
 
 /** "1 account", "37 accounts" */
-export function countOf(count: number, one: string, many = `${one}s`): string {
-  return `${grouped(count)}\u00a0${count === 1 ? one : many}`;
-}
-
-export function capitalised(text: string): string {
-  return text.charAt(0).toUpperCase() + text.slice(1);
+export function countOf(n: number, one: string, many = `${one}s`): string {
+  return spoken.counted(n, one, many).replace(' ', '\u00a0');
 }

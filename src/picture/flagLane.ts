@@ -1,9 +1,9 @@
 import type { PictureInput } from '../verdict/types.ts';
-import { countOf, heldDate } from './figures.ts';
+import { heldDate } from './figures.ts';
 import { EMBER, INK, MARGIN, QUIET, TEXT_SIZE, WIDTH } from './palette.ts';
 import { reach } from './plotFrame.ts';
 import { type Frame, type PlacedText, type Stroke, xAt } from './scene.ts';
-import type { Stretch } from './stretches.ts';
+import { moreFlags, type Stretch } from './stretches.ts';
 import { drawable, textWidth } from './textWidth.ts';
 import { balanceText } from './wrapText.ts';
 
@@ -38,8 +38,7 @@ export function beganWords(input: PictureInput): string {
 
 /** The words over a marked stretch: the state in bold, then the flag in words. */
 function stretchWords(stretch: Stretch, input: PictureInput): { lead: string; rest: string } {
-  const more = stretch.flags > 1 ? ` (and ${countOf(stretch.flags - 1, 'more flag')})` : '';
-  const rest = drawable(`${stretch.words}${more}`);
+  const rest = drawable(`${stretch.words}${moreFlags(stretch)}`);
   if (stretch.state === 'standing') return { lead: beganWords(input) || 'flagged', rest };
   return {
     lead: stretch.state === 'watching' ? 'one to watch' : (input.flagsExplained ?? 'flagged, but did not last'),
@@ -55,6 +54,7 @@ export function planFlagLane(
 ): FlagLane {
   const labels: Label[] = [];
   const unlabelled: Stretch[] = [];
+  if (input.split) labels.push(splitLabel(input.split.after, x));
   for (const stretch of all) {
     const label = labels.length < 2 ? fitLabel(stretch, input, x, labels[0]) : null;
     if (label) labels.push(label);
@@ -62,10 +62,19 @@ export function planFlagLane(
   }
   const rows = Math.max(0, ...labels.map((label) => label.rows.length));
   return {
-    height: all.length === 0 ? 8 : rows * ROW + BRACKET + 8,
+    height: rows === 0 && all.length === 0 ? 8 : rows * ROW + BRACKET + 8,
     labels,
     unlabelled,
   };
+}
+
+/** The words over the place where the points fall apart into two levels, in one row. */
+function splitLabel(after: number, x: Pick<Frame, 'left' | 'right' | 'xDomain'>): Label {
+  const text = 'not one level: changes about here';
+  const middle = xAt(x, after + 0.5);
+  const width = textWidth(text, TEXT_SIZE, 700);
+  const left = Math.min(Math.max(middle - width / 2, MARGIN), WIDTH - MARGIN - width);
+  return { rows: [{ text, bold: true }], middle, left, width, color: QUIET };
 }
 
 function fitLabel(

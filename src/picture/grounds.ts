@@ -14,7 +14,11 @@ export function baselineGround(chart: Chart, frame: Frame): { slabs: Slab[]; str
   const slab: Slab = { x, y: frame.top, x2, y2: frame.bottom, color: SAND };
   const y = frame.top + HEADROOM - 12;
   const base = { y, size: TEXT_SIZE, weight: 400 as const, role: 'ground' };
-  const words = provisional ? 'usual level set here (provisional)' : 'usual level set here';
+  const wordings = provisional
+    ? ['usual level set here (provisional)', 'provisional usual level', 'provisional']
+    : ['usual level set here', 'usual level', 'usual'];
+  const room = x2 - x - 12;
+  const words = wordings.find((one) => textWidth(one, TEXT_SIZE, 400) <= room) ?? wordings.at(-1) ?? '';
   const width = textWidth(words, TEXT_SIZE, 400);
   const left = Math.min(x + 9, frame.right - width - 4);
   const texts: PlacedText[] = [{ ...base, text: words, x: left, color: SAND_INK, align: 'left' }];
@@ -37,7 +41,7 @@ export function startMark(
   if (!since || (outcome !== 'risen' && outcome !== 'fallen')) return { slabs: [], strokes: [], marks: [] };
   const x = xAt(frame, since.point - 0.5);
   const from = xAt(frame, since.candidates[0] - 0.5);
-  const to = xAt(frame, since.candidates[1] - 0.5);
+  const to = xAt(frame, since.candidates[1] + 0.5);
   const wide = to - from >= 4;
   const mark: PlacedMark = {
     x,
@@ -84,6 +88,17 @@ export function startMark(
     ],
     marks: [mark],
   };
+}
+
+/** Where the points fall apart into two levels: a broken line, with a tick above it to the words; the strip of words between stays free. */
+export function splitMark(input: PictureInput, frame: Frame): Stroke[] {
+  if (!input.split) return [];
+  const x = xAt(frame, input.split.after + 0.5);
+  const line = { x, x2: x, color: QUIET, width: 2.4 };
+  return [
+    { ...line, y: frame.top - 12, y2: frame.top },
+    { ...line, y: frame.top + HEADROOM - 4, y2: frame.bottom, dash: [7, 6] },
+  ];
 }
 
 /** The withheld subgroup: an empty slot after the last point, its mark resting on the axis because it has no value yet. */

@@ -1,5 +1,5 @@
 import type { PictureInput } from '../verdict/types.ts';
-import { capitalised, countOf, grouped, heldDate, percent, percentRange } from './figures.ts';
+import { capitalised, count, countOf, heldDate, percent, percentRange } from './figures.ts';
 import { EMBER, INK, LEAD_SIZE, LEVEL, LINE, MARGIN, QUIET, TEXT_SIZE, TITLE_SIZE, WIDTH } from './palette.ts';
 import type { PlacedText, Stroke } from './scene.ts';
 import { drawable, textWidth } from './textWidth.ts';
@@ -14,7 +14,7 @@ export function countedLine(input: PictureInput): string {
     const smallest = Math.min(...sizes);
     const largest = Math.max(...sizes);
     if (smallest === largest) parts.push(`each point: ${countOf(smallest, 'account')}`);
-    else if (sizes.length > 0) parts.push(`each point: ${grouped(smallest)} to ${countOf(largest, 'account')}`);
+    else if (sizes.length > 0) parts.push(`each point: ${count(smallest)} to ${countOf(largest, 'account')}`);
   }
   if (input.asOf !== null) parts.push(`data to ${heldDate(input.asOf)}`);
   return parts.filter((part) => part.trim() !== '').join(' · ');
@@ -68,9 +68,9 @@ export function header(input: PictureInput): {
     let x = MARGIN;
     for (const [word, level, color] of [
       ['before', before, LEVEL],
-      ['since', after, EMBER],
+      ['since then about', after, EMBER],
     ] as const) {
-      const text = `${word} ${word === 'since' ? 'about ' : ''}${percent(level.rate)} (${percentRange(level.low, level.high)})`;
+      const text = `${word} ${percent(level.rate)} (${percentRange(level.low, level.high)})`;
       const width = 40 + textWidth(text, TEXT_SIZE, 700);
       if (x > MARGIN && x + width > WIDTH - MARGIN) {
         x = MARGIN;

@@ -3,8 +3,9 @@ import type { PictureInput } from '../verdict/types.ts';
 import { collectionScene } from './collection.ts';
 import { dateAxis } from './dateAxis.ts';
 import { endLabels, endLabelsWidth, placeEndLabels } from './endLabels.ts';
+import { flaggedPoints } from './flaggedPoints.ts';
 import { placeFlagLane, planFlagLane } from './flagLane.ts';
-import { baselineGround, ghostMark, startMark } from './grounds.ts';
+import { baselineGround, ghostMark, splitMark, startMark } from './grounds.ts';
 import { header } from './header.ts';
 import { notes } from './notes.ts';
 import { EMBER, HAIRLINE, LEVEL, MARGIN, QUIET, TEXT_SIZE, WIDTH } from './palette.ts';
@@ -44,6 +45,7 @@ export function layout(input: PictureInput): Scene {
   const limits = placeEndLabels(ends, chart.points.length, frame);
   const ground = baselineGround(chart, frame);
   const start = startMark(input, frame);
+  const split = splitMark(input, frame);
   const ghost = ghostMark(input, chart, frame);
   const slotPx = (frame.right - frame.left) / (range.x[1] - range.x[0]);
 
@@ -87,13 +89,14 @@ export function layout(input: PictureInput): Scene {
     under: [...gridlines, ...ground.strokes],
     band: bandRows(chart),
     levels: levelLines(input, chart),
-    points: pointMarks(chart, flagged, slotPx),
+    points: pointMarks(chart, flaggedPoints(input), slotPx),
     line: slotPx < 3 ? { width: 0.8, opacity: 0.42 } : { width: 1.6, opacity: 0.55 },
     over: [
       floor,
       ...ghost.strokes,
       ...axis.strokes,
       ...start.strokes,
+      ...split,
       ...head.strokes,
       ...limits.strokes,
       ...flags.strokes,
@@ -117,6 +120,7 @@ function movedStretch(input: PictureInput, chart: Chart, flagged: readonly Stret
     to: chart.points.length,
     state: 'standing',
     words,
+    said: longest?.said ?? [since.point, chart.points.length],
     flags,
   };
   return [moved, ...flagged.filter((stretch) => stretch.state !== 'standing')];

@@ -1,5 +1,6 @@
+import type { Day } from '../days.ts';
 import type { PictureInput } from '../verdict/types.ts';
-import { countOf, dateShort, grouped, heldDate } from './figures.ts';
+import { count, countOf, dateShort, heldDate } from './figures.ts';
 import { EMBER, INK, LINE, MARGIN, QUIET, TEXT_SIZE, WIDTH } from './palette.ts';
 import { EXCLUDED_MARK, GHOST_MARK, PASSED_MARK, WATCHING_MARK } from './pointMarks.ts';
 import type { MarkStyle, PlacedMark, PlacedText, Stroke } from './scene.ts';
@@ -16,13 +17,14 @@ interface Note {
 const INDENT = 30;
 const MOST_STRETCHES = 2;
 const MOST_CAUTIONS = 2;
+const GENERAL = /taken to be complete through|finance and legal/i;
 
 /** "next point: 37 of 85 accounts so far, due about 3 July 2025" */
 export function waitingWords(input: PictureInput): string {
   const waiting = input.waiting;
   if (!waiting) return '';
   const due = waiting.on === null ? 'due when enough accounts have started' : `due about ${heldDate(waiting.on)}`;
-  return `next point: ${grouped(waiting.accounts)} of ${countOf(waiting.of, 'account')} so far, ${due}`;
+  return `next point: ${count(waiting.accounts)} of ${countOf(waiting.of, 'account')} so far, ${due}`;
 }
 
 export function immatureWords(input: PictureInput): string {
@@ -30,15 +32,20 @@ export function immatureWords(input: PictureInput): string {
   return `${countOf(input.immature, 'account')} ${input.immature === 1 ? 'is' : 'are'} too young to be counted`;
 }
 
-/** "start could lie anywhere from 3 February to 20 April 2025"; empty when only one start is possible. */
+/** "the start could lie anywhere from 3 Feb 2025 to 20 Apr 2025": from the first start at the first possible point to the last at the last. */
 export function candidateWords(input: PictureInput): string {
   const since = input.verdict.since;
-  if (!since || since.candidates[0] === since.candidates[1]) return '';
-  const [first, last] = since.candidates.map((point) => {
-    const day = input.dates[point - 1]?.firstStart ?? null;
-    return day === null ? `point\u00a0${point}` : dateShort(day);
-  });
-  return `the start could lie anywhere from ${first} to ${last}`;
+  if (!since) return '';
+  const [from, to] = since.candidates;
+  const first = whereWords(input.dates[from - 1]?.firstStart, from);
+  const last = whereWords(input.dates[to - 1]?.lastStart, to);
+  return first === last
+    ? `the start can only lie at ${first}`
+    : `the start could lie anywhere from ${first} to ${last}`;
+}
+
+function whereWords(day: Day | null | undefined, point: number): string {
+  return day === null || day === undefined ? `point\u00a0${point}` : dateShort(day);
 }
 
 function planNotes(input: PictureInput, unlabelled: readonly Stretch[], floor: string): Note[] {
@@ -46,8 +53,8 @@ function planNotes(input: PictureInput, unlabelled: readonly Stretch[], floor: s
   const candidates = candidateWords(input);
   if (input.chart && candidates) notes.push({ text: candidates, color: EMBER, mark: 'bar' });
   for (const stretch of unlabelled.slice(0, MOST_STRETCHES)) {
-    const when = input.dates[stretch.from - 1]?.firstStart ?? null;
-    const where = when === null ? `point\u00a0${stretch.from}` : dateShort(when);
+    const when = input.dates[stretch.said[0] - 1]?.firstStart ?? null;
+    const where = when === null ? `point\u00a0${stretch.said[0]}` : dateShort(when);
     const state =
       stretch.state === 'passed'
         ? (input.flagsExplained ?? 'did not last')
@@ -94,7 +101,9 @@ function planNotes(input: PictureInput, unlabelled: readonly Stretch[], floor: s
 }
 
 function cautionNotes(input: PictureInput): Note[] {
-  const cautions = [...input.verdict.cautions];
+  // What holds of every answer gives way to what holds of this one.
+  const { cautions: all } = input.verdict;
+  const cautions = [...all.filter((text) => !GENERAL.test(text)), ...all.filter((text) => GENERAL.test(text))];
   const baseline = input.chart?.baseline;
   if (baseline?.provisional && !cautions.some((caution) => /provisional/i.test(caution))) {
     const used = baseline.last - baseline.first + 1 - baseline.excluded.length;

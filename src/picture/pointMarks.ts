@@ -2,7 +2,6 @@ import type { Chart } from '../charts/types.ts';
 import type { SignalState } from '../verdict/types.ts';
 import { EMBER, GHOST, INK, PAPER, QUIET } from './palette.ts';
 import type { MarkStyle } from './scene.ts';
-import type { Stretch } from './stretches.ts';
 
 /** A cross on its side, in the unit square Vega scales symbols from. */
 const LEANING_CROSS = 'M-.8,-.55L-.55,-.8L0,-.25L.55,-.8L.8,-.55L.25,0L.8,.55L.55,.8L0,.25L-.55,.8L-.8,.55L-.25,0Z';
@@ -66,16 +65,13 @@ const BY_STATE: Record<SignalState, MarkStyle> = {
 /** The mark of every point: hollow where the usual level was set, full where judged, a diamond where flagged; smaller when crowded. */
 export function pointMarks(
   chart: Chart,
-  marked: readonly Stretch[],
+  marked: ReadonlyMap<number, SignalState>,
   slotPx: number,
 ): (MarkStyle & { x: number; value: number })[] {
-  const state = new Map<number, SignalState>();
-  for (const stretch of [...marked].reverse())
-    for (let i = stretch.from; i <= stretch.to; i++) state.set(i, stretch.state);
   const { baseline } = chart;
   const crowd = Math.min(1, Math.max(0.07, (slotPx / 9) ** 1.3));
   return chart.points.map((point) => {
-    const flagged = state.get(point.index);
+    const flagged = marked.get(point.index);
     const within = point.index >= baseline.first && point.index <= baseline.last;
     const style = flagged
       ? BY_STATE[flagged]

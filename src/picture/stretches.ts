@@ -1,4 +1,5 @@
 import type { Signal, SignalState } from '../verdict/types.ts';
+import { countOf } from './figures.ts';
 
 /** Flags of one state and side whose points run into each other, drawn as one marked stretch. */
 export interface Stretch {
@@ -7,6 +8,8 @@ export interface Stretch {
   readonly state: SignalState;
   /** the flag that covers most of it, in words */
   readonly words: string;
+  /** first and last point of that flag */
+  readonly said: readonly [number, number];
   /** how many flags are behind it */
   readonly flags: number;
 }
@@ -29,7 +32,7 @@ export function stretches(signals: readonly Signal[]): Stretch[] {
   const shifts = signals.filter((signal) => signal.speaks === 'shift');
   for (const signal of [...shifts].sort((a, b) => a.members[0] - b.members[0] || a.members[1] - b.members[1])) {
     const from = signal.members[0];
-    const to = Math.max(signal.members[1], signal.until);
+    const to = endOf(signal);
     const home = merged.find((one) => one.state === signal.state && one.side === signal.side && from <= one.to + 1);
     if (home) {
       home.to = Math.max(home.to, to);
@@ -45,8 +48,19 @@ export function stretches(signals: readonly Signal[]): Stretch[] {
   }
   return merged
     .map(({ from, to, state, flags }) => {
-      const longest = flags.reduce((a, b) => (b.members[1] - b.members[0] > a.members[1] - a.members[0] ? b : a));
-      return { from, to, state, words: longest.words, flags: flags.length };
+      const longest = flags.reduce((a, b) => (endOf(b) - b.members[0] > endOf(a) - a.members[0] ? b : a));
+      const said = [longest.members[0], endOf(longest)] as const;
+      return { from, to, state, words: longest.words, said, flags: flags.length };
     })
     .sort((a, b) => RANK[a.state] - RANK[b.state] || b.to - a.to);
+}
+
+/** " (and 2 more flags)"; empty when there is one. */
+export function moreFlags(stretch: Stretch): string {
+  return stretch.flags > 1 ? ` (and ${countOf(stretch.flags - 1, 'more flag')})` : '';
+}
+
+/** The last point that a flag's words cover: it goes on for as long as its condition held. */
+function endOf(signal: Signal): number {
+  return Math.max(signal.members[1], signal.until);
 }

@@ -85,6 +85,8 @@ export interface PictureInput {
   readonly wouldSee?: Trust['wouldSee'];
   /** why flags that do not stand were raised, when it is known: replaces "did not last" on the picture */
   readonly flagsExplained?: string;
+  /** where the points that should set the usual level fall apart into two levels: after this point */
+  readonly split?: { readonly after: number } | null;
 }
 
 export type { Side };

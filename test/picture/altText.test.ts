@@ -1,7 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { altText } from '../../src/picture/altText.ts';
-import { makeInput } from './inputs.ts';
+import { flag, makeInput } from './inputs.ts';
 import { makings, state } from './states.ts';
 
 const plain = (name: string): string => altText(state(name)).replaceAll('\u00a0', ' ');
@@ -31,6 +31,20 @@ describe('altText', () => {
     expect(text).toContain('Next point: 37 of 85 accounts so far, due about 3 December 2025');
     expect(text).toContain('412 accounts are too young to be counted');
     expect(plain('steady')).toContain('No point is flagged');
+  });
+
+  test('a flag is told with its own points, not with those of its neighbours, and large numbers as the message writes them', () => {
+    const input = makeInput({
+      ...makings.fallen!,
+      signals: [
+        flag(6, [29, 37], 'below', 'standing', 'four of five points clearly below the usual level'),
+        flag(2, [33, 48], 'below', 'standing', '16 points in a row below the usual level'),
+      ],
+    });
+    const text = altText(input).replaceAll('\u00a0', ' ');
+    expect(text).toContain('Flagged, points 33 to 48: 16 points in a row below the usual level (and 1 more flag)');
+    expect(text).toContain('of 5,760 accounts lost');
+    expect(text).toContain('1,240 accounts are too young');
   });
 
   test('the verdict is said once when the headline begins with it', () => {

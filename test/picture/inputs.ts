@@ -43,6 +43,7 @@ export interface Making {
   readonly waiting?: PictureInput['waiting'];
   readonly immature?: number;
   readonly wouldSee?: PictureInput['wouldSee'];
+  readonly split?: PictureInput['split'];
   readonly measure?: string;
   readonly subject?: string;
 }
@@ -171,6 +172,7 @@ export function makeInput(making: Making): PictureInput {
     waiting: making.waiting === undefined ? { accounts: 37, of: 85, on: day('2025-12-03') } : making.waiting,
     immature: making.immature ?? 412,
     ...(making.wouldSee === undefined ? {} : { wouldSee: making.wouldSee }),
+    ...(making.split === undefined ? {} : { split: making.split }),
     measure: making.measure ?? 'lost within 3 months of starting',
     subject: making.subject ?? 'Marrowby Seed Club export, all plans',
     asOf: dated ? start + making.points * every + 120 : null,

@@ -80,6 +80,7 @@ export const makings: Record<string, Making> = {
       'The Orchard plan and the Windowsill plan differ clearly (11 % against 4 %) and are pooled here.',
       'Two sources seem to take turns.',
     ],
+    split: { after: 9 },
     signals: [flag(4, [8, 24], 'both', 'standing', 'fourteen points alternating up and down')],
   },
   'mix-change': {
