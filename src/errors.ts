@@ -19,6 +19,7 @@ export const ERROR_CODES = {
   DATES_UNREADABLE: 'no value in a date column can be read',
   DATES_MIXED: 'some dates read only day-first and others only month-first',
   DATES_AMBIGUOUS: 'the dates read both as day-first and as month-first',
+  AS_OF_TOO_LATE: 'the data-through date lies long after anything in the file',
   ACCOUNTS_NONE: 'no row is left to count',
   // the request
   OPTION_UNKNOWN: 'there is no such option',

@@ -1,6 +1,7 @@
 import type { DuckDBConnection } from '@duckdb/node-api';
 import type { Day } from '../days.ts';
 import { readAmounts } from './amounts.ts';
+import { checkAsOf } from './checkAsOf.ts';
 import type { Columns } from './columns.ts';
 import { type DayCount, dataThrough, ENDS_LOOKED_AT_DAYS, latestSteadyStart } from './dataThrough.ts';
 import type { SettledOrder } from './dateOrder.ts';
@@ -79,7 +80,9 @@ export async function makeAccounts(
     bad === 0
       ? `(SELECT *, ${TRUE_END_SQL} AS true_end FROM ${data})`
       : '(SELECT *, end_day AS true_end FROM judged WHERE reason IS NULL)';
-  const asOf = options.asOf ?? (await inferAsOf(connection, clean, latest, starts));
+  const inferredAsOf = await inferAsOf(connection, clean, latest, starts);
+  const asOf = options.asOf ?? inferredAsOf;
+  checkAsOf(asOf, inferredAsOf);
   const future = total(starts.filter(({ day }) => day > asOf));
   if (future === rows - bad) throw allInFuture(asOf, starts[0]?.day);
   if (future > 0)
@@ -116,6 +119,7 @@ export async function makeAccounts(
     returned: Number(summary.returned),
     mergedRows: rows - bad - future - duplicates - Number(summary.accounts),
     asOf,
+    inferredAsOf,
     asOfSource: options.asOf === undefined ? 'latest-date' : 'given',
     futureEnds: Number(summary.future_ends),
     firstStart: Number(summary.first),

@@ -52,6 +52,8 @@ export interface ReadReport {
   /** rows merged into another row's spell */
   readonly mergedRows: number;
   readonly asOf: Day;
+  /** the data-through date as the file itself suggests it, whatever was given */
+  readonly inferredAsOf: Day;
   /** 'given', or where it was inferred from: 'latest-date' (latest start or end in the file), 'file-column' … */
   readonly asOfSource: string;
   /** true when some date lies after asOf (scheduled cancellations, for instance): told to the user */

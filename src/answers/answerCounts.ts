@@ -39,6 +39,7 @@ export async function answerCounts(question: CountsQuestion): Promise<Answer> {
     waiting: 0,
     immature: 0,
     nextPointOn: null,
+    maturedOn: () => null,
     inflowPerWeek: 0,
     asOf: null,
     asOfInferred: false,

@@ -1,16 +1,17 @@
+import { checkAsOf } from '../accounts/checkAsOf.ts';
 import type { AccountTable } from '../accounts/types.ts';
 import { takeCensus } from '../census/census.ts';
 import { planCensus } from '../census/plan.ts';
 import { tenureInWords } from '../census/tenure.ts';
 import type { Census } from '../census/types.ts';
-import { dayInWords } from '../days.ts';
+import { type Day, dayInWords } from '../days.ts';
 import { EbbError } from '../errors.ts';
 import { drawPicture } from '../picture/picture.ts';
 import type { Question } from '../requests/types.ts';
 import { chartAndJudge } from '../verdict/chartAndJudge.ts';
 import type { VerdictContext } from '../verdict/context.ts';
 import { LEAST_POINTS } from '../verdict/judgement.ts';
-import type { PictureInput, PointDates } from '../verdict/types.ts';
+import type { PictureInput, PointDates, Verdict } from '../verdict/types.ts';
 import { writeVerdict } from '../verdict/verdict.ts';
 import { capitalised, counted } from '../verdict/words/format.ts';
 import { emptyJudgement } from './emptyJudgement.ts';
@@ -36,14 +37,19 @@ export async function answerQuestion(table: AccountTable, question: Question, op
   const begun = clock();
   const { report } = table;
   const asOf = question.asOf ?? report.asOf;
+  checkAsOf(asOf, report.inferredAsOf);
   const settleDays = question.settleDays ?? 0;
   const segment = question.segment === undefined ? undefined : knownSegment(table, question.segment);
   const narrowed = segment === undefined ? {} : { segment };
 
+  // A group is read at the age of all accounts, so that the two figures can be compared.
+  const tenureOfAll =
+    segment === undefined || question.tenure ? undefined : (await planCensus(table, { asOf, settleDays })).tenure;
+  const asked = question.tenure ?? tenureOfAll;
   const plan = await planCensus(table, {
     asOf,
     settleDays,
-    ...(question.tenure ? { tenure: question.tenure } : {}),
+    ...(asked ? { tenure: asked } : {}),
     ...(question.subgroupSize ? { subgroupSize: question.subgroupSize } : {}),
     ...narrowed,
   });
@@ -83,6 +89,7 @@ export async function answerQuestion(table: AccountTable, question: Question, op
     waiting: census.waiting,
     immature: census.immature,
     nextPointOn: census.nextPointOn,
+    maturedOn: (accounts) => maturedOn(census, accounts),
     inflowPerWeek: census.inflowPerWeek,
     asOf,
     asOfInferred: question.asOf === undefined && report.asOfSource !== 'given',
@@ -90,12 +97,18 @@ export async function answerQuestion(table: AccountTable, question: Question, op
     segment: segment ?? null,
     segmentValues: census.segments.map((entry) => entry.segment),
     howChosen: [
-      ...(question.tenure ? [] : [`${capitalised(plan.tenureWhy)}.`]),
+      ...(question.tenure
+        ? []
+        : [
+            tenureOfAll
+              ? `Read at ${tenureInWords(tenureOfAll)}, the age taken for all accounts.`
+              : `${capitalised(plan.tenureWhy)}.`,
+          ]),
       ...(question.subgroupSize ? [] : [`${capitalised(plan.sizeWhy)}.`]),
     ],
-    readCautions: [...caution, ...readCautions(report)],
+    readCautions: [...caution, ...readCautions(report, asOf)],
   };
-  const verdict = writeVerdict(chart, judgement, context);
+  const verdict = withSince(writeVerdict(chart, judgement, context), question.since);
   const chartDone = clock();
 
   const input: PictureInput = {
@@ -103,7 +116,8 @@ export async function answerQuestion(table: AccountTable, question: Question, op
     dates,
     signals: judgement.signals,
     verdict,
-    wouldSee: judgement.trust.wouldSee,
+    // Of a move that the mix explains the chart of all accounts says nothing; the words give what it could hide within the groups.
+    wouldSee: judgement.finding === 'mix-change' ? null : judgement.trust.wouldSee,
     ...(judgement.finding === 'mix-change' ? { flagsExplained: 'explained by the moving mix' } : {}),
     waiting: {
       accounts: census.waiting,
@@ -138,13 +152,32 @@ export async function answerQuestion(table: AccountTable, question: Question, op
   };
 }
 
+/** When somebody asked "since when", and the chart dates the move earlier, it says so. */
+function withSince(verdict: Verdict, since: Day | undefined): Verdict {
+  const start = verdict.since?.start ?? null;
+  if (since === undefined || start === null || start >= since) return verdict;
+  const earlier = `You asked about accounts since ${dayInWords(since)}; the chart itself dates the move earlier, to about ${dayInWords(start)}.`;
+  return { ...verdict, cautions: [earlier, ...verdict.cautions] };
+}
+
+/** Day on which this many accounts will have matured, from those already started. */
+function maturedOn(census: Census, accounts: number): Day | null {
+  let sum = census.matured;
+  for (const { day, accounts: more } of census.maturing) {
+    sum += more;
+    if (sum >= accounts) return day;
+  }
+  return null;
+}
+
 /** The baseline the question fixes, if it does, and what to say when it could not be followed. */
 function chooseBaseline(
   question: Question,
   census: Census,
 ): { baseline: { baselineLast?: number }; caution: readonly string[] } {
   const { since } = question;
-  if (question.baseline !== undefined) return { baseline: { baselineLast: question.baseline }, caution: [] };
+  if (question.baseline !== undefined)
+    return { baseline: { baselineLast: question.baseline }, caution: baselineCaution(question.baseline, census) };
   if (since === undefined) return { baseline: {}, caution: [] };
   const count = census.subgroups.length;
   const before = census.subgroups.filter((subgroup) => subgroup.lastStart < since).length;
@@ -154,6 +187,17 @@ function chooseBaseline(
       ? `No full point has started since ${dayInWords(since)} yet`
       : `Only ${counted(before, 'full point')} lie before ${dayInWords(since)}, too few to set a usual level`;
   return { baseline: {}, caution: [`${why}, so the usual split of the chart was kept.`] };
+}
+
+function baselineCaution(asked: number, census: Census): string[] {
+  const points = census.subgroups.length;
+  if (asked > points) return [`There are only ${counted(points, 'point')}, so all of them set the usual level.`];
+  if (asked < LEAST_POINTS) {
+    return [
+      `A usual level from ${counted(asked, 'point')} is hardly one: it takes ${LEAST_POINTS} at least, and 25 to be firm.`,
+    ];
+  }
+  return [];
 }
 
 function knownSegment(table: AccountTable, wanted: NonNullable<Question['segment']>): string {

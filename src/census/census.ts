@@ -75,6 +75,10 @@ export async function takeCensus(table: AccountTable, request: CensusRequest): P
     waiting,
     immature,
     nextPointOn: completing === undefined ? null : tenurePoint(completing, request.tenure) + request.settleDays,
+    maturing: young.map(({ day, accounts }) => ({
+      day: tenurePoint(day, request.tenure) + request.settleDays,
+      accounts,
+    })),
     inflowPerWeek: await inflow(table, request.segment, maturedUntil, all.at(-1)?.last, starts),
     segments: segmentCounts(segmentNames, finished),
   };

@@ -47,6 +47,8 @@ export interface Census {
   readonly immature: number;
   /** day on which the withheld subgroup will be complete, from accounts already started; null when not enough have started */
   readonly nextPointOn: Day | null;
+  /** accounts too young to be counted, by the day on which they mature; sorted */
+  readonly maturing: readonly { readonly day: Day; readonly accounts: number }[];
   /** matured accounts a week, over the last quarter of a year of matured starts: the inflow that sets waiting times */
   readonly inflowPerWeek: number;
   /** per segment value (at most 12, the rest pooled as 'other'); empty when there is no segment column or the request names one */

@@ -36,6 +36,7 @@ export const reportSchema: z.ZodType<ReadReport> = z.object({
   returned: count,
   mergedRows: count,
   asOf: day,
+  inferredAsOf: day,
   asOfSource: z.string(),
   futureEnds: count,
   firstStart: day,

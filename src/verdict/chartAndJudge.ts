@@ -2,6 +2,7 @@ import type { SegmentCounts } from '../census/types.ts';
 import { recommendedBaseline } from '../charts/baseline.ts';
 import { pChart } from '../charts/kinds/pChart.ts';
 import { pPrimeChart } from '../charts/kinds/pPrimeChart.ts';
+import { LEAST_BEFORE } from '../charts/standing/lastBlock.ts';
 import type { Chart, ChartKind, SubgroupCount } from '../charts/types.ts';
 import { type Judgement, judge, LEAST_POINTS, OVERDISPERSED } from './judgement.ts';
 
@@ -43,14 +44,16 @@ export function chartAndJudge(request: ChartRequest): JudgedChart {
   }
   if (request.baselineLast !== undefined || usual.judgement.finding !== 'unsteady-baseline') return usual;
   const before = usual.judgement.steadiness?.splitAfter ?? 0;
-  if (before < LEAST_POINTS || before >= usual.chart.baseline.last) return usual;
-  const shortened = chartWith(before);
+  const trial = usual.chart.baseline.last >= counts.length;
+  if (before < (trial ? LEAST_BEFORE : LEAST_POINTS) || before >= usual.chart.baseline.last) return usual;
+  // On trial limits the second part of the split reaches the newest point: the split's own calibrated test has told the two apart.
+  const shortened = chartWith(before, trial);
   const { finding } = shortened.judgement;
   return finding === 'risen' || finding === 'fallen' || finding === 'mix-change' ? shortened : usual;
 
-  function chartWith(baselineLast: number): JudgedChart {
+  function chartWith(baselineLast: number, stepProven = false): JudgedChart {
     const chart = KINDS[kind](counts, { baselineLast: Math.min(baselineLast, counts.length), excluded });
-    return { chart, judgement: judge(chart, segments) };
+    return { chart, judgement: judge(chart, segments, stepProven) };
   }
 }
 

@@ -13,6 +13,8 @@ export interface VerdictContext {
   readonly waiting: number;
   readonly immature: number;
   readonly nextPointOn: Day | null;
+  /** day on which this many accounts will have matured, from those already started; null when more must start first */
+  readonly maturedOn: (accounts: number) => Day | null;
   /** matured accounts a week; 0 when unknown */
   readonly inflowPerWeek: number;
   readonly asOf: Day | null;

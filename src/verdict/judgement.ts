@@ -8,7 +8,7 @@ import { smallestDetectable } from '../charts/standing/detectable.ts';
 import { type BlockDesign, LEAST_BEFORE } from '../charts/standing/lastBlock.ts';
 import { type Standing, standingJudge } from '../charts/standing/standing.ts';
 import { type StartCandidates, startCandidates } from '../charts/standing/startCandidates.ts';
-import { standingThreshold } from '../charts/standing/threshold.ts';
+import { LEAST_RATIO, standingThreshold } from '../charts/standing/threshold.ts';
 import { SHIFT_TESTS } from '../charts/tests/nelsonTests.ts';
 import type { Chart, SubgroupCount } from '../charts/types.ts';
 import { type MixReading, readMix } from './mix.ts';
@@ -59,9 +59,11 @@ const NO_TRUST: Trust = {
 
 /**
  * Judges a chart: which flags stand, whether that is a verdict, and how far it can be trusted.
- * @param segments  counts per segment value and point, or empty
+ * @param segments    counts per segment value and point, or empty
+ * @param stepProven  true when the points after the baseline were found to differ by a calibrated test of their own, so that any flagged
+ *                    block stands
  */
-export function judge(chart: Chart, segments: readonly SegmentCounts[] = []): Judgement {
+export function judge(chart: Chart, segments: readonly SegmentCounts[] = [], stepProven = false): Judgement {
   const counts: SubgroupCount[] = chart.points.map(({ accounts, lost }) => ({
     accounts,
     lost,
@@ -115,7 +117,8 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = []): Ju
   const design: BlockDesign = prime ? { ...binomialDesign, correlation: correlationOf(excess, used) } : binomialDesign;
 
   const standing = standingJudge(design)(lost);
-  const threshold = standingThreshold(design, chart.center);
+  const calibrated = standingThreshold(design, chart.center);
+  const threshold = stepProven ? { ...calibrated, ratio: LEAST_RATIO } : calibrated;
   const side = standing.above.score >= standing.below.score ? 'above' : 'below';
   const moved = standing[side].score / shrink > threshold.ratio ? side : null;
   // On trial limits the moved block lies in the baseline itself; the level is what lies before it.

@@ -42,15 +42,15 @@ export function writeVerdict(chart: Chart | null, judgement: Judgement, context:
   const moved = judgement.finding === 'risen' || judgement.finding === 'fallen';
 
   const shiftSignals = judgement.signals.filter((signal) => signal.speaks === 'shift');
-  const standing = shiftSignals.filter((signal) => signal.state === 'standing');
-  const watching = shiftSignals.filter((signal) => signal.state === 'watching');
+  const standing = longestFirst(shiftSignals.filter((signal) => signal.state === 'standing'));
+  const watching = longestFirst(shiftSignals.filter((signal) => signal.state === 'watching'));
   const judgedFrom = chart && chart.baseline.last < chart.points.length ? chart.baseline.last : 0;
   const passed = shiftSignals.filter((signal) => signal.state === 'passed' && signal.point > judgedFrom);
 
   const aboutMix = judgement.finding === 'mix-change' || judgement.finding === 'mix-unclear';
   const evidence: string[] = [
     ...flagSentences(standing, '', context),
-    ...(moved ? sizeSentences({ before, after, difference }) : []),
+    ...(moved ? sizeSentences({ before, after, difference }, [1, sides!.beforeLast], context) : []),
     ...(aboutMix ? mixSentences(judgement, shiftSignals) : watchSentences(watching, passed, context)),
     ...trustSentences(judgement, context, judgement.finding === 'steady'),
     ...(chart ? [countSentence(chart.points.length, context)] : []),
@@ -75,6 +75,11 @@ export function writeVerdict(chart: Chart | null, judgement: Judgement, context:
   };
 }
 
+/** The flag that covers most of the chart says most; it is told first. */
+function longestFirst(signals: readonly Signal[]): Signal[] {
+  return [...signals].sort((a, b) => b.until - b.members[0] - (a.until - a.members[0]));
+}
+
 /** Flags told in words before the rest are only counted. */
 const FLAGS_TOLD = 3;
 
@@ -92,7 +97,7 @@ function flagSentences(
 }
 
 /** Counts before and after the move: the baseline, or on trial limits everything before the start; and everything from the start on. */
-function sidesOf(chart: Chart, first: number): { before: SubgroupCount; after: SubgroupCount } {
+function sidesOf(chart: Chart, first: number): { before: SubgroupCount; after: SubgroupCount; beforeLast: number } {
   const beforeLast = Math.min(chart.baseline.last, first - 1);
   const pool = (from: number, to: number): SubgroupCount => {
     let accounts = 0;
@@ -104,10 +109,7 @@ function sidesOf(chart: Chart, first: number): { before: SubgroupCount; after: S
     }
     return { accounts, lost };
   };
-  return {
-    before: pool(1, beforeLast),
-    after: pool(first, chart.points.length),
-  };
+  return { before: pool(1, beforeLast), after: pool(first, chart.points.length), beforeLast };
 }
 
 function pooledRate(count: SubgroupCount): PooledRate {
@@ -134,7 +136,7 @@ function watchSentences(watching: readonly Signal[], passed: readonly Signal[], 
 function mixSentences(judgement: Judgement, flags: readonly Signal[]): string[] {
   const { pooledDifference, within } = judgement.mix!;
   const sentences = [
-    `The overall rate changed by ${percentagePoints(pooledDifference)} percentage points; comparing each group with itself leaves ${percentagePoints(within.difference)}.`,
+    `The overall rate changed by ${percentagePoints(pooledDifference)} percentage points; comparing each group with itself leaves ${percentagePoints(within.difference)} (95 % interval ${percentagePoints(within.low)} to ${percentagePoints(within.high)}), so a move within the groups of up to about that size could have been missed.`,
   ];
   if (judgement.finding === 'mix-change' && flags.length > 0) {
     sentences.push(

@@ -2,6 +2,7 @@ import { existsSync, readdirSync, statSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
 import { openEngine } from '../../src/accounts/engine.ts';
 import { loadAccounts, writeAccounts } from '../../src/accounts/parquet.ts';
+import { dayFromIso } from '../../src/days.ts';
 import { accountsOf, exportReader } from './exportFile.ts';
 
 const files = exportReader();
@@ -47,6 +48,18 @@ describe('stored accounts', () => {
       files.engine().release(loaded.connection);
       expect(readdirSync(files.engine().folder).filter((name) => /parquet|csv/.test(name))).toEqual([]);
     });
+  });
+
+  it('two workspaces and the command line put the accounts of one day in the same order, but for accounts whose short hashes are equal', async () => {
+    const many = `id,start,end\n${Array.from({ length: 300 }, (_, at) => `k${at},2024-03-01,`).join('\n')}\n`;
+    const upper = async (idKey?: string): Promise<bigint[]> =>
+      (await files.accounts(many, { asOf: dayFromIso('2024-06-30')!, ...(idKey === undefined ? {} : { idKey }) }))
+        .map(({ key }) => key >> 52n)
+        .sort((a, b) => (a < b ? -1 : a > b ? 1 : 0));
+    const plain = await upper();
+    expect(new Set(plain).size).toBeGreaterThan(250);
+    expect(await upper('a')).toEqual(plain);
+    expect(await upper('b')).toEqual(plain);
   });
 
   it('keys are stable for one key and differ between keys', async () => {

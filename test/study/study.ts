@@ -16,7 +16,7 @@ export interface StudyCase {
   readonly outcome: Outcome;
   readonly points: number;
   readonly subgroupSize: number | null;
-  /** whether the point in which the change truly falls is in the candidate set; null unless read as moved where something moved */
+  /** whether the day of the true change lies between the two days printed; null unless read as moved where something moved */
   readonly startInCandidates: boolean | null;
 }
 
@@ -60,10 +60,11 @@ async function runOne(scenario: ScenarioName, seed: number, folder: string): Pro
     const changed = accounts.find((account) => account.shifted);
     let startInCandidates: boolean | null = null;
     if (changed && verdict.since) {
-      const truePoint = dates.findIndex((date) => date.lastStart !== null && date.lastStart >= changed.start) + 1;
+      // As a reader would check it: the day of the change against the two days that the reply prints.
       const [first, last] = verdict.since.candidates;
-      // A change that falls inside a point may show from that point or from the next: the step between points lies at either end of it.
-      startInCandidates = truePoint > 0 && first <= truePoint + 1 && truePoint <= last;
+      const from = dates[first - 1]?.firstStart ?? Number.POSITIVE_INFINITY;
+      const to = dates[last - 1]?.lastStart ?? Number.NEGATIVE_INFINITY;
+      startInCandidates = from <= changed.start && changed.start <= to;
     }
     return {
       scenario,

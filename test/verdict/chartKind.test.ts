@@ -42,3 +42,28 @@ describe('the kind of chart', () => {
     expect(judgement.finding).toBe('risen');
   });
 });
+
+describe('a short chart, whose every point sets the usual level', () => {
+  it('with a clear step at its end reads as moved since the step, not as unable to say', () => {
+    const step = [9, 11, 8, 10, 12, 9, 10, 11, 9, 10, 12, 10, 9, 4, 3, 5, 4, 3, 4, 5, 3].map((lost) => ({
+      accounts: 60,
+      lost,
+    }));
+    const { chart, judgement } = chartAndJudge({ counts: step });
+    expect(judgement.finding).toBe('fallen');
+    expect(chart.baseline.last).toBe(13);
+    expect(chart.baseline.provisional).toBe(true);
+    expect(judgement.start!.candidates).toContain(14);
+  });
+
+  it('with nothing changed reads as moved in at most 5 of 100 cases, the step included', () => {
+    let moved = 0;
+    const histories = 300;
+    for (let seed = 0; seed < histories; seed++) {
+      const { finding } = chartAndJudge({ counts: counts(24, 100, () => 0.08, 0, 1_000 + seed) }).judgement;
+      if (finding === 'risen' || finding === 'fallen') moved++;
+    }
+    // 5 % and three standard errors of 300 histories.
+    expect(moved / histories).toBeLessThan(0.05 + 3 * Math.sqrt((0.05 * 0.95) / histories));
+  });
+});

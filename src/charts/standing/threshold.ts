@@ -18,7 +18,7 @@ export interface Threshold {
 }
 
 /** A ratio below this is no evidence whatever the design (a factor of e in likelihood): the threshold never sinks under it. */
-const LEAST_RATIO = 1;
+export const LEAST_RATIO = 1;
 
 /**
  * Calibrates, by seeded simulation, the ratio at which a flag stands, for this design and rate, with the baseline estimated in every

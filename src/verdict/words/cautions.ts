@@ -7,7 +7,7 @@ import { cutAdvice } from './testWords.ts';
 
 /** The limits of the answer, most particular first, the usual caution last. */
 export function cautions(chart: Chart | null, judgement: Judgement, context: VerdictContext): string[] {
-  const list: string[] = [];
+  const list: string[] = [...context.readCautions];
   if (chart) {
     if (judgement.finding !== 'too-few-points' && chart.baseline.provisional) {
       list.push(
@@ -31,7 +31,7 @@ export function cautions(chart: Chart | null, judgement: Judgement, context: Ver
       );
     }
     const deaf = deafDownward(chart);
-    if (deaf && judgement.finding !== 'no-level') list.push(deaf);
+    if (deaf && judgement.finding !== 'no-level' && judgement.finding !== 'too-few-points') list.push(deaf);
   }
   if (judgement.mix && judgement.finding === 'steady') {
     list.push(
@@ -53,10 +53,9 @@ export function cautions(chart: Chart | null, judgement: Judgement, context: Ver
     if (signal.speaks !== 'cut' || signal.state !== 'watching') continue;
     list.push(`About how the data is cut: ${signal.words}; ${cutAdvice(signal.test as 4 | 7 | 8)}.`);
   }
-  list.push(...context.readCautions);
   if (context.asOf !== null && context.asOfInferred) {
     list.push(
-      `The data is taken to be complete through ${dayInWords(context.asOf)}, the latest date in the file; correct it if it is not, since a wrong date makes young accounts look settled.`,
+      `The data is taken to be complete through ${dayInWords(context.asOf)}, worked out from the file; correct it if it is not, since a wrong date makes young accounts look settled.`,
     );
   }
   if (judgement.finding === 'risen' || judgement.finding === 'fallen') {

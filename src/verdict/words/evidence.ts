@@ -23,11 +23,15 @@ export function pooled(rate: PooledRate): string {
 }
 
 /** How big a move was, with its uncertainty and the reason to say "about". */
-export function sizeSentences(verdict: Pick<Verdict, 'before' | 'after' | 'difference'>): string[] {
+export function sizeSentences(
+  verdict: Pick<Verdict, 'before' | 'after' | 'difference'>,
+  beforePoints: readonly [number, number],
+  context: VerdictContext,
+): string[] {
   const { before, after, difference } = verdict;
   if (!before || !after || !difference) return [];
   return [
-    `Before: ${pooled(before)}. Since then: ${pooled(after)}.`,
+    `Usual level, from ${stretch(...beforePoints, context)}: ${pooled(before)}. Since then: ${pooled(after)}.`,
     `The difference is about ${percentagePoints(difference.estimate)} percentage points (95 % interval ${percentagePoints(difference.low)} to ${percentagePoints(difference.high)}). It was noticed because it stood out, so the lasting change may be somewhat smaller.`,
   ];
 }
@@ -47,8 +51,8 @@ export function trustSentences(judgement: Judgement, context: VerdictContext, qu
     ].filter((part) => part !== null);
     sentences.push(
       parts.length > 0
-        ? `What could have been missed: ${parts.join(', or ')}, ${since}, would by now have been reported with ${Math.round(chance * 100)} % chance; anything smaller could be there unseen.`
-        : 'What could have been missed: at this size not even a large move would be likely to have been reported by now.',
+        ? `${capitalised(parts.join(', or '))}, ${since}, would by now have been reported with ${Math.round(chance * 100)} % chance; anything smaller could have been missed.`
+        : 'At this size not even a large move would be likely to have been reported by now: any move could have been missed.',
     );
     if (parts.length === 1 && fall === null) {
       sentences.push('With points this small, a fall of any size could have been missed.');

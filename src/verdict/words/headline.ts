@@ -35,7 +35,7 @@ export function headline(
   switch (judgement.finding) {
     case 'risen':
     case 'fallen':
-      return `Churn has ${judgement.finding}${whose(context)}: about ${percent(facts.after!.rate)} are ${lostBy(context)}${since}, ${judgement.finding === 'risen' ? 'up' : 'down'} from ${percent(facts.before!.rate)} before.`;
+      return `Churn has ${judgement.finding}${whose(context)}: about ${percent(facts.after!.rate)} are ${lostBy(context)}${since}, ${judgement.finding === 'risen' ? 'up' : 'down'} from the usual ${percent(facts.before!.rate)}.`;
     case 'steady': {
       const watching = judgement.signals.some((signal) => signal.state === 'watching' && signal.speaks === 'shift');
       return `Churn is steady${whose(context)}: the usual ${percent(facts.center!)} are ${lostBy(context)}${watching ? ', with one thing to watch' : ''}.`;
@@ -70,5 +70,9 @@ function tooEarly(context: VerdictContext): string {
     return `Too early to say whether churn has moved: ${counted(have, 'point')}, and at least ${LEAST_POINTS} are needed.`;
   }
   const needed = stillNeeded(context);
-  return `Too early to say whether churn has moved${whose(context)}: only ${counted(context.matured, 'account')} have had ${context.tenure} to leave or stay; about ${count(needed ?? 0)} more are needed.`;
+  const have =
+    context.matured === 0
+      ? `no account has had ${context.tenure} to leave or stay`
+      : `only ${counted(context.matured, 'account')} ${context.matured === 1 ? 'has' : 'have'} had ${context.tenure} to leave or stay`;
+  return `Too early to say whether churn has moved${whose(context)}: ${have}; about ${count(needed ?? 0)} more are needed.`;
 }

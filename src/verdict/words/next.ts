@@ -70,8 +70,8 @@ export function nextSteps(judgement: Judgement, context: VerdictContext, since: 
 
 function candidateDates(since: Since, context: VerdictContext): string {
   const from = context.dates[since.candidates[0] - 1]?.firstStart ?? null;
-  const to = context.dates[since.candidates[1] - 1]?.firstStart ?? null;
-  if (from === null || to === null || from === to) return '';
+  const to = context.dates[since.candidates[1] - 1]?.lastStart ?? null;
+  if (from === null || to === null) return '';
   return ` (anything from ${dayInWords(from)} to ${dayInWords(to)} fits, with about 90 % confidence)`;
 }
 
@@ -80,18 +80,28 @@ function splitDate(judgement: Judgement, context: VerdictContext): string {
   return day === null ? '' : ` (accounts starting from about ${dayInWords(day)})`;
 }
 
+/** A forecast further off than this is no help to anybody. */
+const FARTHEST_DAYS = 5 * 365;
+
 function tooEarlySteps(context: VerdictContext): string[] {
   const needed = stillNeeded(context);
   if (context.tenure === null || needed === null) return ['Add more points, in time order.'];
-  const steps: string[] = [];
-  if (context.inflowPerWeek > 0 && context.asOf !== null) {
-    const weeks = needed / context.inflowPerWeek;
-    steps.push(
-      `At the recent pace of about ${counted(Math.max(1, context.inflowPerWeek), 'account')} a week reaching ${context.tenure}, that is around ${dayInWords(Math.round(context.asOf + weeks * 7))}.`,
-    );
-  }
-  steps.push(
-    'Until then any percentage of these accounts mostly says how young they are. An earlier tenure point, such as 1 month, can be answered sooner.',
-  );
-  return steps;
+  const when = enoughOn(needed, context);
+  return [
+    when,
+    `Until then any percentage of these accounts mostly says how young they are.${
+      context.tenure === '1 month' ? '' : ' An earlier tenure point, such as 1 month, can be answered sooner.'
+    }`,
+  ];
+}
+
+/** When enough accounts will have matured: known where they have started already, else from the recent pace. */
+function enoughOn(needed: number, context: VerdictContext): string {
+  const day = context.maturedOn(context.matured + needed);
+  if (day !== null) return `The accounts that have started already will be enough on ${dayInWords(day)}.`;
+  if (context.inflowPerWeek <= 0 || context.asOf === null) return 'More accounts must start before it can be answered.';
+  const days = (needed / context.inflowPerWeek) * 7;
+  if (days > FARTHEST_DAYS)
+    return 'At the recent pace of new accounts it cannot be answered within five years: ask with fewer accounts a point, or at an earlier tenure point.';
+  return `At the recent pace of about ${counted(Math.max(1, context.inflowPerWeek), 'account')} a week reaching ${context.tenure}, that is around ${dayInWords(Math.round(context.asOf + days))}.`;
 }

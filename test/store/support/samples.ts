@@ -7,6 +7,7 @@ export const REPORT: ReadReport = {
   returned: 12,
   mergedRows: 22,
   asOf: 20_269,
+  inferredAsOf: 20_269,
   asOfSource: 'latest-date',
   futureEnds: 1,
   firstStart: 19_000,
