@@ -45,7 +45,7 @@ describe('the kind of chart', () => {
 
 describe('a short chart, whose every point sets the usual level', () => {
   it('with a clear step at its end reads as moved since the step, not as unable to say', () => {
-    const step = [9, 11, 8, 10, 12, 9, 10, 11, 9, 10, 12, 10, 9, 4, 3, 5, 4, 3, 4, 5, 3].map((lost) => ({
+    const step = [14, 14, 6, 9, 10, 8, 12, 10, 7, 8, 10, 10, 12, 7, 6, 7, 6, 4, 5, 7, 5].map((lost) => ({
       accounts: 60,
       lost,
     }));
