@@ -56,6 +56,7 @@ export async function answerCounts(question: CountsQuestion): Promise<Answer> {
     signals: judgement.signals,
     verdict,
     wouldSee: judgement.trust.wouldSee,
+    split: judgement.finding === 'unsteady-baseline' ? { after: judgement.steadiness!.splitAfter } : null,
     ...(judgement.finding === 'mix-change' ? { flagsExplained: 'explained by the moving mix' } : {}),
     waiting: null,
     immature: 0,

@@ -118,6 +118,7 @@ export async function answerQuestion(table: AccountTable, question: Question, op
     verdict,
     // Of a move that the mix explains the chart of all accounts says nothing; the words give what it could hide within the groups.
     wouldSee: judgement.finding === 'mix-change' ? null : judgement.trust.wouldSee,
+    split: judgement.finding === 'unsteady-baseline' ? { after: judgement.steadiness!.splitAfter } : null,
     ...(judgement.finding === 'mix-change' ? { flagsExplained: 'explained by the moving mix' } : {}),
     waiting: {
       accounts: census.waiting,

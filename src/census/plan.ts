@@ -154,7 +154,7 @@ export function recommendSize(matured: number, sizes: CensusPlan['sizes']): { su
   if (size === sizes.positiveLowerLimit) {
     return {
       subgroupSize: size,
-      why: `${count(size)} accounts a point: large enough that a single very good point can show`,
+      why: `${count(size)} accounts a point: about the size at which a single very low point begins to stand out`,
     };
   }
   if (size === sizes.seesHalving) {
@@ -163,7 +163,7 @@ export function recommendSize(matured: number, sizes: CensusPlan['sizes']): { su
       why: `${count(size)} accounts a point: churn cut by half would show within about ${SOON_POINTS} points`,
     };
   }
-  const larger = `; ${count(sizes.positiveLowerLimit)} would let a single very good point show, but leaves only ${points(sizes.positiveLowerLimit)} points`;
+  const larger = `; ${count(sizes.positiveLowerLimit)} would let a single very low point stand out, but there would be too few points`;
   return {
     subgroupSize: size,
     why: `${count(size)} accounts a point: about five losses each, the least that can be judged${larger}`,

@@ -5,7 +5,7 @@ import type { VerdictContext } from './context.ts';
 import type { Finding, Judgement } from './judgement.ts';
 import type { Outcome, PooledRate, Signal, Since, Verdict } from './types.ts';
 import { cautions } from './words/cautions.ts';
-import { countSentence, signalSentence, sizeSentences, trustSentences } from './words/evidence.ts';
+import { countSentence, pooled, signalSentence, sizeSentences, stretch, trustSentences } from './words/evidence.ts';
 import { capitalised, counted, percentagePoints } from './words/format.ts';
 import { headline } from './words/headline.ts';
 import { nextSteps } from './words/next.ts';
@@ -51,6 +51,9 @@ export function writeVerdict(chart: Chart | null, judgement: Judgement, context:
   const evidence: string[] = [
     ...flagSentences(standing, '', context),
     ...(moved ? sizeSentences({ before, after, difference }, [1, sides!.beforeLast], context) : []),
+    ...(judgement.finding === 'unsteady-baseline' && chart
+      ? [splitSentence(chart, judgement.steadiness!.splitAfter, context)]
+      : []),
     ...(aboutMix ? mixSentences(judgement, shiftSignals) : watchSentences(watching, passed, context)),
     ...trustSentences(judgement, context, judgement.finding === 'steady'),
     ...(chart ? [countSentence(chart.points.length, context)] : []),
@@ -99,17 +102,19 @@ function flagSentences(
 /** Counts before and after the move: the baseline, or on trial limits everything before the start; and everything from the start on. */
 function sidesOf(chart: Chart, first: number): { before: SubgroupCount; after: SubgroupCount; beforeLast: number } {
   const beforeLast = Math.min(chart.baseline.last, first - 1);
-  const pool = (from: number, to: number): SubgroupCount => {
-    let accounts = 0;
-    let lost = 0;
-    for (const point of chart.points) {
-      if (point.index < from || point.index > to || chart.baseline.excluded.includes(point.index)) continue;
-      accounts += point.accounts;
-      lost += point.lost;
-    }
-    return { accounts, lost };
-  };
+  const pool = (from: number, to: number): SubgroupCount => poolPoints(chart, from, to);
   return { before: pool(1, beforeLast), after: pool(first, chart.points.length), beforeLast };
+}
+
+function poolPoints(chart: Chart, from: number, to: number): SubgroupCount {
+  let accounts = 0;
+  let lost = 0;
+  for (const point of chart.points) {
+    if (point.index < from || point.index > to || chart.baseline.excluded.includes(point.index)) continue;
+    accounts += point.accounts;
+    lost += point.lost;
+  }
+  return { accounts, lost };
 }
 
 function pooledRate(count: SubgroupCount): PooledRate {
@@ -131,6 +136,13 @@ function watchSentences(watching: readonly Signal[], passed: readonly Signal[], 
       : []),
     ...flagSentences(passed.slice(-FLAGS_TOLD), 'Did not last: ', context, passed.length),
   ];
+}
+
+/** The two levels of a baseline that is not one: what can be said even where the question cannot be answered. */
+function splitSentence(chart: Chart, after: number, context: VerdictContext): string {
+  const last = chart.baseline.last;
+  const pool = (from: number, to: number): PooledRate => pooledRate(poolPoints(chart, from, to));
+  return `${capitalised(stretch(1, after, context))}: ${pooled(pool(1, after))}. ${capitalised(stretch(after + 1, last, context))}: ${pooled(pool(after + 1, last))}.`;
 }
 
 function mixSentences(judgement: Judgement, flags: readonly Signal[]): string[] {

@@ -37,7 +37,11 @@ export function sizeSentences(
 }
 
 /** What could have been missed, and how often a chart like this cries wolf. */
+/** Findings about which the chart's own false-alarm figures say something; where it cannot say, they would only mislead. */
+const ANSWERED: ReadonlySet<Judgement['finding']> = new Set(['risen', 'fallen', 'steady', 'mix-change']);
+
 export function trustSentences(judgement: Judgement, context: VerdictContext, quiet: boolean): string[] {
+  if (!ANSWERED.has(judgement.finding)) return [];
   const { trust } = judgement;
   const sentences: string[] = [];
   if (quiet && trust.wouldSee) {
