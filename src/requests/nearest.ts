@@ -11,7 +11,7 @@ const WINDOWS = set(
 
 const onePlan = (context: RequestContext): string =>
   context.segments.length > 0
-    ? `I can look at one ${context.segmentColumn ?? 'group'} at a time: ${shortList(context.segments)}.`
+    ? `I look at groups one at a time. Name one ${context.segmentColumn ?? 'group'} in the question: ${shortList(context.segments)}.`
     : 'This export has no column that tells groups apart, so I can only look at all accounts together.';
 
 /** What is often asked for and not there yet, with the nearest thing that is. The first row with a word of the piece wins. */
@@ -69,6 +69,10 @@ export function nearestTo(words: readonly string[], context: RequestContext): st
     context.segments.length > 0 ? `, for one ${context.segmentColumn ?? 'group'} (${shortList(context.segments)})` : '';
   return `I can say whether churn has moved, at an age such as “at 6 months”${segments}, or since a start date.`;
 }
+
+/** For one month or quarter: why it has no churn of its own here. */
+export const nearestPeriod =
+  'The churn of a single month cannot be read: accounts are counted at one and the same age, in order of when they started, and the newest are too young to count. The last points of the chart are the newest there is to know; to judge from some start date on, say it, such as “since 1 March 2025”.';
 
 /** The nearest thing for a group that was named and is not in the data. */
 export const nearestSegment = onePlan;

@@ -1,13 +1,18 @@
 const list = (words: string): ReadonlySet<string> => new Set(words.split(/\s+/).filter(Boolean));
 
+/** Words that ask whether it moved. */
+export const MOVING = list(`
+  moved move moves moving movement change changes changed changing shift shifted up down rise rises risen rising rose increase
+  increased increasing fall falls fallen falling fell drop dropped dropping decrease decreased decreasing higher lower worse better
+  worsened improved improve improving steady more fewer less doubled halved real significant significantly noise chance`);
+
 /** Words that say the question is about churn and whether it moved. */
-export const ASKING = list(`
-  churn churns churned churning attrition retention moved move moves moving movement change changes changed changing shift shifted
-  lose loses losing lost loss losses leave leaves leaving left quit quitting cancel cancels cancelled canceled cancelling canceling
-  cancellation cancellations up down rise rises risen rising rose increase increased increasing fall falls fallen falling fell drop
-  dropped dropping decrease decreased decreasing higher lower worse better worsened improved improve improving steady verdict chart
-  picture more fewer less ask again stay staying stayed
-  doubled halved real significant significantly noise chance`);
+export const ASKING: ReadonlySet<string> = new Set([
+  ...MOVING,
+  ...list(`
+  churn churns churned churning attrition retention lose loses losing lost loss losses leave leaves leaving left quit quitting cancel
+  cancels cancelled canceled cancelling canceling cancellation cancellations verdict chart picture ask again stay staying stayed`),
+]);
 
 /** Words that carry no meaning for the grammar. */
 export const NOISE = list(`
@@ -18,7 +23,7 @@ export const NOISE = list(`
   client clients logo rate rates level usual figure figures number numbers percentage percent question tell show give check look see
   know think want like let's let what what's how about whether any anything some ever now today currently still yet really actually
   just only recently lately much many early first point points among started starting start starts joined who've
-  before set statistically problem our's new since plan tier data through read late settle days go going gone went get getting got out off right ok okay well s t`);
+  before set statistically problem our's new since plan tier data through read late settle judge judged judging against days go going gone went get getting got out off right ok okay well s t`);
 
 /** Words that may stand around a segment value: "the Orchard plan". */
 export const SEGMENT_WORDS = list(

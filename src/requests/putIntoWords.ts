@@ -21,7 +21,7 @@ export function putIntoWords(request: Request): string {
     ' moved',
     segment &&
       (segment.column === undefined ? ` for “${segment.value}”` : ` where ${segment.column} is “${segment.value}”`),
-    since !== undefined && `, among accounts that started since ${dayInWords(since)}`,
+    since !== undefined && `, judging accounts that started from ${dayInWords(since)} on against those before`,
     subgroupSize !== undefined && `, in subgroups of ${subgroupSize}`,
     baseline !== undefined && `, with a baseline of ${baseline} points`,
     settleDays !== undefined && `, allowing ${settleDays} days for late cancellations`,

@@ -27,7 +27,7 @@ export type Request =
 
 export interface Understanding {
   readonly request: Request;
-  /** the request put back into words, complete: "has churn at 6 months moved for Orchard, among accounts that started since 1 March 2025?" */
+  /** the request put back into words, complete: "has churn at 6 months moved for “Orchard”, judging accounts that started from 1 March 2025 on against those before?" */
   readonly understood: string;
   /** pieces of the sentence that found no use, each with the nearest thing that can be done */
   readonly notUnderstood: readonly { readonly text: string; readonly nearest: string }[];

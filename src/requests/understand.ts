@@ -4,6 +4,7 @@ import { asOfPhrase, sincePhrase } from './datePhrases.ts';
 import { isNoise, leftovers } from './leftovers.ts';
 import { ASKING } from './noise.ts';
 import { putIntoWords } from './putIntoWords.ts';
+import { ratePhrase } from './ratePhrase.ts';
 import { segmentPhrase } from './segmentPhrase.ts';
 import { tenurePhrase } from './tenurePhrase.ts';
 import { type Token, tokens } from './tokens.ts';
@@ -13,6 +14,8 @@ type Found = { readonly from: number; readonly to: number };
 type Draft = { -readonly [K in keyof Question]: Question[K] };
 type Pieces = Understanding['notUnderstood'];
 
+const ABOUT_RATE =
+  'I say whether the rate has moved, and that is the question answered here; the usual rate stands in the reply.';
 const LARGEST_COUNT = 1_000_000;
 
 /**
@@ -33,8 +36,13 @@ export function understand(text: string, context: RequestContext): Understanding
 
   const problems: { text: string; nearest: string }[] = [];
   const request = question(sentence, list, context, problems);
-  const notUnderstood: Pieces = [...problems, ...leftovers(sentence, list, context)];
   const asksNothing = list.length > 0 && !list.some((token) => token.used || ASKING.has(token.text));
+  const rate = asksNothing ? undefined : ratePhrase(list);
+  if (rate) {
+    problems.push({ text: sentence.slice(list[rate.from]!.from, list[rate.to - 1]!.to), nearest: ABOUT_RATE });
+    for (const token of list.slice(rate.from, rate.from + 2)) token.used = true;
+  }
+  const notUnderstood: Pieces = [...problems, ...leftovers(sentence, list, context, request.segment !== undefined)];
   // "Thank you" or "why?" alone is no question about churn; a verdict nobody asked for would be noise.
   const settled: Request = asksNothing ? { kind: 'help' } : request;
   return { request: settled, understood: putIntoWords(settled), notUnderstood };

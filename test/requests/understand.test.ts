@@ -114,7 +114,22 @@ describe('other requests', () => {
 
 describe('words that find no use', () => {
   it.each([
-    ['has churn moved by country', 'by country', /one plan at a time: Windowsill, Allotment, Orchard/],
+    ['has churn moved by country', 'by country', /one at a time. Name one plan .*: Windowsill, Allotment, Orchard/],
+    ['churn by plan', 'by plan', /one at a time. Name one plan .*: Windowsill, Allotment, Orchard/],
+    ['has churn moved by plan since 2025', 'by plan', /one at a time/],
+    ['churn per tier?', 'per tier', /one at a time/],
+    [
+      'what is our churn rate?',
+      'what is our churn rate',
+      /whether the rate has moved.*question answered here.*usual rate/,
+    ],
+    ['how many customers did we lose', 'how many customers did we lose', /question answered here/],
+    ["what's the Orchard churn", "what's the Orchard churn", /question answered here/],
+    ['how high is churn', 'how high is churn', /question answered here/],
+    ['churn rate at 6 months', 'churn rate', /question answered here/],
+    ['is churn up this month?', 'this month', /single month cannot be read.*one and the same age/],
+    ['did churn rise last quarter', 'last quarter', /single month cannot be read/],
+    ['did churn rise in June', 'in June', /single month cannot be read/],
     ['why did churn rise', 'why', /not why/],
     ['forecast churn', 'forecast', /do not forecast/],
     ['who churned', 'who', /never name/],
@@ -131,6 +146,13 @@ describe('words that find no use', () => {
     expect(found.notUnderstood.map((one) => one.text)).toEqual([piece]);
     expect(found.notUnderstood[0]!.nearest).toMatch(nearest);
   });
+
+  it.each(['has churn moved by plan Orchard', 'has the churn rate moved', 'has churn moved since this month'])(
+    '%s: leaves nothing over',
+    (text) => {
+      asks(text);
+    },
+  );
 
   it('says that there are no groups when the export has none', () => {
     const found = understand('has churn moved by country', { ...context, segments: [] });
@@ -153,7 +175,7 @@ describe('put back into words', () => {
       since: day('2025-03-01'),
     };
     expect(putIntoWords(request)).toBe(
-      'has churn at 6 months moved for “Orchard”, among accounts that started since 1 March 2025?',
+      'has churn at 6 months moved for “Orchard”, judging accounts that started from 1 March 2025 on against those before?',
     );
   });
 
