@@ -174,15 +174,22 @@ function columnNamed(headers: readonly string[], name: string, role: ColumnRole)
   const loose = headerWords(name).join(' ');
   const matches = headers.flatMap((header, at) => (headerWords(header).join(' ') === loose ? [at] : []));
   if (matches.length === 1 && matches[0] !== undefined) return matches[0];
-  const nearest = [...headers].sort(
-    (a, b) => distance(a.toLowerCase(), name.toLowerCase()) - distance(b.toLowerCase(), name.toLowerCase()),
-  )[0];
+  const nearest = nearestHeader(headers, name);
   throw new EbbError(
     'COLUMN_UNKNOWN',
     `there is no column "${shorten(name)}" for the ${role}; the columns are: ${shorten(headers.join(', '), 300)}`,
-    `Did you mean "${nearest ?? ''}"?`,
+    nearest === undefined ? 'Name one of these columns as it is written there.' : `Did you mean "${nearest}"?`,
     { detail: { role, name, nearest, headers } },
   );
+}
+
+/** A header that the name was probably meant to be: at most two slips away and mostly the same, or with a word in common. */
+function nearestHeader(headers: readonly string[], name: string): string | undefined {
+  const away = (header: string): number => distance(header.toLowerCase(), name.toLowerCase());
+  const [nearest] = headers.toSorted((a, b) => away(a) - away(b));
+  if (nearest !== undefined && away(nearest) <= Math.min(2, name.length / 2)) return nearest;
+  const words = new Set(headerWords(name));
+  return headers.find((header) => headerWords(header).some((word) => words.has(word)));
 }
 
 /** Edits (insert, delete, replace a character) from one text to the other. */

@@ -8,14 +8,14 @@ export const REASONS = {
   'total-line': 'the line is a total, not an account',
   'id-missing': 'the row names no account',
   internal: 'the account is marked as a test or internal one',
-  trial: 'a trial that never paid',
+  trial: 'the account is a trial that never paid',
   'start-missing': 'there is no start date',
   'start-unreadable': 'the start date cannot be read',
   'end-unreadable': 'the end date cannot be read',
-  'end-missing': 'the status says that it ended, but there is no end date',
+  'end-missing': 'the status says that the account ended, but there is no end date',
   'end-before-start': 'the end date lies before the start date',
-  'zero-length': 'it ended on the day it started',
-  'future-start': 'it starts after the data-through date',
+  'zero-length': 'the account ended on the day it started',
+  'future-start': 'the account starts after the data-through date',
   duplicate: 'the row repeats another row exactly',
 } as const;
 

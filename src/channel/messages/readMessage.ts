@@ -14,7 +14,7 @@ export function readMessage(report: ReadReport, name: string, target: MendTarget
   const opening = first.replace(/^Read /, `${lead}: `);
   const segments = segmentLine(report);
   const examples = report.rejected
-    .flatMap((entry) => entry.examples.slice(0, 1))
+    .flatMap((entry) => entry.examples.filter((one) => one.value.trim() !== '').slice(0, 1))
     .slice(0, 3)
     .map((one) => `line ${one.line} ${code(one.value, 40)}`);
   const lines = [

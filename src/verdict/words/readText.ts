@@ -1,6 +1,6 @@
 import type { ReadReport } from '../../accounts/types.ts';
 import { dayInWords } from '../../days.ts';
-import { count, counted } from './format.ts';
+import { counted } from './format.ts';
 
 const ORDER_WORDS = {
   iso: 'year first',
@@ -16,7 +16,7 @@ export function readText(report: ReadReport, name: string): string[] {
   const lines = [
     `Read ${name}: ${counted(report.rows, 'row')}, ${counted(report.accounts, 'account')}, started ${dayInWords(report.firstStart)} to ${dayInWords(report.lastStart)}.`,
     `Columns: ${roles}. Dates read ${ORDER_WORDS[report.dates]}.`,
-    `Data complete through ${dayInWords(report.asOf)}${report.asOfSource === 'given' ? ' (as you said)' : ' (the latest date in the file)'}.`,
+    `Data complete through ${dayInWords(report.asOf)}${asOfWhy(report)}.`,
   ];
   if (report.mergedRows > 0)
     lines.push(`${counted(report.mergedRows, 'row')} joined to another row of the same account.`);
@@ -25,7 +25,15 @@ export function readText(report: ReadReport, name: string): string[] {
   if (report.futureEnds > 0)
     lines.push(`${counted(report.futureEnds, 'end')} dated after that day: still customers until then.`);
   for (const entry of report.rejected) {
-    lines.push(`Not used: ${counted(entry.rows, 'row')}, ${entry.reason} (first on line ${count(entry.firstLine)}).`);
+    lines.push(
+      `Not used, ${counted(entry.rows, 'row')}: ${entry.reason} (${entry.rows === 1 ? '' : 'first on '}line ${entry.firstLine}).`,
+    );
   }
   return lines;
+}
+
+/** Where the data-through date comes from. */
+function asOfWhy({ asOf, asOfSource, lastStart }: ReadReport): string {
+  if (asOfSource === 'given') return ' (as you said)';
+  return ` (worked out from the file: its last start${asOf > lastStart ? ' or end' : ''})`;
 }
