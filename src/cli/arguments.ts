@@ -27,6 +27,8 @@ export interface CliOptions {
   readonly sizes?: string;
 }
 
+export type Command = 'ask' | 'chart';
+
 const KNOWN = {
   'as-of': { type: 'string' },
   tenure: { type: 'string' },
@@ -46,6 +48,18 @@ const KNOWN = {
   version: { type: 'boolean' },
 } as const;
 
+/** Options that only one command has a use for. */
+const ONLY: Readonly<Record<Command, readonly string[]>> = {
+  ask: ['as-of', 'tenure', 'subgroup-size', 'segment', 'by', 'columns', 'dates'],
+  chart: ['counts', 'sizes'],
+};
+
+/** Names of the options a command has a use for. */
+export function optionsOf(command: Command): string[] {
+  const others = ONLY[command === 'ask' ? 'chart' : 'ask'];
+  return Object.keys(KNOWN).filter((name) => !others.includes(name));
+}
+
 const ROLES: readonly ColumnRole[] = ['id', 'start', 'end', 'segment', 'amount'];
 const CHARTS: readonly (ChartKind | 'auto')[] = ['auto', 'p', 'p-prime'];
 const ORDERS: readonly DateOrder[] = ['iso', 'dmy', 'mdy'];
@@ -54,8 +68,16 @@ const ORDERS: readonly DateOrder[] = ['iso', 'dmy', 'mdy'];
  * Reads the words after the command.
  * @throws EbbError OPTION_UNKNOWN, OPTION_INVALID with the option and how to mend it
  */
-export function readArguments(args: readonly string[]): CliOptions {
-  const { values, positionals } = parse(args);
+export function readArguments(command: Command, args: readonly string[]): CliOptions {
+  const { values, positionals } = parse(command, args);
+  const lost = command === 'ask' ? ONLY.chart.find((name) => name in values) : undefined;
+  if (lost !== undefined) {
+    throw new EbbError(
+      'OPTION_UNKNOWN',
+      `ask has no option --${lost}`,
+      'Ready counts are charted by: ebb chart --counts "12,15,8" --sizes 50',
+    );
+  }
   onlyChoice('by', values.by, ['start'], ['renewal', 'calendar']);
   onlyChoice('chart', values.chart, CHARTS, ['g', 't', 'individuals', 'ewma', 'cusum']);
   const chart = CHARTS.find((kind) => kind === values.chart);
@@ -84,7 +106,7 @@ export function readArguments(args: readonly string[]): CliOptions {
   };
 }
 
-function parse(args: readonly string[]) {
+function parse(command: Command, args: readonly string[]) {
   try {
     return parseArgs({
       args: [...args],
@@ -99,7 +121,7 @@ function parse(args: readonly string[]) {
       throw new EbbError(
         'OPTION_UNKNOWN',
         `there is no option ${unknown}`,
-        `The options are ${Object.keys(KNOWN)
+        `The options of ${command} are ${optionsOf(command)
           .map((name) => `--${name}`)
           .join(', ')}.`,
       );

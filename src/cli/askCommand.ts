@@ -5,10 +5,12 @@ import type { ReadReport } from '../accounts/types.ts';
 import { answerQuestion } from '../answers/answerQuestion.ts';
 import { EbbError } from '../errors.ts';
 import type { Question, Request, Understanding } from '../requests/types.ts';
+import { notUsedLines, understoodLines } from '../requests/understoodLines.ts';
 import { readText } from '../verdict/words/readText.ts';
 import { answerText } from './answerText.ts';
 import type { CliOptions } from './arguments.ts';
 import { contractJson, pointsCsv } from './contractJson.ts';
+import { HELP } from './help.ts';
 import { progressBar } from './progressBar.ts';
 import type { CliSurroundings } from './types.ts';
 import { writeOutput } from './writeOutput.ts';
@@ -39,9 +41,10 @@ export async function askCommand(options: CliOptions, around: CliSurroundings): 
     const request: Request = understanding?.request ?? { kind: 'ask' };
     const name = basename(file);
     if (request.kind !== 'ask') {
-      around.stdout(
-        `${request.kind === 'data' ? readText(table.report, name).join('\n') : understanding!.understood}\n`,
-      );
+      const { understood, notUnderstood } = understanding!;
+      const read = request.kind === 'data' ? readText(table.report, name) : null;
+      if (options.json) around.stdout(`${JSON.stringify({ understood, notUnderstood, read })}\n`);
+      else around.stdout(read ? `${read.join('\n')}\n` : [...notUsedLines(notUnderstood), HELP].join('\n'));
       return;
     }
     const answer = await answerQuestion(table, withOptions(request, options), {
@@ -56,7 +59,7 @@ export async function askCommand(options: CliOptions, around: CliSurroundings): 
       around.stdout(
         `${JSON.stringify({ ...contractJson(answer), understood: understanding?.understood ?? null, notUnderstood: understanding?.notUnderstood ?? [] })}\n`,
       );
-    else around.stdout(answerText(answer, name, understanding ? understandingLines(understanding) : []));
+    else around.stdout(answerText(answer, name, understanding ? understoodLines(understanding) : []));
   } finally {
     await engine.close();
   }
@@ -83,11 +86,4 @@ async function understandWords(text: string, report: ReadReport): Promise<Unders
     segments: report.segments.map((entry) => entry.value),
     ...(report.columns.segment === undefined ? {} : { segmentColumn: report.columns.segment }),
   });
-}
-
-function understandingLines({ understood, notUnderstood }: Understanding): string[] {
-  return [
-    `I understood: ${understood}`,
-    ...notUnderstood.map(({ text, nearest }) => `I did not understand "${text}". ${nearest}`),
-  ];
 }

@@ -1,31 +1,8 @@
 import { readFileSync } from 'node:fs';
 import { EbbError } from '../errors.ts';
 import { type CliOptions, readArguments } from './arguments.ts';
+import { HELP } from './help.ts';
 import type { CliSurroundings } from './types.ts';
-
-const HELP = `Ebbline: has churn moved?
-
-  ebb ask FILE [words of the question ...]   read an export and answer
-  ebb chart --counts "12,15,8" --sizes 50    chart ready counts
-
-Options
-  --as-of YYYY-MM-DD         last day the data is complete for
-  --tenure "3 months"        age at which churn is read
-  --subgroup-size N          accounts a point
-  --baseline K               points that set the usual level
-  --segment COLUMN=VALUE     only these accounts
-  --chart auto|p|p-prime     p-prime: limits from how much the points really vary;
-                             ask chooses (auto), chart draws p unless told
-  --columns start=COL,end=COL,id=COL,segment=COL,amount=COL
-  --dates iso|dmy|mdy        how dates are written
-  --picture OUT.png          draw the chart
-  --points OUT.csv           write the points
-  --json                     one JSON object on standard output
-
-A figure from here says that something changed, not why. For pay, forecasts,
-investors or auditors, your company's own written definitions and its finance
-and legal people decide.
-`;
 
 /**
  * Runs one command.
@@ -50,7 +27,7 @@ export async function runCli(args: readonly string[], around: CliSurroundings): 
         'The commands are ask and chart; ebb --help shows how.',
       );
     }
-    const options: CliOptions = readArguments(rest);
+    const options: CliOptions = readArguments(command, rest);
     if (options.help) {
       around.stdout(HELP);
       return 0;

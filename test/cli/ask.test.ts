@@ -194,6 +194,7 @@ describe('ebb ask refuses with one clear message', () => {
       /--dates/,
     ],
     ['an unknown option', ['ask', 'x.csv', '--tenor', '3'], 'OPTION_UNKNOWN', /--tenure/],
+    ['an option of the other command', ['ask', 'x.csv', '--counts', '3'], 'OPTION_UNKNOWN', /ebb chart --counts/],
     ['a tenure that is none', ['ask', 'x.csv', '--tenure', 'soon'], 'OPTION_INVALID', /3 months/],
     ['a date that is none', ['ask', 'x.csv', '--as-of', '30.6.2025'], 'OPTION_INVALID', /YYYY-MM-DD/],
     [
@@ -201,6 +202,24 @@ describe('ebb ask refuses with one clear message', () => {
       ['ask', 'fixtures/exports/marrowby-price-rise.csv', '--columns', 'start=begun'],
       'COLUMN_UNKNOWN',
       /created_at/,
+    ],
+    [
+      'a column name with a slip',
+      ['ask', 'fixtures/exports/marrowby-price-rise.csv', '--columns', 'start=craeted_at'],
+      'COLUMN_UNKNOWN',
+      /Did you mean "created_at"/,
+    ],
+    [
+      'an unknown column that is like none',
+      ['ask', 'fixtures/exports/marrowby-price-rise.csv', '--columns', 'start=foo'],
+      'COLUMN_UNKNOWN',
+      /the columns are: .*Name one of these columns/,
+    ],
+    [
+      'a data-through date long after the data',
+      ['ask', 'fixtures/exports/marrowby-price-rise.csv', '--as-of', '2090-01-01'],
+      'AS_OF_TOO_LATE',
+      /nothing in it happens after/,
     ],
     [
       'an unknown group',
