@@ -61,7 +61,7 @@ export default {
         'answers',
         'requests',
         'store/types\\.ts',
-        'accounts/types\\.ts',
+        'accounts/(types|checkAsOf)\\.ts',
         'census/tenure\\.ts',
         'verdict/types\\.ts',
         'verdict/words',

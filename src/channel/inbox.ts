@@ -12,7 +12,14 @@ export const mendPlaceSchema = z.strictObject({ target, channel: id, threadTs: i
 
 const payloads = {
   /** a question in words, from a mention, a direct message or the button that asks again */
-  ask: z.strictObject({ channel: id, threadTs: id, user: id, text: z.string() }),
+  ask: z.strictObject({
+    channel: id,
+    threadTs: id,
+    user: id,
+    text: z.string(),
+    /** asked again by the button: the dataset it was answered from */
+    answered: id.optional(),
+  }),
   /** a question from the slash command, which has no message of its own */
   command: z.strictObject({ channel: id, user: id, text: z.string(), responseUrl: z.string() }),
   /** a file in a channel; `question` is what a mention beside it asks */

@@ -8,6 +8,7 @@ export const ACTION = {
   dateOrder: 'date_order',
   dateOrderGo: 'date_order_go',
   again: 'ask_again',
+  more: 'more_lines',
 } as const;
 
 /** Blocks of the mend modal; their ids name what an error is about. */

@@ -6,6 +6,7 @@ import type { Message } from '../../src/channel/messages/blocks.ts';
 import { dateOrderMessage } from '../../src/channel/messages/dateOrderMessage.ts';
 import { errorMessage, unexpectedMessage } from '../../src/channel/messages/errorMessage.ts';
 import { mendLoading, mendModal } from '../../src/channel/messages/mendModal.ts';
+import { moreMessage } from '../../src/channel/messages/moreLines.ts';
 import {
   cannotReadMessage,
   commandRoot,
@@ -46,6 +47,7 @@ const report: fc.Arbitrary<ReadReport> = fc.record({
   returned: count,
   mergedRows: count,
   asOf: day,
+  inferredAsOf: fc.integer({ min: 15_000, max: 22_000 }),
   asOfSource: fc.constantFrom('given', 'latest-date'),
   futureEnds: count,
   firstStart: day,
@@ -81,6 +83,7 @@ const answer: fc.Arbitrary<Answer> = fc
     ({ altText, ...words }) =>
       ({
         verdict: { ...words, headline: words.headline || 'Churn is steady.' },
+        signals: [{ words: 'one point above' }],
         picture: { png: new Uint8Array(1), altText },
       }) as unknown as Answer,
   );
@@ -109,7 +112,12 @@ describe('messages keep within the platform’s limits and let no mark-up throug
     });
     fc.assert(
       fc.property(answer, fc.option(words), fc.boolean(), written, (one, asked, pictured, again) =>
-        isPostable(verdictMessage(one, asked, pictured ? 'F0123456789' : null, again || 'has churn moved?')),
+        isPostable(
+          verdictMessage(one, asked, pictured ? 'F0123456789' : null, {
+            text: again || 'has churn moved?',
+            dataset: 'd1',
+          }),
+        ),
       ),
       { numRuns: 150 },
     );
@@ -156,6 +164,59 @@ describe('messages keep within the platform’s limits and let no mark-up throug
       { numRuns: 60 },
     );
     checkView(mendLoading(place), () => true);
+  });
+});
+
+describe('a long verdict', () => {
+  const lines = (word: string, count: number): string[] => Array.from({ length: count }, (_, i) => `${word} ${i + 1}.`);
+  const posted = (evidence: string[], cautions: string[]) => {
+    const verdict = { headline: 'Churn is steady.', evidence, cautions, next: ['next 1.'] };
+    const asked = { text: 'has churn moved?', dataset: 'd1' };
+    const { blocks } = verdictMessage(
+      { verdict, picture: null, signals: [{ words: 'one flag' }] } as unknown as Answer,
+      null,
+      null,
+      asked,
+    );
+    const elements = blocks.flatMap((block) => (block.type === 'actions' ? block.elements : []));
+    const more = elements.find((element) => 'action_id' in element && element.action_id === 'more_lines');
+    const shown = JSON.stringify(blocks.filter((block) => block.type === 'section'));
+    return { shown, more: more && 'value' in more ? moreMessage(JSON.parse(more.value as string)) : undefined };
+  };
+
+  it('shows six lines of evidence and four cautions, the last among them, and the rest behind a button', () => {
+    const { shown, more } = posted(lines('fact', 8), lines('caution', 7));
+    expect(shown).toContain('fact 6.');
+    expect(shown).not.toContain('fact 7.');
+    expect(shown.match(/caution \d/g)).toEqual(['caution 1', 'caution 2', 'caution 3', 'caution 7']);
+    expect(more!.text.split('\n')).toEqual(
+      ['fact 7.', 'fact 8.', 'caution 4.', 'caution 5.', 'caution 6.'].map((l) => `• ${l}`),
+    );
+    isPostable(more!);
+  });
+
+  it('puts flags after the first behind the button before how far they can be trusted', () => {
+    const flags = ['One flag, first.', 'One flag, second.', 'One flag, third.', '3 further flags of the same kind.'];
+    const { shown, more } = posted([...flags, ...lines('trust', 5)], []);
+    expect(shown).toMatch(/One flag, first.*trust 1.*trust 5/);
+    expect(shown).not.toContain('second');
+    expect(more!.text.split('\n')).toHaveLength(3);
+  });
+
+  it('shows all when little is left over, or when the rest does not fit into the button', () => {
+    expect(posted(lines('fact', 7), lines('caution', 4)).more).toBeUndefined();
+    expect(posted(lines('fact', 7), lines('caution', 4)).shown).toContain('fact 7.');
+    const long = posted(lines('x'.repeat(400), 14), []);
+    expect(long.more).toBeUndefined();
+  });
+
+  it('keeps the order of the command line: what it rests on, keep in mind, what next', () => {
+    const { shown } = posted(['a.'], ['b.']);
+    expect(shown.match(/What it rests on|Keep in mind|What next/g)).toEqual([
+      'What it rests on',
+      'Keep in mind',
+      'What next',
+    ]);
   });
 });
 

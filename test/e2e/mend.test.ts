@@ -69,7 +69,13 @@ describe('mending how a file is read', () => {
       errors: { mend_end: expect.stringContaining('same column') },
     });
 
+    // A day long after anything in the file is refused at its field.
     wren.fill(place, 'value', '3', 'mend_start');
+    wren.fill(place, 'value', '2090-01-01', 'mend_as_of');
+    expect(await wren.submit()).toMatchObject({
+      kind: 'errors',
+      errors: { mend_as_of: expect.stringContaining('cannot be complete through 1 January 2090') },
+    });
     wren.fill(place, 'value', '2025-12-31', 'mend_as_of');
     expect(await wren.submit()).toEqual({ kind: 'closed' });
     const again = await heard(bot, post.ts, 'Read again: marrowby-recipe-cards.csv');

@@ -2,8 +2,11 @@ import type { App, BlockAction, ButtonAction } from '@slack/bolt';
 import { z } from 'zod';
 import { entry, mendPlaceSchema } from '../inbox.ts';
 import { type MendPlace, mendLoading, mendModal, mendUnavailable } from '../messages/mendModal.ts';
+import { moreMessage } from '../messages/moreLines.ts';
 import { ACTION } from '../names.ts';
 import type { ChannelDeps } from '../types.ts';
+
+const askedSchema = z.strictObject({ text: z.string(), dataset: z.string().min(1) });
 
 interface PressedAt {
   readonly teamId: string;
@@ -56,7 +59,20 @@ export function listenToPresses(app: App, deps: ChannelDeps, background: (work: 
         about: [at.channel, at.messageTs, action.action_ts],
       };
       const { channel, threadTs, user } = at;
-      await deps.store.receive(entry('ask', at.teamId, keys, { channel, threadTs, user, text: action.value }));
+      // Buttons of earlier versions carry the bare question.
+      const asked = askedSchema.safeParse(json(action.value));
+      const question = asked.success ? { text: asked.data.text, answered: asked.data.dataset } : { text: action.value };
+      await deps.store.receive(entry('ask', at.teamId, keys, { channel, threadTs, user, ...question }));
+    }
+    await ack();
+  });
+
+  app.action<BlockAction<ButtonAction>>(ACTION.more, async ({ ack, body, action, client }) => {
+    const at = pressedAt(body);
+    const more = moreMessage(json(action.value));
+    if (at && more) {
+      const { channel, threadTs, user } = at;
+      background(client.chat.postEphemeral({ channel, user, thread_ts: threadTs, ...more }));
     }
     await ack();
   });

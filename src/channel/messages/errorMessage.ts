@@ -7,7 +7,7 @@ import { code, inert, shortened } from './text.ts';
 /**
  * A deliberate error: what is wrong, and how to mend it.
  * @param about  the file's name, when the error is about a file
- * @param target when given, the columns can be chosen by hand
+ * @param target when given, the columns and the data-through date can be chosen by hand
  */
 export function errorMessage(error: EbbError, about?: string, target?: MendTarget): Message {
   const what = `${inert(shortened(error.message, 700))}.`.replace(/([.!?])\.$/, '$1');
@@ -17,7 +17,16 @@ export function errorMessage(error: EbbError, about?: string, target?: MendTarge
     [opening, hint],
     [
       section([opening, hint].filter((line) => line !== '')),
-      target && { type: 'actions', elements: [button('Choose the columns', ACTION.mend, JSON.stringify(target))] },
+      target && {
+        type: 'actions',
+        elements: [
+          button(
+            error.code === 'AS_OF_TOO_LATE' ? 'Correct this' : 'Choose the columns',
+            ACTION.mend,
+            JSON.stringify(target),
+          ),
+        ],
+      },
     ],
   );
 }

@@ -1,11 +1,12 @@
+import { notUsedLines } from '../../requests/understoodLines.ts';
 import { COMMAND } from '../names.ts';
 import { bullets, context, type Message, message, section } from './blocks.ts';
 import { code, inert, shortened } from './text.ts';
-import { type UnderstoodWords, understoodLines } from './verdictMessage.ts';
+import { shownLines, type UnderstoodWords } from './verdictMessage.ts';
 
 const EXAMPLES = [
   '“has churn moved?”',
-  '“has churn moved at 6 months for the annual plan since March?”',
+  '“has churn moved at 6 months for the annual plan since January 2025?”',
   '“has churn moved in subgroups of 120, baseline 30?”',
   '“what did you read?”',
 ];
@@ -19,7 +20,7 @@ export function helpMessage(words?: UnderstoodWords): Message {
     'The answer says whether churn really moved or only wiggled, since about when, how much, and how big a change could have been missed.',
     'An answer says that something changed, not why. For pay, forecasts, investors or auditors, your own written definitions and your finance and legal people decide.',
   ];
-  const missed = words && words.notUnderstood.length > 0 ? understoodLines(words).slice(1) : [];
+  const missed = words ? shownLines(notUsedLines(words.notUnderstood), 5) : [];
   return message(
     [...missed, lead.replaceAll('*', ''), ...lines],
     [missed.length > 0 && context(missed), section([lead, ...bullets(lines)])],
@@ -69,6 +70,18 @@ export function stillHereMessage(name: string, accounts: number): Message {
     'Mention me with a question (“has churn moved?”), or drop another export.',
   ];
   return message(lines, [section(lines)]);
+}
+
+/**
+ * For a question asked again of data that has not changed: the same words and the same picture would tell nothing new.
+ * @param newest name of the channel's newest export, when the thread is about an older one
+ */
+export function unchangedMessage(name: string, newest: string | undefined): Message {
+  const line =
+    newest === undefined
+      ? `This is still counted from ${code(name)}, so the answer above stands. Drop a newer export into the channel, then ask again.`
+      : `This thread is about ${code(name)}, so the answer above stands. To ask about ${code(newest)}, the newest export, mention me in the channel itself.`;
+  return message([line], [section([line])]);
 }
 
 export function shareFailedMessage(): Message {

@@ -1,16 +1,21 @@
 import type { Answer } from '../../answers/types.ts';
+import type { Understanding } from '../../requests/types.ts';
+import { understoodLines } from '../../requests/understoodLines.ts';
 import { ACTION } from '../names.ts';
 import { type Block, bullets, button, context, type Message, message, section } from './blocks.ts';
+import { moreButton, verdictLines } from './moreLines.ts';
 import { inert, plainLine, shortened } from './text.ts';
 
-export interface UnderstoodWords {
-  /** the question put back into words; shown when somebody asked in words */
-  readonly understood: string;
-  readonly notUnderstood: readonly { readonly text: string; readonly nearest: string }[];
+/** The question put back into words, and what found no use; shown when somebody asked in words. */
+export type UnderstoodWords = Pick<Understanding, 'understood' | 'notUnderstood'>;
+
+/** What the button that asks again carries: the question in words, and the dataset it was answered from. */
+export interface AskedBefore {
+  readonly text: string;
+  readonly dataset: string;
 }
 
-/** Most lines shown of each kind: the whole list of passed flags of a long history would bury the answer. */
-const MOST_LINES = 14;
+const MOST_PIECES = 5;
 const ALT_LENGTH = 2000;
 const BUTTON_VALUE_LENGTH = 2000;
 
@@ -18,20 +23,17 @@ const BUTTON_VALUE_LENGTH = 2000;
  * The verdict as a message.
  * @param words  null when nobody asked in words (after an upload)
  * @param fileId the uploaded picture; null leaves it out (the text carries the whole meaning)
- * @param again  the question in words, for the button that asks it again
  */
 export function verdictMessage(
   answer: Answer,
   words: UnderstoodWords | null,
   fileId: string | null,
-  again: string,
+  again: AskedBefore,
 ): Message {
   const { verdict, picture } = answer;
   const headline = inert(verdict.headline);
-  const understood = words ? understoodLines(words) : [];
-  const evidence = bullets(limited(verdict.evidence));
-  const cautions = bullets(limited(verdict.cautions));
-  const next = bullets(limited(verdict.next));
+  const understood = words ? shownLines(understoodLines(words), MOST_PIECES + 1) : [];
+  const { whole, shown, rest } = verdictLines(verdict, answer.signals);
   const image: Block | undefined =
     picture && fileId !== null
       ? {
@@ -43,34 +45,26 @@ export function verdictMessage(
           ),
         }
       : undefined;
+  const askAgain = JSON.stringify(again);
+  const buttons = [
+    ...(askAgain.length <= BUTTON_VALUE_LENGTH ? [button('Ask again', ACTION.again, askAgain)] : []),
+    ...(rest ? [moreButton(rest)] : []),
+  ];
   return message(
-    [headline, ...evidence, ...cautions, ...next, ...understood],
+    [headline, ...bullets([...whole.evidence, ...whole.cautions, ...whole.next]), ...understood],
     [
       understood.length > 0 && context(understood),
       section([`*${headline}*`]),
       image,
-      evidence.length > 0 && section(['*What it rests on*', ...evidence]),
-      next.length > 0 && section(['*What next*', ...next]),
-      cautions.length > 0 && section(['*Keep in mind*', ...cautions]),
-      again.length <= BUTTON_VALUE_LENGTH && {
-        type: 'actions',
-        elements: [button('Ask again', ACTION.again, again)],
-      },
+      shown.evidence.length > 0 && section(['*What it rests on*', ...bullets(shown.evidence)]),
+      shown.cautions.length > 0 && section(['*Keep in mind*', ...bullets(shown.cautions)]),
+      shown.next.length > 0 && section(['*What next*', ...bullets(shown.next)]),
+      buttons.length > 0 && { type: 'actions', elements: buttons },
     ],
   );
 }
 
-/** "I understood: …", and each piece that found no use with the nearest thing that can be done. */
-export function understoodLines(words: UnderstoodWords): string[] {
-  return [
-    `I understood: ${inert(shortened(words.understood, 600))}`,
-    ...words.notUnderstood
-      .slice(0, 5)
-      .map((one) => `I had no use for “${inert(shortened(one.text, 120))}”. ${inert(shortened(one.nearest, 500))}`),
-  ];
-}
-
-function limited(lines: readonly string[]): string[] {
-  const shown = lines.slice(0, MOST_LINES).map((line) => inert(shortened(line, 800)));
-  return lines.length > shown.length ? [...shown, `… and ${lines.length - shown.length} more`] : shown;
+/** Lines that may hold what somebody else wrote, safe to show and few. */
+export function shownLines(lines: readonly string[], most: number): string[] {
+  return lines.slice(0, most).map((line) => inert(shortened(line, 700)));
 }

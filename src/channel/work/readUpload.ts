@@ -13,13 +13,14 @@ import { type Job, requestContext } from './context.ts';
 /** A file that takes longer than this gets a word beforehand. */
 export const READING_AFTER_MS = 900;
 
-/** Errors that another choice of columns can mend. */
+/** Errors that another choice of columns or of the data-through date can mend. */
 const MENDABLE = new Set([
   'COLUMN_START_MISSING',
   'COLUMN_END_MISSING',
   'COLUMN_UNKNOWN',
   'DATES_UNREADABLE',
   'ACCOUNTS_NONE',
+  'AS_OF_TOO_LATE',
 ]);
 const ABOUT_ORDER = new Set(['DATES_AMBIGUOUS', 'DATES_MIXED']);
 
