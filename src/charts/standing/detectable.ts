@@ -1,4 +1,4 @@
-import { simulateHistories } from './histories.ts';
+import { historyCount, simulateHistories } from './histories.ts';
 import type { BlockDesign } from './lastBlock.ts';
 import { standingJudge } from './standing.ts';
 
@@ -12,7 +12,8 @@ export interface Detectable {
 
 /** Bisection steps within the bracket: the answer is known to about 1/30 of the move, finer than the simulation's own error. */
 const STEPS = 5;
-const HISTORIES = 300;
+const MOST_HISTORIES = 300;
+const LEAST_HISTORIES = 60;
 
 /**
  * The smallest rise and fall that this chart would by now have read as moved with the wanted chance, had the rate moved at `from` and
@@ -32,6 +33,7 @@ export function smallestDetectable(
   seed = 2,
 ): Detectable {
   const judge = standingJudge(design);
+  const histories = historyCount(design.accounts.length, MOST_HISTORIES, LEAST_HISTORIES);
   const seen = (moved: number, side: 'above' | 'below'): boolean => {
     let hits = 0;
     const pieces =
@@ -41,10 +43,10 @@ export function smallestDetectable(
             { from, rate: moved },
           ]
         : [{ from: 1, rate: moved }];
-    simulateHistories(design, pieces, HISTORIES, seed, (lost) => {
+    simulateHistories(design, pieces, histories, seed, (lost) => {
       if (judge(lost)[side].score > threshold) hits++;
     });
-    return hits / HISTORIES >= chance;
+    return hits / histories >= chance;
   };
   const accounts = design.accounts.slice(from - 1).reduce((sum, n) => sum + n, 0);
   // The ratio scatters by about sqrt(2 ratio) around its mean; 0.84 is the normal 80 % point. Only a place to start looking.

@@ -8,9 +8,13 @@ const POINT_BUDGET = 250_000;
 const MOST_HISTORIES = 4_000;
 const LEAST_HISTORIES = 400;
 
-/** How many histories a figure is simulated from: fewer for very long charts, so that an answer never takes minutes. */
-export function historyCount(pointCount: number): number {
-  return Math.max(LEAST_HISTORIES, Math.min(MOST_HISTORIES, Math.floor(POINT_BUDGET / pointCount)));
+/**
+ * How many histories a figure is simulated from: fewer for very long charts, so that an answer never takes minutes.
+ * @param most   enough for this figure
+ * @param least  fewest that still mean something
+ */
+export function historyCount(pointCount: number, most = MOST_HISTORIES, least = LEAST_HISTORIES): number {
+  return Math.max(least, Math.min(most, Math.floor(POINT_BUDGET / pointCount)));
 }
 
 /** A piece of a simulated history: from which point on (numbered from 1) which rate holds. */

@@ -1,5 +1,5 @@
 import { maxLogLikelihood } from '../logLikelihood.ts';
-import { simulateHistories } from './histories.ts';
+import { historyCount, simulateHistories } from './histories.ts';
 import { type BlockDesign, LEAST_BEFORE } from './lastBlock.ts';
 
 export interface StartCandidates {
@@ -19,7 +19,8 @@ export const CANDIDATE_COVERAGE = 0.9;
  * 30 % to falls by 60 %, begun 7 to 32 points ago): cut at 90 %, 84 to 93 % of the sets hold the true start; cut at 95 %, 92 to 96 %.
  */
 const CALIBRATED_AT = 0.95;
-const BOOTSTRAP_HISTORIES = 600;
+const MOST_HISTORIES = 600;
+const LEAST_HISTORIES = 200;
 
 /**
  * When a step began: the maximum likelihood start of the last block, and the set of starts whose log likelihood is not too far below it.
@@ -37,6 +38,7 @@ export function startCandidates(
 ): StartCandidates {
   const profile = profiler(design);
   const here = profile(lost, side);
+  const histories = historyCount(design.accounts.length, MOST_HISTORIES, LEAST_HISTORIES);
   const drops: number[] = [];
   simulateHistories(
     design,
@@ -44,7 +46,7 @@ export function startCandidates(
       { from: 1, rate: here.before },
       { from: here.first, rate: here.after },
     ],
-    BOOTSTRAP_HISTORIES,
+    histories,
     seed,
     (simulated) => {
       const there = profile(simulated, side);
@@ -55,7 +57,7 @@ export function startCandidates(
     },
   );
   drops.sort((a, b) => a - b);
-  const allowed = drops[Math.ceil(BOOTSTRAP_HISTORIES * CALIBRATED_AT) - 1]!;
+  const allowed = drops[Math.ceil(histories * CALIBRATED_AT) - 1]!;
   // A start on the other side is no start of this move, however wide the set.
   const inside = here.ratios.flatMap((ratio, i) =>
     ratio > Number.NEGATIVE_INFINITY && here.best - ratio <= allowed ? [i + 1] : [],
