@@ -202,6 +202,29 @@ describe('channels and people', () => {
   });
 });
 
+describe('a restart', () => {
+  it('leaves every id under which an app may keep things as it was', async () => {
+    const ids = async (seed: number) => {
+      const started = await startService({ random: seeded(seed) });
+      try {
+        const { channels } = await call(started, 'conversations.list', { types: 'public_channel,im' });
+        const direct = await Promise.all(
+          [WREN, 'U0TAMSIN001', 'U0ODELL0001'].map(
+            async (users) => (await call(started, 'conversations.open', { users })).channel.id,
+          ),
+        );
+        const { team_id, user_id } = await call(started, 'auth.test');
+        return { channels: channels.map((c: { id: string }) => c.id), direct, team_id, user_id };
+      } finally {
+        await started.close();
+      }
+    };
+    const before = await ids(1);
+    expect(await ids(2)).toEqual(before);
+    expect(new Set(before.direct).size).toBe(3);
+  });
+});
+
 describe('the three-step upload', () => {
   it('stays unprocessed for the set number of looks, then can be shown in a message', async () => {
     const id = await upload({ alt_txt: 'churn lies at 6 %' });

@@ -47,14 +47,17 @@ export function addChannel(
   return stored;
 }
 
-/** The channel of a person and the bot, made on first use. */
+/**
+ * The channel of a person and the bot, made on first use. Its id follows from the person's, so that after a restart what the app keeps
+ * under it is still found.
+ */
 export function directChannel(world: World, user: string, botUser: string): Channel {
   for (const channel of world.channels.values()) {
     if (channel.kind === 'direct' && channel.members.has(user) && channel.members.has(botUser)) return channel;
   }
   const team = world.people.get(user)?.team ?? '';
   return addChannel(world, {
-    id: world.newId('D'),
+    id: user.replace(/^./, 'D'),
     team,
     name: '',
     purpose: '',
@@ -91,7 +94,7 @@ export function settleMarrowby(
     id: MARROWBY.launches,
     team,
     name: 'launches',
-    purpose: 'What goes out, and when. Ebbline has not been asked in here yet.',
+    purpose: 'What goes out, and when.',
     kind: 'public',
     members: humans,
   });
