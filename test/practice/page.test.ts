@@ -8,7 +8,7 @@ import { type Browser, chromium, type Page } from 'playwright-core';
 import { build } from 'vite';
 import { afterAll, afterEach, beforeAll, beforeEach, describe, expect, it } from 'vitest';
 import type { PracticeService } from '../../src/practice/service.ts';
-import { startHttpApp, startService } from './support.ts';
+import { call, startHttpApp, startService } from './support.ts';
 
 const CHROMIUM = '/usr/bin/chromium';
 const missing = !existsSync(CHROMIUM);
@@ -167,6 +167,7 @@ describe.skipIf(missing)('the page in a browser', () => {
     troubles.length = 0;
     service = await startService({
       samples: [{ name: 'a-fall.csv', description: 'Churn fell', path: join(folder, 'sample.csv') }],
+      shortcuts: [{ callbackId: 'read', name: 'Read this file' }],
     });
     stops.push(() => service.close());
     stops.push((await startHttpApp(service, answering)).stop);
@@ -256,5 +257,74 @@ describe.skipIf(missing)('the page in a browser', () => {
     await page.getByRole('button', { name: 'Bring ebbline in' }).click();
     await service.waitFor((w) => w.channel('launches').members.has('U0EBBLINE01'));
     await page.getByRole('button', { name: 'Bring ebbline in' }).waitFor({ state: 'detached' });
+  });
+
+  it('says what to try until the person has written something, whatever was handed in for them', async () => {
+    const root = service.as('wren').drop('retention', [{ name: 'a.csv', text: 'id,start' }]);
+    await page.getByText('Churn has fallen.').waitFor();
+    for (let i = 0; i < 30; i++) service.as('odell').say('retention', `note ${i}`, { threadTs: root.ts });
+    await page.reload();
+    await page.getByText('note 29').waitFor();
+    const example = page.getByRole('button', { name: '@ebbline has churn moved?' });
+    expect(await example.isVisible()).toBe(true);
+    expect(await page.evaluate(() => window.scrollY)).toBe(0);
+    await example.click();
+    await page.getByLabel('Write in retention').press('Enter');
+    await example.waitFor({ state: 'detached' });
+  });
+
+  it('begins where the newest thread does, when an older one stands above it', async () => {
+    service.as('tamsin').say('retention', 'an older entry');
+    for (let i = 0; i < 30; i++) service.as('tamsin').say('retention', `entry ${i}`);
+    const root = service.as('odell').say('retention', 'the newest thread');
+    for (let i = 0; i < 30; i++) service.as('tamsin').say('retention', `note ${i}`, { threadTs: root.ts });
+    await page.reload();
+    const top = page.getByText('the newest thread');
+    await top.waitFor();
+    await page.waitForFunction(() => window.scrollY > 0);
+    const box = await top.boundingBox();
+    expect(box?.y).toBeGreaterThanOrEqual(0);
+    expect(box?.y).toBeLessThan(150);
+  });
+
+  it('offers to read a file only where there is one, and the bot’s page only when there is something on it', async () => {
+    service.as('odell').say('retention', 'no file here');
+    await page.getByText('no file here').waitFor();
+    expect(await page.getByRole('button', { name: 'read this file' }).count()).toBe(0);
+    expect(await page.getByRole('button', { name: 'ebbline’s page' }).count()).toBe(0);
+    service.as('odell').drop('retention', [{ name: 'a.csv', text: 'id,start' }]);
+    await page.getByRole('button', { name: 'read this file' }).waitFor();
+    expect(await page.getByRole('button', { name: 'read this file' }).count()).toBe(1);
+    const view = { type: 'home', blocks: [{ type: 'section', text: { type: 'mrkdwn', text: 'All is calm.' } }] };
+    await call(service, 'views.publish', { user_id: 'U0WREN00001', view });
+    await page.getByRole('button', { name: 'ebbline’s page' }).click();
+    await page.getByText('All is calm.').waitFor();
+  });
+
+  it('keeps a form’s buttons in reach in a low window, and does not bring it back on the next visit', async () => {
+    service.as('wren').drop('retention', [{ name: 'a.csv', text: 'id,start' }]);
+    await page.getByRole('button', { name: 'Mend how it was read' }).click();
+    await page.setViewportSize({ width: 360, height: 300 });
+    const form = page.getByRole('dialog', { name: 'How it was read' });
+    const hand = await form.getByRole('button', { name: 'Read it again' }).boundingBox();
+    expect((hand?.y ?? 999) + (hand?.height ?? 999)).toBeLessThanOrEqual(300);
+    expect(await form.evaluate((e) => e.scrollHeight > e.clientHeight)).toBe(true);
+
+    const order = form.getByLabel('Date order');
+    expect(await order.locator('option').first().textContent()).toBe('Choose one');
+    await order.selectOption('day first');
+    await page.waitForFunction(() => document.querySelectorAll('dialog option').length === 2);
+    expect(await order.locator('option').allTextContents()).toEqual(['day first', 'month first']);
+
+    await page.reload();
+    await page.getByRole('log').waitFor();
+    await service.waitFor((w) => w.modal('wren') === undefined);
+    expect(await page.getByRole('dialog').count()).toBe(0);
+  });
+
+  it('names the time zone of whoever is looking', async () => {
+    expect(await page.getByText('times in Europe/London').count()).toBe(1);
+    await page.getByLabel('You are').selectOption({ label: 'Tamsin, finance' });
+    await page.getByText('times in America/New_York').waitFor();
   });
 });

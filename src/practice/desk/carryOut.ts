@@ -19,6 +19,7 @@ export async function carryOut(
   samples: readonly Sample[],
 ): Promise<unknown> {
   const { world } = desk;
+  if (ask.do === 'say' || ask.do === 'share') world.writers.add(person.id);
   switch (ask.do) {
     case 'say': {
       const isCommand =

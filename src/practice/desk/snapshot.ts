@@ -36,6 +36,7 @@ export function snapshotFor(desk: Desk, person: Person, samples: readonly Sample
   return {
     workspace: world.teams.get(person.team)?.name ?? '',
     me: person.id,
+    hasWritten: world.writers.has(person.id),
     bot,
     people: [...world.people.values()]
       .filter((p) => p.team === person.team)

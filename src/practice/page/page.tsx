@@ -1,7 +1,7 @@
 /** The practice page: who you are, which channel, the log, and where you write. */
 import { useCallback, useEffect, useState } from 'preact/hooks';
 import type { Confirm } from '../wire/text.ts';
-import { type Looking, LookingContext } from './context.ts';
+import { type Looking, LookingContext, zoneOf } from './context.ts';
 import { Composer } from './operating/composer.tsx';
 import { Dialog } from './operating/dialog.tsx';
 import { Modal } from './operating/modal.tsx';
@@ -25,7 +25,12 @@ export function Page() {
   const [dropped, setDropped] = useState<readonly File[]>([]);
   const [over, setOver] = useState(false);
   const [suggestion, setSuggestion] = useState<string>();
-  const { snapshot, connected } = useSnapshot(me);
+  const { snapshot, connected, leftOpen } = useSnapshot(me);
+
+  // A form belongs to the visit in which it was opened.
+  useEffect(() => {
+    if (leftOpen !== undefined) ask({ do: 'close', as: me, view: leftOpen, all: true }).catch(() => undefined);
+  }, [me, leftOpen]);
 
   useEffect(() => {
     window.history.replaceState(null, '', `#${new URLSearchParams({ as: me, in: wanted })}`);
@@ -50,7 +55,7 @@ export function Page() {
 
   if (!snapshot || snapshot.me !== me) return <p class="opening">Opening the practice channel …</p>;
   const looking: Looking = { snapshot, complain, enlarge: setLarge, confirm };
-  const atHome = wanted === 'home';
+  const atHome = wanted === 'home' && snapshot.home !== null;
   const channel = snapshot.channels.find((c) => c.id === wanted) ?? snapshot.channels[0];
   const bot = snapshot.people.find((p) => p.id === snapshot.bot)?.name ?? 'the bot';
 
@@ -97,7 +102,7 @@ export function Page() {
         <header class="masthead">
           <div class="title">
             <h1>{snapshot.workspace}</h1>
-            <p class="aside">practice channel, on this machine only</p>
+            <p class="aside">practice channel, on this machine only; times in {zoneOf(snapshot)}</p>
           </div>
           <label class="who">
             You are
@@ -122,16 +127,18 @@ export function Page() {
                 {c.name}
               </button>
             ))}
-            <button
-              type="button"
-              aria-current={atHome ? 'page' : undefined}
-              onClick={() => {
-                setWanted('home');
-                ask({ do: 'home', as: me }).catch(complain);
-              }}
-            >
-              {bot}’s page
-            </button>
+            {snapshot.home ? (
+              <button
+                type="button"
+                aria-current={atHome ? 'page' : undefined}
+                onClick={() => {
+                  setWanted('home');
+                  ask({ do: 'home', as: me }).catch(complain);
+                }}
+              >
+                {bot}’s page
+              </button>
+            ) : null}
           </nav>
         </header>
 
@@ -140,13 +147,9 @@ export function Page() {
           {snapshot.appIsReachable ? null : (
             <p class="strip">{bot} is not running yet; what you write is kept for it.</p>
           )}
-          {atHome ? (
+          {atHome && snapshot.home ? (
             <section class="home" aria-label={`${bot}’s page`}>
-              {snapshot.home ? (
-                <Blocks blocks={snapshot.home.blocks} place={{ view: snapshot.home.id }} state={snapshot.home.state} />
-              ) : (
-                <p>{bot} has put nothing on its page for you.</p>
-              )}
+              <Blocks blocks={snapshot.home.blocks} place={{ view: snapshot.home.id }} state={snapshot.home.state} />
             </section>
           ) : channel ? (
             <>
@@ -166,6 +169,21 @@ export function Page() {
               {fresh ? (
                 <section class="first" aria-label="First steps">
                   <h2>Ask whether churn has moved</h2>
+                  <p class="try">Hand in one of these exports, or drop one of your own anywhere on this page.</p>
+                  {samples}
+                </section>
+              ) : null}
+              <Log channel={channel} />
+              <div class="desk">
+                {problem ? (
+                  <p class="error" role="alert">
+                    {problem}{' '}
+                    <button type="button" class="quiet" onClick={() => setProblem('')}>
+                      put away
+                    </button>
+                  </p>
+                ) : null}
+                {snapshot.hasWritten ? null : (
                   <p class="try">
                     Try{' '}
                     <button
@@ -181,21 +199,8 @@ export function Page() {
                         or <code>{snapshot.commands[0]} help</code>
                       </>
                     ) : null}
-                    , or drop an export of your own anywhere on this page.
                   </p>
-                  {samples}
-                </section>
-              ) : null}
-              <Log channel={channel} />
-              <div class="desk">
-                {problem ? (
-                  <p class="error" role="alert">
-                    {problem}{' '}
-                    <button type="button" class="quiet" onClick={() => setProblem('')}>
-                      put away
-                    </button>
-                  </p>
-                ) : null}
+                )}
                 {fresh ? null : samples}
                 <Composer
                   key={channel.id}
@@ -209,7 +214,9 @@ export function Page() {
           ) : null}
         </main>
 
-        {snapshot.modal ? <Modal key={`${snapshot.me}-modal`} view={snapshot.modal} /> : null}
+        {snapshot.modal && snapshot.modal.id !== leftOpen ? (
+          <Modal key={`${snapshot.me}-modal`} view={snapshot.modal} />
+        ) : null}
         {large ? (
           <Dialog label={large.title || 'Picture'} class="large" onCancel={() => setLarge(undefined)}>
             <button type="button" class="press" onClick={() => setLarge(undefined)}>

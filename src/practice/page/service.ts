@@ -27,17 +27,27 @@ export async function upload(as: string, file: File): Promise<string> {
   return String(answer.file);
 }
 
-export function useSnapshot(as: string): { snapshot: PageSnapshot | undefined; connected: boolean } {
+/** @returns also the form that was open already when this visit began */
+export function useSnapshot(as: string): {
+  snapshot: PageSnapshot | undefined;
+  connected: boolean;
+  leftOpen: string | undefined;
+} {
   const [snapshot, setSnapshot] = useState<PageSnapshot>();
   const [connected, setConnected] = useState(false);
+  const [leftOpen, setLeftOpen] = useState<string>();
   useEffect(() => {
     const source = new EventSource(`/page/stream?as=${encodeURIComponent(as)}`);
+    let first = true;
     source.onmessage = (event: MessageEvent<string>) => {
-      setSnapshot(JSON.parse(event.data) as PageSnapshot);
+      const news = JSON.parse(event.data) as PageSnapshot;
+      if (first) setLeftOpen(news.modal?.id);
+      first = false;
+      setSnapshot(news);
       setConnected(true);
     };
     source.onerror = () => setConnected(false);
     return () => source.close();
   }, [as]);
-  return { snapshot, connected };
+  return { snapshot, connected, leftOpen };
 }

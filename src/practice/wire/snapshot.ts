@@ -61,6 +61,8 @@ export interface PageView {
 export interface PageSnapshot {
   readonly workspace: string;
   readonly me: string;
+  /** whether this person has written something on the page, rather than been written for */
+  readonly hasWritten: boolean;
   readonly bot: string;
   readonly people: readonly PagePerson[];
   readonly channels: readonly PageChannel[];

@@ -165,6 +165,8 @@ export interface World {
   readonly stacks: Map<string, string[]>;
   /** published Home tab of a person: id into `views` */
   readonly homes: Map<string, string>;
+  /** people who have written something on the page themselves */
+  readonly writers: Set<string>;
   readonly triggers: Map<string, Trigger>;
   readonly responseUrls: Map<string, ResponseUrl>;
   /** where files and permalinks are said to live; set once the server listens */
@@ -200,6 +202,7 @@ export function createWorld(options: {
     views: new Map(),
     stacks: new Map(),
     homes: new Map(),
+    writers: new Set(),
     triggers: new Map(),
     responseUrls: new Map(),
     baseUrl: '',

@@ -84,7 +84,11 @@ export function Control(props: ControlProps) {
           value={value?.selected_option?.value ?? ''}
           onChange={(e) => void send(e.currentTarget.value || null)}
         >
-          <option value="">{element.placeholder?.text ?? 'Choose one'}</option>
+          <Unchosen
+            required={props.required}
+            chosen={value?.selected_option?.value}
+            words={element.placeholder?.text ?? 'Choose one'}
+          />
           {element.options?.map(optionTag)}
           {element.option_groups?.map((group) => (
             <optgroup key={group.label.text} label={group.label.text}>
@@ -126,7 +130,11 @@ export function Control(props: ControlProps) {
           value={value?.selected_user ?? ''}
           onChange={(e) => void send(e.currentTarget.value || null)}
         >
-          <option value="">{element.placeholder?.text ?? 'Choose someone'}</option>
+          <Unchosen
+            required={props.required}
+            chosen={value?.selected_user}
+            words={element.placeholder?.text ?? 'Choose someone'}
+          />
           {snapshot.people.map((p) => (
             <option key={p.id} value={p.id}>
               {p.name}
@@ -139,7 +147,7 @@ export function Control(props: ControlProps) {
       const held = element.type === 'channels_select' ? value?.selected_channel : value?.selected_conversation;
       return (
         <select {...common} value={held ?? ''} onChange={(e) => void send(e.currentTarget.value || null)}>
-          <option value="">{element.placeholder?.text ?? 'Choose a channel'}</option>
+          <Unchosen required={props.required} chosen={held} words={element.placeholder?.text ?? 'Choose a channel'} />
           {snapshot.channels
             .filter((c) => element.type === 'conversations_select' || !c.isDirect)
             .map((c) => (
@@ -207,6 +215,12 @@ export function Control(props: ControlProps) {
 
 function placeholderOf(element: InteractiveElement): string | undefined {
   return 'placeholder' in element ? element.placeholder?.text : undefined;
+}
+
+/** The entry that stands for no choice; once there is one it takes the choice back, and is gone where one is needed. */
+function Unchosen(props: { chosen: string | null | undefined; words: string; required: boolean | undefined }) {
+  if (props.chosen && props.required !== false) return null;
+  return <option value="">{props.chosen ? 'No choice' : props.words}</option>;
 }
 
 function optionTag(option: Option) {

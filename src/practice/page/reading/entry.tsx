@@ -57,7 +57,7 @@ function Leaf({ message, children }: { message: PageMessage; children?: preact.C
   const moment = new Date(Number(message.ts) * 1000);
   const clock = new Intl.DateTimeFormat('en-GB', { hour: '2-digit', minute: '2-digit', timeZone: zoneOf(snapshot) });
   const index = snapshot.people.findIndex((p) => p.id === message.user);
-  const hasFile = message.files.length > 0;
+  const hasFile = message.files.some((file) => !file.deleted && !file.isImage);
   return (
     <article
       id={`at-${message.ts.replace('.', '-')}`}
@@ -116,7 +116,7 @@ function Leaf({ message, children }: { message: PageMessage; children?: preact.C
             </button>
           ) : (
             snapshot.shortcuts
-              .filter(() => hasFile || !writer?.isBot)
+              .filter(() => hasFile)
               .map((shortcut) => (
                 <button
                   type="button"

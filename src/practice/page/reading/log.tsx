@@ -18,8 +18,15 @@ export function Log({ channel }: { channel: PageChannel }) {
   // Notes appear in the middle of the page as well as at its end: bring whatever is new into sight.
   useEffect(() => {
     if (newest === '' || (seen.current.channel === channel.id && newest <= seen.current.ts)) return;
+    const arriving = seen.current.channel !== channel.id;
     seen.current = { channel: channel.id, ts: newest };
-    document.getElementById(`at-${newest.replace('.', '-')}`)?.scrollIntoView({ block: 'nearest' });
+    if (!arriving) return leafOf(newest)?.scrollIntoView({ block: 'nearest' });
+    // Else the browser goes back, after a reload, to where the page was.
+    window.history.scrollRestoration = 'manual';
+    // Whoever arrives begins where the latest conversation does, not in the middle of it.
+    const begun = rootOf(channel, newest);
+    if (channel.messages[0]?.ts === begun) window.scrollTo(0, 0);
+    else leafOf(begun)?.scrollIntoView({ block: 'start' });
   }, [channel.id, newest]);
 
   const known = new Set(channel.messages.map((m) => m.ts));
@@ -50,4 +57,14 @@ export function Log({ channel }: { channel: PageChannel }) {
       </ol>
     </div>
   );
+}
+
+function leafOf(ts: string): HTMLElement | null {
+  return document.getElementById(`at-${ts.replace('.', '-')}`);
+}
+
+/** The entry under which a message stands, or itself. */
+function rootOf(channel: PageChannel, ts: string): string {
+  const under = channel.messages.find((m) => m.ts === ts)?.threadTs ?? ts;
+  return channel.messages.some((m) => m.ts === under) ? under : ts;
 }
