@@ -25,7 +25,7 @@ export function nothingLeft(rejected: readonly Rejected[], rows: number, layout:
       : 'Check that the right columns were taken (on the command line: --columns id=NAME,start=NAME,end=NAME).';
   return new EbbError(
     'ACCOUNTS_NONE',
-    `no row is left to count: ${rejected.map((one) => `${one.rows} rows: ${one.reason} (first in line ${one.firstLine})`).join('; ')}`,
+    `no row is left to count: ${rejected.map((one) => `${one.rows} ${one.rows === 1 ? 'row' : 'rows'}: ${one.reason} (${one.rows === 1 ? '' : 'first on '}line ${one.firstLine})`).join('; ')}`,
     hint,
     { detail: { rejected } },
   );
