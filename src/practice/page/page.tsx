@@ -59,9 +59,9 @@ export function Page() {
   const channel = snapshot.channels.find((c) => c.id === wanted) ?? snapshot.channels[0];
   const bot = snapshot.people.find((p) => p.id === snapshot.bot)?.name ?? 'the bot';
 
-  const fresh = (channel?.messages.length ?? 0) < 3;
+  const fresh = channel?.messages.length === 0;
   const samples =
-    channel && snapshot.samples.length > 0 ? (
+    channel?.botIsMember && snapshot.samples.length > 0 ? (
       <details class="samples" open={fresh}>
         <summary>Hand in a sample export</summary>
         <ul>
@@ -166,7 +166,7 @@ export function Page() {
                   </button>
                 </p>
               )}
-              {fresh ? (
+              {fresh && channel.botIsMember ? (
                 <section class="first" aria-label="First steps">
                   <h2>Ask whether churn has moved</h2>
                   <p class="try">Hand in one of these exports, or drop one of your own anywhere on this page.</p>
