@@ -44,7 +44,11 @@ export default {
     only('census', ['accounts'], 'The census turns accounts into subgroups and stops there.'),
     only('verdict', ['charts', 'census', 'accounts/types\\.ts'], 'A verdict is made from a chart and a census.'),
     only('picture', ['charts', 'verdict'], 'The picture is handed finished numbers.'),
-    only('requests', ['census', 'accounts/types\\.ts', 'charts/types\\.ts'], 'The grammar fills request types and runs nothing.'),
+    only(
+      'requests',
+      ['census', 'accounts/types\\.ts', 'charts/types\\.ts'],
+      'The grammar fills request types and runs nothing.',
+    ),
     only(
       'store',
       ['accounts/types\\.ts', 'requests/types\\.ts', 'census/types\\.ts'],

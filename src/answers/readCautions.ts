@@ -1,6 +1,6 @@
 import type { ReadReport } from '../accounts/types.ts';
 import { type Day, dayInWords } from '../days.ts';
-import { counted } from '../verdict/words/format.ts';
+import { count, counted } from '../verdict/words/format.ts';
 
 /** Days without any start or end before a named data-through date that call for a word. Our choice, no source. */
 const SILENT_DAYS = 7;
@@ -22,7 +22,7 @@ export function readCautions(report: ReadReport, asOf: Day): string[] {
   const rejected = report.rejected.reduce((sum, entry) => sum + entry.rows, 0);
   if (rejected > report.rows * MANY_REJECTED) {
     cautions.push(
-      `${counted(rejected, 'row')} of ${counted(report.rows, 'row')} could not be used; the list of reasons is with what was read.`,
+      `${count(rejected)} of ${counted(report.rows, 'row')} could not be used; the list of reasons is with what was read.`,
     );
   }
   if (report.returned > report.accounts * MANY_RETURNED) {

@@ -17,8 +17,6 @@ const payloads = {
     threadTs: id,
     user: id,
     text: z.string(),
-    /** asked again by the button: the dataset it was answered from */
-    answered: id.optional(),
   }),
   /** a question from the slash command, which has no message of its own */
   command: z.strictObject({ channel: id, user: id, text: z.string(), responseUrl: z.string() }),

@@ -112,12 +112,7 @@ describe('messages keep within the platform’s limits and let no mark-up throug
     });
     fc.assert(
       fc.property(answer, fc.option(words), fc.boolean(), written, (one, asked, pictured, again) =>
-        isPostable(
-          verdictMessage(one, asked, pictured ? 'F0123456789' : null, {
-            text: again || 'has churn moved?',
-            dataset: 'd1',
-          }),
-        ),
+        isPostable(verdictMessage(one, asked, pictured ? 'F0123456789' : null, again || 'has churn moved?')),
       ),
       { numRuns: 150 },
     );
@@ -171,12 +166,11 @@ describe('a long verdict', () => {
   const lines = (word: string, count: number): string[] => Array.from({ length: count }, (_, i) => `${word} ${i + 1}.`);
   const posted = (evidence: string[], cautions: string[]) => {
     const verdict = { headline: 'Churn is steady.', evidence, cautions, next: ['next 1.'] };
-    const asked = { text: 'has churn moved?', dataset: 'd1' };
     const { blocks } = verdictMessage(
       { verdict, picture: null, signals: [{ words: 'one flag' }] } as unknown as Answer,
       null,
       null,
-      asked,
+      'has churn moved?',
     );
     const elements = blocks.flatMap((block) => (block.type === 'actions' ? block.elements : []));
     const more = elements.find((element) => 'action_id' in element && element.action_id === 'more_lines');

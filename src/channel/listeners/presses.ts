@@ -6,8 +6,6 @@ import { moreMessage } from '../messages/moreLines.ts';
 import { ACTION } from '../names.ts';
 import type { ChannelDeps } from '../types.ts';
 
-const askedSchema = z.strictObject({ text: z.string(), dataset: z.string().min(1) });
-
 interface PressedAt {
   readonly teamId: string;
   readonly channel: string;
@@ -59,10 +57,7 @@ export function listenToPresses(app: App, deps: ChannelDeps, background: (work: 
         about: [at.channel, at.messageTs, action.action_ts],
       };
       const { channel, threadTs, user } = at;
-      // Buttons of earlier versions carry the bare question.
-      const asked = askedSchema.safeParse(json(action.value));
-      const question = asked.success ? { text: asked.data.text, answered: asked.data.dataset } : { text: action.value };
-      await deps.store.receive(entry('ask', at.teamId, keys, { channel, threadTs, user, ...question }));
+      await deps.store.receive(entry('ask', at.teamId, keys, { channel, threadTs, user, text: action.value }));
     }
     await ack();
   });

@@ -72,18 +72,6 @@ export function stillHereMessage(name: string, accounts: number): Message {
   return message(lines, [section(lines)]);
 }
 
-/**
- * For a question asked again of data that has not changed: the same words and the same picture would tell nothing new.
- * @param newest name of the channel's newest export, when the thread is about an older one
- */
-export function unchangedMessage(name: string, newest: string | undefined): Message {
-  const line =
-    newest === undefined
-      ? `This is still counted from ${code(name)}, so the answer above stands. Drop a newer export into the channel, then ask again.`
-      : `This thread is about ${code(name)}, so the answer above stands. To ask about ${code(newest)}, the newest export, mention me in the channel itself.`;
-  return message([line], [section([line])]);
-}
-
 export function shareFailedMessage(): Message {
   const line = 'The picture could not be shown here; the words above carry all of it.';
   return message([line], [context([line])]);

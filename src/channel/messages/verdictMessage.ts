@@ -9,12 +9,6 @@ import { inert, plainLine, shortened } from './text.ts';
 /** The question put back into words, and what found no use; shown when somebody asked in words. */
 export type UnderstoodWords = Pick<Understanding, 'understood' | 'notUnderstood'>;
 
-/** What the button that asks again carries: the question in words, and the dataset it was answered from. */
-export interface AskedBefore {
-  readonly text: string;
-  readonly dataset: string;
-}
-
 const MOST_PIECES = 5;
 const ALT_LENGTH = 2000;
 const BUTTON_VALUE_LENGTH = 2000;
@@ -22,13 +16,14 @@ const BUTTON_VALUE_LENGTH = 2000;
 /**
  * The verdict as a message.
  * @param words  null when nobody asked in words (after an upload)
+ * @param again  the question in words, for the button that asks it again
  * @param fileId the uploaded picture; null leaves it out (the text carries the whole meaning)
  */
 export function verdictMessage(
   answer: Answer,
   words: UnderstoodWords | null,
   fileId: string | null,
-  again: AskedBefore,
+  again: string,
 ): Message {
   const { verdict, picture } = answer;
   const headline = inert(verdict.headline);
@@ -45,9 +40,8 @@ export function verdictMessage(
           ),
         }
       : undefined;
-  const askAgain = JSON.stringify(again);
   const buttons = [
-    ...(askAgain.length <= BUTTON_VALUE_LENGTH ? [button('Ask again', ACTION.again, askAgain)] : []),
+    ...(again.length <= BUTTON_VALUE_LENGTH ? [button('Ask again', ACTION.again, again)] : []),
     ...(rest ? [moreButton(rest)] : []),
   ];
   return message(

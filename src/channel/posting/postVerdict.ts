@@ -5,7 +5,7 @@ import type { Answer } from '../../answers/types.ts';
 import type { HostRule } from '../download/hosts.ts';
 import { shareFailedMessage } from '../messages/plainMessages.ts';
 import { plainLine, shortened } from '../messages/text.ts';
-import { type AskedBefore, type UnderstoodWords, verdictMessage } from '../messages/verdictMessage.ts';
+import { type UnderstoodWords, verdictMessage } from '../messages/verdictMessage.ts';
 import type { Poster } from './poster.ts';
 import { uploadPicture } from './uploadPicture.ts';
 import { mayPass, refusal, refusalDetails } from './webClient.ts';
@@ -28,7 +28,7 @@ export async function postVerdict(
   posting: VerdictPosting,
   answer: Answer,
   words: UnderstoodWords | null,
-  again: AskedBefore,
+  again: string,
 ): Promise<void> {
   const { poster } = posting;
   if ((await poster.posted('verdict')) !== undefined) return;
@@ -62,7 +62,7 @@ async function shown(
   answer: Answer,
   words: UnderstoodWords | null,
   fileId: string,
-  again: AskedBefore,
+  again: string,
 ): Promise<boolean> {
   for (const wait of [...SHOW_WAITS_MS, null]) {
     try {

@@ -4,18 +4,15 @@ import type { Question } from '../../requests/types.ts';
 import { understand } from '../../requests/understand.ts';
 import type { Dataset } from '../../store/types.ts';
 import { errorMessage } from '../messages/errorMessage.ts';
-import { helpMessage, noDataMessage, unchangedMessage } from '../messages/plainMessages.ts';
+import { helpMessage, noDataMessage } from '../messages/plainMessages.ts';
 import { readMessage } from '../messages/readMessage.ts';
 import type { UnderstoodWords } from '../messages/verdictMessage.ts';
 import type { Poster } from '../posting/poster.ts';
 import { postVerdict } from '../posting/postVerdict.ts';
 import { datasetFor, type Job, requestContext } from './context.ts';
 
-/**
- * Answers a question asked in words, in the thread of the poster's place. Empty words get help.
- * @param answered the dataset that has answered this very question before
- */
-export async function answerAsk(job: Job, poster: Poster, text: string, answered?: string): Promise<void> {
+/** Answers a question asked in words, in the thread of the poster's place. Empty words get help. */
+export async function answerAsk(job: Job, poster: Poster, text: string): Promise<void> {
   const { deps, workspace } = job;
   const dataset = await datasetFor(workspace, poster.place);
   if (text === '') {
@@ -35,11 +32,7 @@ export async function answerAsk(job: Job, poster: Poster, text: string, answered
       return;
     case 'ask':
       if (!dataset) await poster.post('no-data', noDataMessage(deps.practice));
-      else if (dataset.id === answered) {
-        const newest = await workspace.currentDataset(poster.place.channel);
-        const other = newest && newest.id !== dataset.id ? newest.name : undefined;
-        await poster.post('unchanged', unchangedMessage(dataset.name, other));
-      } else await answerQuestion(job, poster, dataset, words.request, words);
+      else await answerQuestion(job, poster, dataset, words.request, words);
   }
 }
 
@@ -55,10 +48,7 @@ export async function answerQuestion(
   if ((await poster.posted('verdict')) !== undefined) return;
   try {
     const answer = await deps.answers.askDataset(workspace, dataset, question);
-    await postVerdict({ client, rule, poster, log }, answer, words, {
-      text: putIntoWords(question),
-      dataset: dataset.id,
-    });
+    await postVerdict({ client, rule, poster, log }, answer, words, putIntoWords(question));
   } catch (error) {
     if (!(error instanceof EbbError)) throw error;
     await poster.post('error', errorMessage(error));

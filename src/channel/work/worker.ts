@@ -56,7 +56,7 @@ function orderKey(entry: InboxEntry): string {
 async function run(job: Job, work: Work): Promise<void> {
   switch (work.kind) {
     case 'ask':
-      return answerAsk(job, posterFor(job, work.payload), work.payload.text, work.payload.answered);
+      return answerAsk(job, posterFor(job, work.payload), work.payload.text);
     case 'command':
       return workCommand(job, work.payload);
     case 'file':
