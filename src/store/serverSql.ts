@@ -17,8 +17,11 @@ export async function openServer(databaseUrl: string, log?: Logger): Promise<Dat
     max: 10,
     application_name: 'ebbline',
   });
-  // A connection that dies while idle would otherwise end the process; the pool replaces it by itself.
-  pool.on('error', (error) => log?.warn({ err: error }, 'a database connection was lost'));
+  // A connection that dies while idle, or in use between two statements, would otherwise end the process. The pool replaces it by itself;
+  // whoever was using it learns of it at the next statement.
+  const lost = (error: Error): void => log?.warn({ err: error }, 'a database connection was lost');
+  pool.on('error', lost);
+  pool.on('connect', (client) => client.on('error', lost));
   try {
     await pool.query('SELECT 1');
   } catch (error) {

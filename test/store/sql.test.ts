@@ -45,4 +45,19 @@ onRealServer('a server that drops its connections', (engine) => {
     await store.drained(20_000);
     expect(seen.toSorted()).toEqual([before.eventKey, after.eventKey].toSorted());
   });
+
+  test('in the middle of a transaction fails that transaction alone', async () => {
+    const place = await engine.migrated();
+    const [inside, outside] = [await behind(place), await behind(place)];
+    await expect(
+      inside.transaction(async (sql) => {
+        const [own] = await sql.query<{ pid: number }>('SELECT pg_backend_pid() AS pid');
+        await outside.query('SELECT pg_terminate_backend($1)', [own!.pid]);
+        // Between two statements nobody waits for the connection; its end must not end the process.
+        await outside.query('SELECT pg_sleep(0.05)');
+        await sql.query('SELECT 1');
+      }),
+    ).rejects.toThrow();
+    expect(await inside.query('SELECT 1 AS one')).toEqual([{ one: 1 }]);
+  });
 });
