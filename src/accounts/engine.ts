@@ -22,7 +22,11 @@ export interface Engine {
   open(path?: string): Promise<DuckDBConnection>;
   /** closes the database behind a connection; its tables are gone */
   release(connection: DuckDBConnection): void;
-  close(): Promise<void>;
+  /**
+   * Closes every database and removes the engine's folder.
+   * @param leaving  the process is about to end: the memory goes with it, and taking it down table by table would only take time
+   */
+  close(leaving?: boolean): Promise<void>;
 }
 
 const quoted = (text: string): string => `'${text.replaceAll("'", "''")}'`;
@@ -65,8 +69,8 @@ export async function openEngine(options: EngineOptions = {}): Promise<Engine> {
       return connection;
     },
     release,
-    async close() {
-      for (const connection of [...instances.keys()]) release(connection);
+    async close(leaving = false) {
+      if (!leaving) for (const connection of [...instances.keys()]) release(connection);
       await rm(folder, { recursive: true, force: true });
     },
   };

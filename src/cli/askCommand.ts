@@ -22,11 +22,10 @@ export async function askCommand(options: CliOptions, around: CliSurroundings): 
     throw new EbbError('FILE_MISSING', 'no file was named', 'For example: ebb ask accounts.csv has churn moved');
   const begun = around.clock();
   // The drawing parts load while the engine reads: together they take as long as the slower of the two.
-  const warm =
-    options.picture === undefined
-      ? undefined
-      : import('../picture/picture.ts').then(({ warmPicture }) => warmPicture());
-  warm?.catch(() => undefined);
+  if (options.picture !== undefined) {
+    // A failure shows when the picture is drawn.
+    import('../picture/picture.ts').then(({ warmPicture }) => warmPicture()).catch(() => undefined);
+  }
   const engine = await openEngine();
   try {
     const bar = await progressBar(around, file);
@@ -61,7 +60,7 @@ export async function askCommand(options: CliOptions, around: CliSurroundings): 
       );
     else around.stdout(answerText(answer, name, understanding ? understoodLines(understanding) : []));
   } finally {
-    await engine.close();
+    await engine.close(around.leaving);
   }
 }
 

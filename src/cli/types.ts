@@ -4,6 +4,8 @@ export interface CliSurroundings {
   readonly stderr: (text: string) => void;
   /** milliseconds, for timing only */
   readonly clock: () => number;
+  /** true when the process ends right after the command */
+  readonly leaving: boolean;
   /** whether somebody is watching standard error */
   readonly progressWanted: boolean;
 }

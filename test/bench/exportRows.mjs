@@ -16,7 +16,7 @@ export function writeExportRows(path, rows, seed = 7) {
     const start = first + Math.floor((i * days) / rows);
     const end = start + Math.ceil(-Math.log(uniform()) * 1400);
     const plan = ['Windowsill', 'Allotment', 'Orchard'][Math.floor(uniform() * 3)];
-    text += `mrb-${(i * 7919) % rows},${plan},${iso(start)},${end < first + days + 30 ? iso(end) : ''},${(12 + uniform() * 40).toFixed(2)}\n`;
+    text += `mrb-${(i * 7919) % rows},${plan},${iso(start)},${end < first + days ? iso(end) : ''},${(12 + uniform() * 40).toFixed(2)}\n`;
     if (text.length > 1_000_000) {
       writeSync(file, text);
       text = '';

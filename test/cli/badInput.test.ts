@@ -20,6 +20,7 @@ async function ask(file: string): Promise<{ code: number; stdout: string; stderr
     stderr: (text) => {
       stderr += text;
     },
+    leaving: false,
     clock: () => performance.now(),
     progressWanted: false,
   });

@@ -13,7 +13,7 @@ export interface RunLength {
 
 /** A run this long ends the simulation without an answer: the chart can hardly flag, and a mean of cut runs would be too low. */
 const LONGEST_RUN = 20_000;
-const POINT_BUDGET = 200_000;
+const POINT_BUDGET = 150_000;
 const MOST_RUNS = 3_000;
 
 /**

@@ -10,9 +10,9 @@ export interface Detectable {
   readonly chance: number;
 }
 
-/** Bisection steps within the bracket: the answer is known to about 1/30 of the move, finer than the simulation's own error. */
+/** Bisection steps within the bracket: the answer is known to about 1/30 of the move, finer than the error of the simulation itself. */
 const STEPS = 5;
-const MOST_HISTORIES = 300;
+const MOST_HISTORIES = 200;
 const LEAST_HISTORIES = 60;
 
 /**

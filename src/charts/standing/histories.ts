@@ -4,7 +4,7 @@ import { seededUniform } from '../random/uniform.ts';
 import type { BlockDesign } from './lastBlock.ts';
 
 /** Points that may be simulated for one figure: keeps any chart, however long, within a fraction of a second. */
-const POINT_BUDGET = 250_000;
+const POINT_BUDGET = 200_000;
 const MOST_HISTORIES = 4_000;
 const LEAST_HISTORIES = 400;
 
