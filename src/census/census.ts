@@ -11,7 +11,7 @@ const SEGMENTS = 12;
 const QUARTER_DAYS = 91;
 
 /**
- * The census of method.md section 2, start view: matured accounts in order of start, ties by the stable key, in subgroups of exactly n.
+ * The census, start view: matured accounts in order of start, ties by the stable key, in subgroups of exactly n.
  * An account counts as lost when it ended on or before its tenure point. The unfinished last subgroup is withheld.
  * @throws EbbError OPTION_INVALID, SEGMENT_UNKNOWN
  */

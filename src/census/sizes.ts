@@ -3,7 +3,7 @@ export const SOON_POINTS = 6;
 const SOON_CHANCE = 0.8;
 
 /**
- * The three subgroup sizes of method.md section 2, each rounded up to a multiple of five (from 20 on).
+ * The three subgroup sizes, each rounded up to a multiple of five (from 20 on).
  * fiveLosses: at least 5 expected losses and 5 expected keepers (common practice, no source).
  * positiveLowerLimit: n > 9(1-p)/p, so that p - 3 sqrt(p(1-p)/n) > 0.
  * seesHalving: the smallest size with which a fall to p/2 is flagged within SOON_POINTS points with a chance of 80 %.

@@ -4,6 +4,7 @@ import { EbbError } from '../errors.ts';
 import type { Dataset } from '../store/types.ts';
 import { holdAcknowledgement } from './front/holdAcknowledgement.ts';
 import { httpFront } from './front/httpFront.ts';
+import { createHandler } from './jobs/worker.ts';
 import { listenToCommand } from './listeners/command.ts';
 import { listenToJoins } from './listeners/joins.ts';
 import { listenToMendView } from './listeners/mendView.ts';
@@ -15,7 +16,6 @@ import { boltLogger } from './logging.ts';
 import { stillHereMessage } from './messages/plainMessages.ts';
 import { clientOptions, refusal, webClient } from './posting/webClient.ts';
 import type { ChannelDeps } from './types.ts';
-import { createHandler } from './work/worker.ts';
 
 export type Inbound =
   | { readonly mode: 'http'; readonly signingSecret: string }

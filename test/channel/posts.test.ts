@@ -1,9 +1,9 @@
 import { describe, expect, it } from 'vitest';
 import { worthReading } from '../../src/channel/download/worthReading.ts';
 import { workOf } from '../../src/channel/inbox.ts';
+import { inOrder } from '../../src/channel/jobs/inOrder.ts';
 import { entriesOf } from '../../src/channel/listeners/posts.ts';
 import { plainWords } from '../../src/channel/plainWords.ts';
-import { inOrder } from '../../src/channel/work/inOrder.ts';
 
 const BOT = 'U0EBBLINE01';
 const envelope = { event_id: 'Ev1', team_id: 'T1' };
