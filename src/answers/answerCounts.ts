@@ -1,8 +1,8 @@
 import type { ChartKind, SubgroupCount } from '../charts/types.ts';
-import { drawPicture } from '../picture/picture.ts';
 import { chartAndJudge } from '../verdict/chartAndJudge.ts';
-import type { PictureInput, PointDates } from '../verdict/types.ts';
+import type { PointDates } from '../verdict/types.ts';
 import { writeVerdict } from '../verdict/verdict.ts';
+import { pictureOf } from './pictureOf.ts';
 import type { Answer } from './types.ts';
 
 export interface CountsQuestion {
@@ -50,21 +50,12 @@ export async function answerCounts(question: CountsQuestion): Promise<Answer> {
     readCautions: [],
   });
   const chartDone = clock();
-  const input: PictureInput = {
-    chart,
-    dates,
-    signals: judgement.signals,
-    verdict,
-    wouldSee: judgement.trust.wouldSee,
-    split: judgement.finding === 'unsteady-baseline' ? { after: judgement.steadiness!.splitAfter } : null,
-    ...(judgement.finding === 'mix-change' ? { flagsExplained: 'explained by the moving mix' } : {}),
-    waiting: null,
-    immature: 0,
-    measure: 'share lost',
-    subject: 'ready counts',
-    asOf: null,
-  };
-  const picture = question.picture ? await drawPicture(input) : null;
+  const picture = question.picture
+    ? await pictureOf(
+        { chart, dates, judgement, verdict },
+        { waiting: null, immature: 0, measure: 'share lost', subject: 'ready counts', asOf: null },
+      )
+    : null;
   const done = clock();
   return {
     verdict,

@@ -6,15 +6,15 @@ import { tenureInWords } from '../census/tenure.ts';
 import type { Census } from '../census/types.ts';
 import { type Day, dayInWords } from '../days.ts';
 import { EbbError } from '../errors.ts';
-import { drawPicture } from '../picture/picture.ts';
 import type { Question } from '../requests/types.ts';
 import { chartAndJudge } from '../verdict/chartAndJudge.ts';
 import type { VerdictContext } from '../verdict/context.ts';
 import { LEAST_POINTS } from '../verdict/judgement.ts';
-import type { PictureInput, PointDates, Verdict } from '../verdict/types.ts';
+import type { PointDates, Verdict } from '../verdict/types.ts';
 import { writeVerdict } from '../verdict/verdict.ts';
 import { capitalised, counted } from '../verdict/words/format.ts';
 import { emptyJudgement } from './emptyJudgement.ts';
+import { pictureOf } from './pictureOf.ts';
 import { readCautions } from './readCautions.ts';
 import type { Answer } from './types.ts';
 
@@ -111,26 +111,18 @@ export async function answerQuestion(table: AccountTable, question: Question, op
   const verdict = withSince(writeVerdict(chart, judgement, context), question.since);
   const chartDone = clock();
 
-  const input: PictureInput = {
-    chart,
-    dates,
-    signals: judgement.signals,
-    verdict,
-    // Of a move that the mix explains the chart of all accounts says nothing; the words give what it could hide within the groups.
-    wouldSee: judgement.finding === 'mix-change' ? null : judgement.trust.wouldSee,
-    split: judgement.finding === 'unsteady-baseline' ? { after: judgement.steadiness!.splitAfter } : null,
-    ...(judgement.finding === 'mix-change' ? { flagsExplained: 'explained by the moving mix' } : {}),
-    waiting: {
-      accounts: census.waiting,
-      of: plan.subgroupSize,
-      on: census.nextPointOn,
-    },
-    immature: census.immature,
-    measure: `lost within ${tenureWords} of starting`,
-    subject: segment === undefined ? options.subject : `${options.subject}, ${segment}`,
-    asOf,
-  };
-  const picture = options.picture ? await drawPicture(input) : null;
+  const picture = options.picture
+    ? await pictureOf(
+        { chart, dates, judgement, verdict },
+        {
+          waiting: { accounts: census.waiting, of: plan.subgroupSize, on: census.nextPointOn },
+          immature: census.immature,
+          measure: `lost within ${tenureWords} of starting`,
+          subject: segment === undefined ? options.subject : `${options.subject}, ${segment}`,
+          asOf,
+        },
+      )
+    : null;
   const done = clock();
   return {
     verdict,

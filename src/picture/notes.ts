@@ -102,7 +102,8 @@ function planNotes(input: PictureInput, unlabelled: readonly Stretch[], floor: s
 
 function cautionNotes(input: PictureInput): Note[] {
   // What holds of every answer gives way to what holds of this one.
-  const { cautions: all } = input.verdict;
+  // What the flags about the cut say has a line of its own above.
+  const all = input.verdict.cautions.filter((text) => !text.startsWith('About how the data is cut'));
   const cautions = [...all.filter((text) => !GENERAL.test(text)), ...all.filter((text) => GENERAL.test(text))];
   const baseline = input.chart?.baseline;
   if (baseline?.provisional && !cautions.some((caution) => /provisional/i.test(caution))) {
