@@ -135,7 +135,7 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = [], ste
     trust: {
       ...runLengthTrust(chart, design.correlation ?? 0),
       falseVerdictChance: threshold.falseVerdictChance,
-      wouldSee: smallestDetectable(design, chart.center, wouldSeeFrom, threshold.ratio * shrink, WOULD_SEE_CHANCE),
+      wouldSee: smallestDetectable(design, chart.center, wouldSeeFrom, calibrated.ratio * shrink, WOULD_SEE_CHANCE),
     },
     steadiness: split,
     dispersion: spread,
