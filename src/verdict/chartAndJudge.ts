@@ -4,7 +4,7 @@ import { pChart } from '../charts/kinds/pChart.ts';
 import { pPrimeChart } from '../charts/kinds/pPrimeChart.ts';
 import { LEAST_BEFORE } from '../charts/standing/lastBlock.ts';
 import type { Chart, ChartKind, SubgroupCount } from '../charts/types.ts';
-import { type Judgement, judge, LEAST_POINTS, OVERDISPERSED } from './judgement.ts';
+import { isOverdispersed, type Judgement, judge, LEAST_POINTS } from './judgement.ts';
 
 export interface ChartRequest {
   readonly counts: readonly SubgroupCount[];
@@ -36,12 +36,8 @@ const KINDS = { p: pChart, 'p-prime': pPrimeChart } as const;
 export function chartAndJudge(request: ChartRequest): JudgedChart {
   const { counts, excluded = [], segments = [] } = request;
   const last = request.baselineLast ?? recommendedBaseline(counts.length);
-  let kind = request.kind ?? 'p';
-  let usual = chartWith(last);
-  if (request.kind === undefined && isOverdispersed(usual.judgement)) {
-    kind = 'p-prime';
-    usual = chartWith(last);
-  }
+  const kind = request.kind ?? (isOverdispersed(chartOf('p', last)) ? 'p-prime' : 'p');
+  const usual = chartWith(last);
   if (request.baselineLast !== undefined || usual.judgement.finding !== 'unsteady-baseline') return usual;
   const before = usual.judgement.steadiness?.splitAfter ?? 0;
   const trial = usual.chart.baseline.last >= counts.length;
@@ -52,11 +48,11 @@ export function chartAndJudge(request: ChartRequest): JudgedChart {
   return finding === 'risen' || finding === 'fallen' || finding === 'mix-change' ? shortened : usual;
 
   function chartWith(baselineLast: number, stepProven = false): JudgedChart {
-    const chart = KINDS[kind](counts, { baselineLast: Math.min(baselineLast, counts.length), excluded });
+    const chart = chartOf(kind, baselineLast);
     return { chart, judgement: judge(chart, segments, stepProven) };
   }
-}
 
-function isOverdispersed({ dispersion }: Judgement): boolean {
-  return dispersion !== null && dispersion.pValue < OVERDISPERSED;
+  function chartOf(of: ChartKind, baselineLast: number): Chart {
+    return KINDS[of](counts, { baselineLast: Math.min(baselineLast, counts.length), excluded });
+  }
 }

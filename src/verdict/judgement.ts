@@ -10,7 +10,7 @@ import { type Standing, standingJudge } from '../charts/standing/standing.ts';
 import { type StartCandidates, startCandidates } from '../charts/standing/startCandidates.ts';
 import { LEAST_RATIO, standingThreshold } from '../charts/standing/threshold.ts';
 import { SHIFT_TESTS } from '../charts/tests/nelsonTests.ts';
-import type { Chart, SubgroupCount } from '../charts/types.ts';
+import type { Chart, ChartPoint, SubgroupCount } from '../charts/types.ts';
 import { type MixReading, readMix } from './mix.ts';
 import { readSignals } from './signals.ts';
 import type { Signal, Trust } from './types.ts';
@@ -21,7 +21,7 @@ export const LEAST_POINTS = 12;
 /** A baseline this unlikely to come from one rate is not a level to judge by. */
 const UNSTEADY = 0.01;
 /** Spread this unlikely under the binomial is taken as real. */
-export const OVERDISPERSED = 0.01;
+const OVERDISPERSED = 0.01;
 const WOULD_SEE_CHANCE = 0.8;
 
 export type Finding =
@@ -105,10 +105,9 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = [], ste
       signals: readSignals(chart, quiet, null),
     };
 
-  const used = chart.points.filter(
-    ({ index }) => index <= chart.baseline.last && !chart.baseline.excluded.includes(index),
-  );
-  const spread = excessSpread(used);
+  const used = baselinePoints(chart);
+  const step = steadiness(used);
+  const spread = spreadAround(step, used);
   // A p' chart carries the spread in its limits and its threshold. On a p chart that somebody asked for, every log likelihood ratio shrinks
   // by it (quasi-likelihood; McCullagh P and Nelder JA, Generalized Linear Models, 1989, section 4.5, section from memory).
   const excess = spread && spread.pValue < OVERDISPERSED ? Math.max(1, spread.ratio) : 1;
@@ -124,7 +123,8 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = [], ste
   // On trial limits the moved block lies in the baseline itself; the level is what lies before it.
   const blockFirst = trial && moved ? standing[moved].block.first : newest + 1;
   const level = used.filter(({ index }) => index < blockFirst);
-  const within = steadiness(level, excess);
+  // The test of the whole baseline at no excess is the one just made.
+  const within = level.length === used.length && excess === 1 ? step : steadiness(level, excess);
   // Numbered as on the chart, where left-out points count too.
   const split = within && { ...within, splitAfter: level[within.splitAfter - 1]!.index };
 
@@ -172,12 +172,24 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = [], ste
   return judged(moved === 'above' ? 'risen' : 'fallen', moved, { start, mix });
 }
 
+/** The points that set the usual level. */
+function baselinePoints({ points, baseline }: Chart): readonly ChartPoint[] {
+  return points.filter(({ index }) => index <= baseline.last && !baseline.excluded.includes(index));
+}
+
+/** True when enough points clearly vary more than the binomial allows, so that a p' chart fits and a p chart does not. */
+export function isOverdispersed(chart: Chart): boolean {
+  if (chart.points.length < LEAST_POINTS) return false;
+  const used = baselinePoints(chart);
+  const spread = spreadAround(steadiness(used), used);
+  return spread !== null && spread.pValue < OVERDISPERSED;
+}
+
 /**
  * How much the baseline's points vary beyond the binomial. One step inside the baseline must not be taken for spread: when the points are
  * clearly not of one rate, each side of the largest split is compared with its own.
  */
-function excessSpread(used: readonly SubgroupCount[]): Dispersion | null {
-  const step = steadiness(used);
+function spreadAround(step: Steadiness | null, used: readonly SubgroupCount[]): Dispersion | null {
   return step && step.pValue < UNSTEADY
     ? dispersion(used.slice(0, step.splitAfter), used.slice(step.splitAfter))
     : dispersion(used);
