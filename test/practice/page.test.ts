@@ -4,17 +4,12 @@ import { request } from 'node:http';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import type { App } from '@slack/bolt';
-import { type Browser, chromium, type Page } from 'playwright-core';
+import type { Browser, Page } from 'playwright-core';
 import { build } from 'vite';
 import { afterAll, afterEach, beforeAll, beforeEach, describe, expect, it } from 'vitest';
 import type { PracticeService } from '../../src/practice/service.ts';
+import { browserMissing, launchBrowser } from '../support/browser.ts';
 import { call, startHttpApp, startService } from './support.ts';
-
-const CHROMIUM = '/usr/bin/chromium';
-const missing = !existsSync(CHROMIUM);
-if (missing && process.env.CI) throw new Error(`the browser tests need ${CHROMIUM}: apt-get install -y chromium`);
-if (missing)
-  console.warn(`browser tests of the practice page are skipped: there is no ${CHROMIUM} (apt-get install -y chromium)`);
 
 describe('the page’s own addresses', () => {
   let service: PracticeService;
@@ -141,7 +136,7 @@ function answering(app: App): void {
   app.command('/ebb', async ({ ack }) => ack('what I can do'));
 }
 
-describe.skipIf(missing)('the page in a browser', () => {
+describe.skipIf(browserMissing)('the page in a browser', () => {
   let service: PracticeService;
   let browser: Browser;
   let page: Page;
@@ -157,7 +152,7 @@ describe.skipIf(missing)('the page in a browser', () => {
     }
     folder = await mkdtemp(join(tmpdir(), 'practice-'));
     await writeFile(join(folder, 'sample.csv'), 'id,start,end\n1,2025-01-02,\n');
-    browser = await chromium.launch({ executablePath: CHROMIUM, args: ['--no-sandbox'] });
+    browser = await launchBrowser();
   });
   afterAll(async () => {
     await browser?.close();

@@ -77,5 +77,4 @@ export const richTextSchema = z.strictObject({
 });
 
 export type RichText = z.infer<typeof richTextSchema>;
-export type RichTextPart = z.infer<typeof richTextPartSchema>;
 export type RichTextElement = z.infer<typeof richTextElementSchema>;

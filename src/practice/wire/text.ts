@@ -45,7 +45,6 @@ export const confirmSchema = z.strictObject({
   style: z.enum(['primary', 'danger']).optional(),
 });
 
-export type PlainText = z.infer<ReturnType<typeof plainText>>;
 export type AnyText = z.infer<ReturnType<typeof anyText>>;
 export type Option = z.infer<typeof optionSchema>;
 export type Confirm = z.infer<typeof confirmSchema>;

@@ -32,5 +32,3 @@ export const homeSchema = z.strictObject({ type: z.literal('home'), ...viewField
 export const viewSchema = z.discriminatedUnion('type', [modalSchema, homeSchema]);
 
 export type ViewInput = z.infer<typeof viewSchema>;
-export type ModalInput = z.infer<typeof modalSchema>;
-export type HomeInput = z.infer<typeof homeSchema>;

@@ -119,8 +119,8 @@ export function onEmbedded(what: string, tests: (engine: Engine) => void): void 
 }
 
 export function onRealServer(what: string, tests: (engine: Engine) => void): void {
-  if (typeof server === 'string') describe.skip(`${what} (server; skipped: ${server})`, () => tests(onServer));
-  else describe(`${what} (server)`, () => tests(onServer));
+  const missing = typeof server === 'string';
+  describe.skipIf(missing)(`${what} (server${missing ? `; skipped: ${server}` : ''})`, () => tests(onServer));
 }
 
 /** A store that is closed when the file is done, unless the test closed it. */
