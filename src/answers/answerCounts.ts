@@ -1,5 +1,5 @@
 import type { ChartKind, SubgroupCount } from '../charts/types.ts';
-import { chartAndJudge } from '../verdict/chartAndJudge.ts';
+import { chartAndJudge, isSubgroupKind } from '../verdict/chartAndJudge.ts';
 import type { PointDates } from '../verdict/types.ts';
 import { writeVerdict } from '../verdict/verdict.ts';
 import { pictureOf } from './pictureOf.ts';
@@ -22,7 +22,7 @@ export async function answerCounts(question: CountsQuestion): Promise<Answer> {
     counts,
     ...(question.baseline === undefined ? {} : { baselineLast: question.baseline }),
     ...(question.excluded ? { excluded: question.excluded } : {}),
-    ...(question.chart ? { kind: question.chart } : {}),
+    ...(isSubgroupKind(question.chart) ? { kind: question.chart } : {}),
   });
   const dates: PointDates[] = counts.map(() => ({
     firstStart: null,

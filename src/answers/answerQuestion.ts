@@ -7,7 +7,7 @@ import type { Census } from '../census/types.ts';
 import { type Day, dayInWords } from '../days.ts';
 import { EbbError } from '../errors.ts';
 import type { Question } from '../requests/types.ts';
-import { chartAndJudge } from '../verdict/chartAndJudge.ts';
+import { chartAndJudge, isSubgroupKind } from '../verdict/chartAndJudge.ts';
 import type { VerdictContext } from '../verdict/context.ts';
 import { LEAST_POINTS } from '../verdict/judgement.ts';
 import type { PointDates, Verdict } from '../verdict/types.ts';
@@ -76,7 +76,7 @@ export async function answerQuestion(table: AccountTable, question: Question, op
           counts: census.subgroups,
           segments: census.segments,
           ...baseline,
-          ...(question.chart ? { kind: question.chart } : {}),
+          ...(isSubgroupKind(question.chart) ? { kind: question.chart } : {}),
         })
       : { chart: null, judgement: emptyJudgement() };
   const tenureWords = tenureInWords(tenure);

@@ -19,8 +19,14 @@ export interface SubgroupCount {
   readonly lost: number;
 }
 
-/** The chart kinds built so far. */
-export type ChartKind = 'p' | 'p-prime';
+/**
+ * p and p-prime: lost share per subgroup; g: accounts from one loss to the next; t: days from one loss to the next; individuals: any ratio
+ * that is no count; ewma: the smoothed lost share; cusum: the account-by-account sum.
+ */
+export type ChartKind = 'p' | 'p-prime' | 'g' | 't' | 'individuals' | 'ewma' | 'cusum';
+
+/** What the plotted values are: fractions, whole accounts, days, or a score without a unit. */
+export type ValueScale = 'rate' | 'accounts' | 'days' | 'score';
 
 /** Points are numbered from 1 in time order. */
 export interface ChartPoint {
@@ -50,6 +56,8 @@ export interface Baseline {
 
 export interface Chart {
   readonly kind: ChartKind;
+  /** what the values are; fractions when absent */
+  readonly scale?: ValueScale;
   /** for a p' chart: how much more the points vary than the binomial allows, as a factor on sigma; else 1 */
   readonly sigmaZ: number;
   /** n when every subgroup has the same size, else null */

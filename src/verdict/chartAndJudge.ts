@@ -9,7 +9,7 @@ import { isOverdispersed, type Judgement, judge, LEAST_POINTS } from './judgemen
 export interface ChartRequest {
   readonly counts: readonly SubgroupCount[];
   /** the kind somebody asked for; else the one that fits */
-  readonly kind?: ChartKind;
+  readonly kind?: SubgroupKind;
   /** last baseline point, when the asker fixed it; else the recommended one, shortened if a move begins inside it */
   readonly baselineLast?: number;
   readonly excluded?: readonly number[];
@@ -22,6 +22,13 @@ export interface JudgedChart {
 }
 
 const KINDS = { p: pChart, 'p-prime': pPrimeChart } as const;
+
+/** The kinds that chart ready counts per subgroup and are judged with the binomial. */
+export type SubgroupKind = keyof typeof KINDS;
+
+export function isSubgroupKind(kind: ChartKind | undefined): kind is SubgroupKind {
+  return kind !== undefined && kind in KINDS;
+}
 
 /**
  * Charts the counts and judges them.
@@ -52,7 +59,7 @@ export function chartAndJudge(request: ChartRequest): JudgedChart {
     return { chart, judgement: judge(chart, segments, stepProven) };
   }
 
-  function chartOf(of: ChartKind, baselineLast: number): Chart {
+  function chartOf(of: SubgroupKind, baselineLast: number): Chart {
     return KINDS[of](counts, { baselineLast: Math.min(baselineLast, counts.length), excluded });
   }
 }
