@@ -1,3 +1,5 @@
+import type { ZoneEdges } from './tests/zoneEdges.ts';
+
 /*
  * The nouns of the charts.
  *
@@ -39,6 +41,8 @@ export interface ChartPoint {
   /** 3 sigma limits, clipped to [0, 1] for a rate */
   readonly lower: number;
   readonly upper: number;
+  /** where the zones end, when they come from tail areas and not from multiples of sigma */
+  readonly edges?: ZoneEdges;
 }
 
 export interface Baseline {
@@ -69,6 +73,9 @@ export interface Chart {
 
 /** Nelson (1984) numbering. */
 export type TestNumber = 1 | 2 | 3 | 4 | 5 | 6 | 7 | 8;
+
+/** The tests that may raise a shift. */
+export type ShiftTest = 1 | 2 | 3 | 5 | 6;
 
 /** Side of the centre line the members lie on; `rising`/`falling` trends report the side they move to. */
 export type Side = 'above' | 'below' | 'both';

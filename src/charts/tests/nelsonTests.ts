@@ -1,12 +1,15 @@
 import type { Side, TestEpisode, TestNumber } from '../types.ts';
 import { PatternMachine, patternBit, TEST_SPAN } from './patterns.ts';
 import { moveOf, zoneOf } from './zone.ts';
+import { type ZoneEdges, zoneBetween } from './zoneEdges.ts';
 
 /** A plotted value with the centre line and sigma it is judged by. */
 export interface JudgedValue {
   readonly value: number;
   readonly center: number;
   readonly sigma: number;
+  /** where the zones end, when they are no multiples of sigma */
+  readonly edges?: ZoneEdges;
 }
 
 /** Tests that speak about a shift; the others speak about how the data was cut. */
@@ -35,7 +38,7 @@ export function nelsonTests(points: readonly JudgedValue[]): TestEpisode[] {
   const zones: number[] = [];
   const held: number[] = [];
   points.forEach((point, i) => {
-    const zone = zoneOf(point.value, point.center, point.sigma);
+    const zone = point.edges ? zoneBetween(point.value, point.edges) : zoneOf(point.value, point.center, point.sigma);
     zones.push(zone);
     held.push(machine.push(zone, i === 0 ? 0 : moveOf(points[i - 1]!.value, point.value)));
   });

@@ -1,6 +1,11 @@
 /** A few units in the last place: rates that are equal by arithmetic must be equal here, however they were computed. */
 const ULPS = 8 * Number.EPSILON;
 
+/** Equal up to the rounding of a few operations. */
+export function sameByArithmetic(a: number, b: number): boolean {
+  return Math.abs(a - b) <= ULPS * Math.max(Math.abs(a), Math.abs(b));
+}
+
 /**
  * Where a value lies, as a signed zone: 0 on the centre line, 1 within 1 sigma (zone C), 2 from 1 to 2 (B), 3 from 2 to 3 (A),
  * 4 beyond 3 sigma; negative below the centre line. "Beyond" is strict, with a tolerance of a few ulps.
