@@ -6,7 +6,8 @@ export interface Tenure {
   readonly unit: 'day' | 'week' | 'month';
 }
 
-export type CensusView = 'start';
+/** start: accounts in order of start; renewal: renewals in order of their date; calendar: customers of each calendar month. */
+export type CensusView = 'start' | 'renewal' | 'calendar';
 
 export interface CensusRequest {
   readonly tenure: Tenure;

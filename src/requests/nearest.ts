@@ -11,7 +11,7 @@ const WINDOWS = set(
 
 const onePlan = (context: RequestContext): string =>
   context.segments.length > 0
-    ? `I look at groups one at a time. Name one ${context.segmentColumn ?? 'group'} in the question: ${shortList(context.segments)}.`
+    ? `I look at groups one at a time, or side by side when you ask “where has churn moved?”. Name one ${context.segmentColumn ?? 'group'} in the question: ${shortList(context.segments)}.`
     : 'This export has no column that tells groups apart, so I can only look at all accounts together.';
 
 /** What is often asked for and not there yet, with the nearest thing that is. The first row with a word of the piece wins. */
@@ -31,21 +31,17 @@ const ROWS: readonly (readonly [ReadonlySet<string>, Nearest])[] = [
     'I count accounts and never name them. I can say how many of a subgroup were lost.',
   ],
   [
-    set('revenue mrr arr money dollar dollars euro euros net gross nrr grr amount value ltv clv lifetime'),
-    'I count accounts lost, not money. I can say whether the share of accounts lost has moved.',
-  ],
-  [
-    set('target goal benchmark benchmarks industry average competitor competitors norm'),
+    set('benchmark benchmarks industry average competitor competitors norm'),
     'I compare this business only with its own usual level. I can say whether churn has moved away from that.',
   ],
   [
     set('monthly weekly daily calendar mom yoy wow annual annually yearly quarterly'),
-    'I do not count by calendar month: I read every account at one fixed age. Say the age, such as “at 1 month” or “at 12 months”.',
+    'I read every account at one fixed age. Say the age, such as “at 1 month” or “at 12 months”, or ask for the calendar view with “by calendar month”.',
   ],
   [WINDOWS, 'I judge by when accounts started. Say the first start date you mean, such as “since 1 March 2025”.'],
   [
     set('renewal renewals renew renewed renewing'),
-    'I count from the start of an account, not from its renewals. Say an age just after the renewal, such as “at 12 months”.',
+    'I count from the start of an account unless you say “by renewal date”; or say an age just after the renewal, such as “at 12 months”.',
   ],
   [
     set(

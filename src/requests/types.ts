@@ -1,10 +1,9 @@
-import type { Tenure } from '../census/types.ts';
-import type { ChartKind } from '../charts/types.ts';
+import type { CensusView, Tenure } from '../census/types.ts';
+import type { ChartKind, ShiftTest } from '../charts/types.ts';
 import type { Day } from '../days.ts';
 
-/** "has churn moved?" with whatever the asker pinned down; everything left out is recommended from the data. */
-export interface Question {
-  readonly kind: 'ask';
+/** Which accounts, at which age, counted how: what any question may pin down; everything left out is recommended from the data. */
+export interface Scope {
   readonly tenure?: Tenure;
   readonly subgroupSize?: number;
   /** number of points the usual level is taken from */
@@ -16,11 +15,37 @@ export interface Question {
   readonly settleDays?: number;
   /** the kind of chart somebody insists on; else the one that fits */
   readonly chart?: ChartKind;
+  /** how accounts are ordered and cut; by start when absent */
+  readonly view?: CensusView;
+  /** shift tests that decide; all of them when absent. Set by options and settings, not in words. */
+  readonly tests?: readonly ShiftTest[];
 }
 
-/** All that can be asked for in words so far. */
+/** "has churn moved?" */
+export interface Question extends Scope {
+  readonly kind: 'ask';
+}
+
+/** The questions that come before and after "has it moved?". */
+export type SideQuestion = Scope &
+  (
+    | { readonly kind: 'where' | 'revenue' | 'worth' | 'spread' | 'explain' }
+    /** `move`: the change that should be seen, as a factor on the rate (0.5 a halving); `within`: points it should take */
+    | { readonly kind: 'plan'; readonly move?: number; readonly within?: number }
+    /** `move`: the change the watch is designed for, as a factor on the rate; both directions by half when absent */
+    | { readonly kind: 'early'; readonly move?: number }
+    /** `rate`: the figure somebody reported; `decimals`: of the percentage as it was given; `month`: first day of the month it is about */
+    | { readonly kind: 'reconcile'; readonly rate: number; readonly decimals: number; readonly month?: Day }
+    | { readonly kind: 'target'; readonly rate: number }
+  );
+
+export type SideKind = SideQuestion['kind'];
+export type SideQuestionOf<K extends SideKind> = Extract<SideQuestion, { readonly kind: K }>;
+
+/** All that can be asked for in words. */
 export type Request =
   | Question
+  | SideQuestion
   | { readonly kind: 'help' }
   /** what was read from the current export, and the means to mend it */
   | { readonly kind: 'data' };

@@ -1,6 +1,7 @@
 import type { Day } from '../days.ts';
 import { baselinePhrase, settlePhrase, subgroupSizePhrase } from './countPhrases.ts';
 import { asOfPhrase, sincePhrase } from './datePhrases.ts';
+import { kindPhrase } from './kindPhrase.ts';
 import { isNoise, leftovers } from './leftovers.ts';
 import { ASKING } from './noise.ts';
 import { putIntoWords } from './putIntoWords.ts';
@@ -8,10 +9,11 @@ import { ratePhrase } from './ratePhrase.ts';
 import { segmentPhrase } from './segmentPhrase.ts';
 import { tenurePhrase } from './tenurePhrase.ts';
 import { type Token, tokens } from './tokens.ts';
-import type { Question, Request, RequestContext, Understanding } from './types.ts';
+import type { Question, Request, RequestContext, Scope, SideQuestion, Understanding } from './types.ts';
+import { chartPhrase, viewPhrase } from './viewPhrase.ts';
 
 type Found = { readonly from: number; readonly to: number };
-type Draft = { -readonly [K in keyof Question]: Question[K] };
+type Draft = { -readonly [K in keyof Scope]: Scope[K] };
 type Pieces = Understanding['notUnderstood'];
 
 const ABOUT_RATE =
@@ -35,8 +37,15 @@ export function understand(text: string, context: RequestContext): Understanding
   if (other) return { request: other, understood: putIntoWords(other), notUnderstood: [] };
 
   const problems: { text: string; nearest: string }[] = [];
-  const request = question(sentence, list, context, problems);
-  const asksNothing = list.length > 0 && !list.some((token) => token.used || ASKING.has(token.text));
+  const asked = kindPhrase(sentence, list, context.segmentColumn, context.asOf ?? context.today);
+  if (asked?.kind === 'lacking') {
+    problems.push({ text: sentence.slice(list[asked.from]!.from, list[asked.to - 1]!.to), nearest: asked.nearest });
+    return { request: { kind: 'help' }, understood: 'help', notUnderstood: problems };
+  }
+  const scope = readScope(sentence, list, context, problems);
+  const request: Question | SideQuestion = asked ? { ...scope, ...asked } : { ...scope, kind: 'ask' };
+  const asksNothing =
+    asked === undefined && list.length > 0 && !list.some((token) => token.used || ASKING.has(token.text));
   const rate = asksNothing ? undefined : ratePhrase(list);
   if (rate) {
     problems.push({ text: sentence.slice(list[rate.from]!.from, list[rate.to - 1]!.to), nearest: ABOUT_RATE });
@@ -60,13 +69,14 @@ function otherThanAsk(meant: readonly string[]): Request | undefined {
   return undefined;
 }
 
-function question(
+/** What the sentence pins down, whichever question it asks. */
+function readScope(
   sentence: string,
   list: Token[],
   context: RequestContext,
   problems: { text: string; nearest: string }[],
-): Question {
-  const draft: Draft = { kind: 'ask' };
+): Scope {
+  const draft: Draft = {};
   const column = context.segmentColumn;
   const use = (found: Found): void => {
     for (let i = found.from; i < found.to; i++) list[i]!.used = true;
@@ -88,6 +98,10 @@ function question(
     }
   }
 
+  const chart = chartPhrase(list);
+  if (chart) draft.chart = chart;
+  const view = viewPhrase(list);
+  if (view) draft.view = view;
   const settle = settlePhrase(list);
   if (settle && whole(settle.value, 0, 3_650)) {
     use(settle);
