@@ -6,25 +6,24 @@ const level = (mean: number): SeriesLevel => ({ mean, sigma: mean });
 /** Several losses on one day: taken as this long a stretch in all, so that a likelihood never becomes infinite. */
 const LEAST_SUM = 0.5;
 
-const likelihoods: Pick<SeriesFamily, 'fit' | 'maxLogLikelihood' | 'logLikelihood' | 'summand' | 'moved' | 'levelOf'> =
-  {
-    fit(values, open = 0) {
-      let sum = open;
-      for (let i = 0; i < values.length; i++) sum += values[i]!;
-      return values.length === 0 || sum <= 0 ? null : level(sum / values.length);
-    },
-    maxLogLikelihood: (count, sum) => (count > 0 ? count * Math.log(count / Math.max(sum, LEAST_SUM)) - count : 0),
-    logLikelihood: (count, sum, { mean }) => -count * Math.log(mean) - Math.max(sum, LEAST_SUM) / mean,
-    summand: (value) => value,
-    moved: ({ mean }, size) => level(mean * Math.exp(size)),
-    levelOf: (count, sum, { mean }) => level(count > 0 ? Math.max(sum, LEAST_SUM) / count : Math.max(sum, mean)),
-  };
+const likelihoods: Pick<SeriesFamily, 'fit' | 'maxLogLikelihood' | 'logLikelihood' | 'moved' | 'levelOf'> = {
+  fit(values, open = 0) {
+    let sum = open;
+    for (let i = 0; i < values.length; i++) sum += values[i]!;
+    return values.length === 0 || sum <= 0 ? null : level(sum / values.length);
+  },
+  maxLogLikelihood: (count, sum) => (count > 0 ? count * Math.log(count / Math.max(sum, LEAST_SUM)) - count : 0),
+  logLikelihood: (count, sum, { mean }) => -count * Math.log(mean) - Math.max(sum, LEAST_SUM) / mean,
+  moved: ({ mean }, size) => level(mean * Math.exp(size)),
+  levelOf: (count, sum, { mean }) => level(count > 0 ? Math.max(sum, LEAST_SUM) / count : Math.max(sum, mean)),
+};
 
 /** Times from one loss to the next, measured as finely as one likes, when losses come independently at a steady pace: exponential. */
 export const exponentialGaps: SeriesFamily = {
   name: 'exponential',
   above: 'less-churn',
   openEnded: true,
+  exposure: (value) => value,
   ...likelihoods,
   edges: ({ mean }) => exponentialEdges(mean),
   sampler:
@@ -42,6 +41,7 @@ export const wholeDayGaps: SeriesFamily = {
   name: 'whole-exponential',
   above: 'less-churn',
   openEnded: true,
+  exposure: (value) => value,
   ...likelihoods,
   edges: ({ mean }) => wholeDayEdges(mean),
   sampler:

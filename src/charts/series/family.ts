@@ -15,11 +15,13 @@ export interface SeriesLevel {
  * up to. That is what lets the judge look at every possible last stretch of thousands of simulated histories.
  */
 export interface SeriesFamily {
-  readonly name: 'geometric' | 'exponential' | 'whole-exponential' | 'normal' | 'power-normal';
+  readonly name: 'geometric' | 'exponential' | 'whole-exponential' | 'normal';
   /** what values above the usual level say about churn: a longer gap is less of it */
   readonly above: 'less-churn' | 'more-churn';
   /** true when a last, unfinished value is evidence too: it is at least what it has reached so far */
   readonly openEnded: boolean;
+  /** what a value uses up of the history it is part of: accounts, days, or one point */
+  exposure(value: number): number;
   /**
    * The usual level of these values, in time order.
    * @param open  what an unfinished last value has reached so far; 0 when there is none
@@ -37,8 +39,6 @@ export interface SeriesFamily {
   maxLogLikelihood(count: number, sum: number, level: SeriesLevel): number;
   /** the same at a given level's mean */
   logLikelihood(count: number, sum: number, level: SeriesLevel): number;
-  /** what a value adds to `sum`; the value itself, or its transform */
-  summand(value: number): number;
   /** the level with its mean moved: up for size > 0, down for size < 0, by about `size` sigma of a single value */
   moved(level: SeriesLevel, size: number): SeriesLevel;
   /** the level at which a stretch is most likely */

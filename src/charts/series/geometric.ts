@@ -12,6 +12,7 @@ export const geometricGaps: SeriesFamily = {
   name: 'geometric',
   above: 'less-churn',
   openEnded: true,
+  exposure: (value) => value + 1,
   fit(values, open = 0) {
     let sum = open;
     for (let i = 0; i < values.length; i++) sum += values[i]!;
@@ -21,7 +22,6 @@ export const geometricGaps: SeriesFamily = {
   maxLogLikelihood: (count, sum) =>
     count > 0 && sum > 0 ? count * Math.log(count / (count + sum)) + sum * Math.log(sum / (count + sum)) : 0,
   logLikelihood: (count, sum, { mean }) => -count * Math.log1p(mean) - sum * Math.log1p(1 / mean),
-  summand: (value) => value,
   moved: ({ mean }, size) => level(mean * Math.exp(size)),
   levelOf: (count, sum, { mean }) => level(count > 0 ? Math.max(sum, 0.5) / count : Math.max(sum, mean)),
   sampler({ mean }) {

@@ -16,11 +16,11 @@ export function normalIndividuals(above: SeriesFamily['above']): SeriesFamily {
     name: 'normal',
     above,
     openEnded: false,
+    exposure: () => 1,
     fit: (values) => movingRangeLevel(values),
     edges: ({ mean, sigma }) => symmetricEdges(mean, sigma),
     maxLogLikelihood: (count, sum, { sigma }) => (count > 0 ? (sum * sum) / (2 * count * sigma * sigma) : 0),
     logLikelihood: (count, sum, { mean, sigma }) => (mean * sum - (count * mean * mean) / 2) / (sigma * sigma),
-    summand: (value) => value,
     moved: ({ mean, sigma }, size) => ({ mean: mean + size * sigma, sigma }),
     levelOf: (count, sum, { mean, sigma }) => ({ mean: count > 0 ? sum / count : mean, sigma }),
     sampler:

@@ -18,7 +18,7 @@ export const CANDIDATE_COVERAGE = 0.9;
  * and moves that read so look larger and better dated than they are. Simulated over moves that were read (2,000 to 5,000 accounts, rises by
  * 30 % to falls by 60 %, begun 7 to 32 points ago): cut at 90 %, 84 to 93 % of the sets hold the true start; cut at 95 %, 92 to 96 %.
  */
-const CALIBRATED_AT = 0.95;
+export const CALIBRATED_AT = 0.95;
 const MOST_HISTORIES = 600;
 const LEAST_HISTORIES = 200;
 

@@ -33,6 +33,12 @@ export function standingThreshold(design: BlockDesign, rate: number, seed = 1): 
     const { above, below } = judge(lost);
     scores.push(Math.max(above.score, below.score));
   });
+  return calibrated(scores);
+}
+
+/** The ratio that the aimed share of these scores exceeds, each the higher of the two sides of one history in which nothing changed. */
+export function calibrated(scores: number[]): Threshold {
+  const histories = scores.length;
   scores.sort((a, b) => a - b);
   const ratio = Math.max(LEAST_RATIO, scores[Math.ceil(histories * (1 - AIMED_FALSE_VERDICTS)) - 1]!);
   const moved = scores.filter((score) => score > ratio).length / histories;
