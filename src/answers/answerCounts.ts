@@ -1,8 +1,9 @@
 import type { ChartKind, SubgroupCount } from '../charts/types.ts';
+import { drawPicture } from '../picture/picture.ts';
 import { chartAndJudge, isSubgroupKind } from '../verdict/chartAndJudge.ts';
 import type { PointDates } from '../verdict/types.ts';
 import { writeVerdict } from '../verdict/verdict.ts';
-import { pictureOf } from './pictureOf.ts';
+import { drawnFrom } from './drawnFrom.ts';
 import type { Answer } from './types.ts';
 
 export interface CountsQuestion {
@@ -51,10 +52,18 @@ export async function answerCounts(question: CountsQuestion): Promise<Answer> {
   });
   const chartDone = clock();
   const picture = question.picture
-    ? await pictureOf(
-        { chart, dates, judgement, verdict },
-        { waiting: null, immature: 0, measure: 'share lost', subject: 'ready counts', asOf: null },
-      )
+    ? await drawPicture({
+        ...drawnFrom(judgement),
+        chart,
+        dates,
+        signals: judgement.signals,
+        verdict,
+        waiting: null,
+        immature: 0,
+        measure: 'share lost',
+        subject: 'ready counts',
+        asOf: null,
+      })
     : null;
   const done = clock();
   return {
@@ -63,6 +72,7 @@ export async function answerCounts(question: CountsQuestion): Promise<Answer> {
     dates,
     signals: judgement.signals,
     trust: judgement.trust,
+    judgement,
     report: null,
     census: null,
     plan: null,

@@ -5,6 +5,7 @@ import type { AccountTable } from '../accounts/types.ts';
 import { EbbError } from '../errors.ts';
 import type { Dataset, WorkspaceStore } from '../store/types.ts';
 import { answerQuestion } from './answerQuestion.ts';
+import { answerSide } from './questions/answerSide.ts';
 import type { Answers, Ingested } from './types.ts';
 
 type Engine = Awaited<ReturnType<typeof openEngine>>;
@@ -155,6 +156,14 @@ export function createAnswers(deps: AnswersDeps): Answers {
           readMs: clock() - begun,
         }),
       );
+    },
+
+    async askSide(workspace, dataset, request) {
+      const begun = clock();
+      const { reply } = await withAccounts(workspace, dataset, (table) =>
+        answerSide(table, request, { subject: dataset.name, picture: true, clock, readMs: clock() - begun }),
+      );
+      return reply;
     },
 
     async close() {

@@ -3,9 +3,11 @@ import type { Census, CensusPlan, Tenure } from '../census/types.ts';
 import type { Chart } from '../charts/types.ts';
 import type { EbbError } from '../errors.ts';
 import type { Picture } from '../picture/picture.ts';
-import type { Question } from '../requests/types.ts';
+import type { Question, SideQuestion } from '../requests/types.ts';
 import type { Dataset, Upload, WorkspaceStore } from '../store/types.ts';
+import type { Judgement } from '../verdict/judgement.ts';
 import type { PointDates, Signal, Trust, Verdict } from '../verdict/types.ts';
+import type { Reply } from './questions/types.ts';
 
 export interface Timing {
   readonly readMs: number;
@@ -22,6 +24,8 @@ export interface Answer {
   readonly dates: readonly PointDates[];
   readonly signals: readonly Signal[];
   readonly trust: Trust;
+  /** what the numbers say before any words; null for charts that are not judged by the binomial */
+  readonly judgement: Judgement | null;
   readonly report: ReadReport | null;
   readonly census: Census | null;
   readonly plan: CensusPlan | null;
@@ -52,6 +56,8 @@ export interface Answers {
   ask(workspace: WorkspaceStore, channelId: string, question: Question): Promise<Answer>;
   /** answers for one dataset */
   askDataset(workspace: WorkspaceStore, dataset: Dataset, question: Question): Promise<Answer>;
+  /** answers one of the questions around the verdict, for one dataset */
+  askSide(workspace: WorkspaceStore, dataset: Dataset, request: SideQuestion): Promise<Reply>;
   close(): Promise<void>;
 }
 

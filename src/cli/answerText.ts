@@ -7,11 +7,12 @@ export function answerText(answer: Answer, name: string, understood: readonly st
   const blocks: string[][] = [];
   if (understood.length > 0) blocks.push([...understood]);
   if (answer.report) blocks.push(readText(answer.report, name));
-  blocks.push(...verdictBlocks(answer.verdict));
+  blocks.push(...wordBlocks(answer.verdict));
   return `${blocks.map((lines) => lines.join('\n')).join('\n\n')}\n`;
 }
 
-function verdictBlocks(verdict: Verdict): string[][] {
+/** Headline, what it rests on, what to keep in mind and what next, as blocks of lines. */
+export function wordBlocks(verdict: Pick<Verdict, 'headline' | 'evidence' | 'cautions' | 'next'>): string[][] {
   const listed = (title: string, lines: readonly string[]): string[] =>
     lines.length === 0 ? [] : [title, ...lines.map((line) => `  - ${line}`)];
   return [

@@ -1,8 +1,8 @@
 import { parseArgs } from 'node:util';
 import type { ColumnMap, ColumnRole, DateOrder } from '../accounts/types.ts';
 import { parseTenure } from '../census/parseTenure.ts';
-import type { Tenure } from '../census/types.ts';
-import type { ChartKind } from '../charts/types.ts';
+import type { CensusView, Tenure } from '../census/types.ts';
+import type { ChartKind, ShiftTest } from '../charts/types.ts';
 import { type Day, dayFromIso } from '../days.ts';
 import { EbbError } from '../errors.ts';
 
@@ -25,9 +25,27 @@ export interface CliOptions {
   readonly points?: string;
   readonly counts?: string;
   readonly sizes?: string;
+  /** ready values of a chart that is no count: gaps for g and t, ratios for individuals */
+  readonly values?: string;
+  readonly by?: CensusView;
+  readonly tests?: readonly ShiftTest[];
 }
 
-export type Command = 'ask' | 'chart';
+/** Commands that read an export: the plain question, and one for each question around the verdict. */
+export const FILE_COMMANDS = [
+  'ask',
+  'where',
+  'plan',
+  'early',
+  'revenue',
+  'reconcile',
+  'worth',
+  'target',
+  'spread',
+  'explain',
+] as const;
+export type FileCommand = (typeof FILE_COMMANDS)[number];
+export type Command = FileCommand | 'chart';
 
 const KNOWN = {
   'as-of': { type: 'string' },
@@ -43,25 +61,28 @@ const KNOWN = {
   points: { type: 'string' },
   counts: { type: 'string' },
   sizes: { type: 'string' },
+  values: { type: 'string' },
+  tests: { type: 'string' },
   json: { type: 'boolean' },
   help: { type: 'boolean', short: 'h' },
   version: { type: 'boolean' },
 } as const;
 
 /** Options that only one command has a use for. */
-const ONLY: Readonly<Record<Command, readonly string[]>> = {
-  ask: ['as-of', 'tenure', 'subgroup-size', 'segment', 'by', 'columns', 'dates'],
-  chart: ['counts', 'sizes'],
-};
+const ONLY = {
+  file: ['as-of', 'tenure', 'subgroup-size', 'segment', 'by', 'columns', 'dates'],
+  chart: ['counts', 'sizes', 'values'],
+} as const;
 
 /** Names of the options a command has a use for. */
 export function optionsOf(command: Command): string[] {
-  const others = ONLY[command === 'ask' ? 'chart' : 'ask'];
+  const others: readonly string[] = ONLY[command === 'chart' ? 'file' : 'chart'];
   return Object.keys(KNOWN).filter((name) => !others.includes(name));
 }
 
 const ROLES: readonly ColumnRole[] = ['id', 'start', 'end', 'segment', 'amount'];
-const CHARTS: readonly (ChartKind | 'auto')[] = ['auto', 'p', 'p-prime'];
+const CHARTS: readonly (ChartKind | 'auto')[] = ['auto', 'p', 'p-prime', 'g', 't', 'individuals', 'ewma', 'cusum'];
+const VIEWS: readonly CensusView[] = ['start', 'renewal', 'calendar'];
 const ORDERS: readonly DateOrder[] = ['iso', 'dmy', 'mdy'];
 
 /**
@@ -70,17 +91,16 @@ const ORDERS: readonly DateOrder[] = ['iso', 'dmy', 'mdy'];
  */
 export function readArguments(command: Command, args: readonly string[]): CliOptions {
   const { values, positionals } = parse(command, args);
-  const lost = command === 'ask' ? ONLY.chart.find((name) => name in values) : undefined;
+  const lost = command === 'chart' ? undefined : ONLY.chart.find((name) => name in values);
   if (lost !== undefined) {
     throw new EbbError(
       'OPTION_UNKNOWN',
-      `ask has no option --${lost}`,
+      `${command} has no option --${lost}`,
       'Ready counts are charted by: ebb chart --counts "12,15,8" --sizes 50',
     );
   }
-  onlyChoice('by', values.by, ['start'], ['renewal', 'calendar']);
-  onlyChoice('chart', values.chart, CHARTS, ['g', 't', 'individuals', 'ewma', 'cusum']);
-  const chart = CHARTS.find((kind) => kind === values.chart);
+  const by = values.by === undefined ? undefined : choice('--by', values.by, VIEWS);
+  const chart = values.chart === undefined ? undefined : choice('--chart', values.chart, CHARTS);
   const segment = values.segment === undefined ? undefined : columnValue(values.segment);
   const columns = values.columns === undefined ? undefined : columnMap(values.columns);
   const named = segment ? { ...columns, segment: segment.column } : columns;
@@ -103,6 +123,9 @@ export function readArguments(command: Command, args: readonly string[]): CliOpt
     ...(values.points === undefined ? {} : { points: values.points }),
     ...(values.counts === undefined ? {} : { counts: values.counts }),
     ...(values.sizes === undefined ? {} : { sizes: values.sizes }),
+    ...(values.values === undefined ? {} : { values: values.values }),
+    ...(by ? { by } : {}),
+    ...(values.tests === undefined ? {} : { tests: shiftTests(values.tests) }),
   };
 }
 
@@ -181,16 +204,20 @@ function choice<T extends string>(option: string, text: string, allowed: readonl
   return found;
 }
 
-function onlyChoice(name: string, text: string | undefined, now: readonly string[], later: readonly string[]): void {
-  if (text === undefined || now.includes(text)) return;
-  if (later.includes(text)) {
+const SHIFT_TESTS: readonly ShiftTest[] = [1, 2, 3, 5, 6];
+
+/** "1,2,5,6": the tests that decide, by their numbers in Nelson (1984). */
+function shiftTests(text: string): ShiftTest[] {
+  const wanted = text.split(',').map((part) => part.trim());
+  const unknown = wanted.find((part) => !SHIFT_TESTS.some((test) => String(test) === part));
+  if (unknown !== undefined) {
     throw new EbbError(
       'OPTION_INVALID',
-      `--${name} ${text} is not in this version`,
-      `Use --${name} ${now.join(' or ')}, or leave it out.`,
+      `--tests: "${unknown}" is not a test that can raise a shift`,
+      `Those are ${SHIFT_TESTS.join(', ')} (Nelson 1984); for example --tests 1,2,5,6.`,
     );
   }
-  choice(`--${name}`, text, now);
+  return SHIFT_TESTS.filter((test) => wanted.includes(String(test)));
 }
 
 function columnValue(text: string): { column: string; value: string } {

@@ -4,22 +4,27 @@ import { readExport } from '../accounts/readExport.ts';
 import type { ReadReport } from '../accounts/types.ts';
 import { answerQuestion } from '../answers/answerQuestion.ts';
 import { EbbError } from '../errors.ts';
-import type { Question, Request, Understanding } from '../requests/types.ts';
+import type { Question, Request, SideQuestion, Understanding } from '../requests/types.ts';
 import { notUsedLines, understoodLines } from '../requests/understoodLines.ts';
 import { readText } from '../verdict/words/readText.ts';
 import { answerText } from './answerText.ts';
-import type { CliOptions } from './arguments.ts';
+import type { CliOptions, FileCommand } from './arguments.ts';
 import { contractJson, pointsCsv } from './contractJson.ts';
 import { HELP } from './help.ts';
 import { progressBar } from './progressBar.ts';
+import { sideCommand } from './sideCommand.ts';
 import type { CliSurroundings } from './types.ts';
 import { writeOutput } from './writeOutput.ts';
 
-/** ebb ask FILE [words]: reads the export, answers, writes what was asked for. */
-export async function askCommand(options: CliOptions, around: CliSurroundings): Promise<void> {
+/** ebb ask FILE [words], ebb where FILE [words] and so on: reads the export, answers, writes what was asked for. */
+export async function askCommand(command: FileCommand, options: CliOptions, around: CliSurroundings): Promise<void> {
   const [file, ...words] = options.words;
   if (file === undefined)
-    throw new EbbError('FILE_MISSING', 'no file was named', 'For example: ebb ask accounts.csv has churn moved');
+    throw new EbbError(
+      'FILE_MISSING',
+      'no file was named',
+      `For example: ebb ${command} accounts.csv${EXAMPLE[command] ?? ''}`,
+    );
   const begun = around.clock();
   // The drawing parts load while the engine reads: together they take as long as the slower of the two.
   if (options.picture !== undefined) {
@@ -36,22 +41,26 @@ export async function askCommand(options: CliOptions, around: CliSurroundings): 
       ...(bar ? { onProgress: bar.update } : {}),
     }).finally(() => bar?.stop());
     const readMs = around.clock() - begun;
-    const understanding = words.length > 0 ? await understandWords(words.join(' '), table.report) : null;
+    const asked = command === 'ask' ? words : [command, ...words];
+    const understanding = asked.length > 0 ? await understandWords(asked.join(' '), table.report) : null;
     const request: Request = understanding?.request ?? { kind: 'ask' };
     const name = basename(file);
-    if (request.kind !== 'ask') {
+    const lacking = understanding?.notUnderstood[0];
+    if (request.kind === 'help' && command !== 'ask' && lacking)
+      throw new EbbError('OPTION_INVALID', `${command} needs a figure`, lacking.nearest);
+    if (request.kind === 'help' || request.kind === 'data') {
       const { understood, notUnderstood } = understanding!;
       const read = request.kind === 'data' ? readText(table.report, name) : null;
       if (options.json) around.stdout(`${JSON.stringify({ understood, notUnderstood, read })}\n`);
       else around.stdout(read ? `${read.join('\n')}\n` : [...notUsedLines(notUnderstood), HELP].join('\n'));
       return;
     }
-    const answer = await answerQuestion(table, withOptions(request, options), {
-      subject: name,
-      picture: options.picture !== undefined,
-      clock: around.clock,
-      readMs,
-    });
+    const how = { subject: name, picture: options.picture !== undefined, clock: around.clock, readMs };
+    if (request.kind !== 'ask') {
+      await sideCommand(table, withOptions(request, options), understanding!, how, options, around);
+      return;
+    }
+    const answer = await answerQuestion(table, withOptions(request, options), how);
     if (options.picture !== undefined) await writeOutput('--picture', options.picture, answer.picture!.png);
     if (options.points !== undefined) await writeOutput('--points', options.points, pointsCsv(answer));
     if (options.json)
@@ -64,8 +73,14 @@ export async function askCommand(options: CliOptions, around: CliSurroundings): 
   }
 }
 
+const EXAMPLE: Partial<Record<FileCommand, string>> = {
+  ask: ' has churn moved',
+  reconcile: ' 14.2%',
+  target: ' 5%',
+};
+
 /** Options win over words: they are exact. */
-function withOptions(question: Question, options: CliOptions): Question {
+function withOptions<Q extends Question | SideQuestion>(question: Q, options: CliOptions): Q {
   return {
     ...question,
     ...(options.tenure ? { tenure: options.tenure } : {}),
@@ -73,6 +88,8 @@ function withOptions(question: Question, options: CliOptions): Question {
     ...(options.baseline === undefined ? {} : { baseline: options.baseline }),
     ...(options.segment ? { segment: options.segment } : {}),
     ...(options.chart && options.chart !== 'auto' ? { chart: options.chart } : {}),
+    ...(options.by && options.by !== 'start' ? { view: options.by } : {}),
+    ...(options.tests ? { tests: options.tests } : {}),
     ...(options.asOf === undefined ? {} : { asOf: options.asOf }),
   };
 }

@@ -1,3 +1,4 @@
+import type { ReadReport } from '../accounts/types.ts';
 import type { Answer } from '../answers/types.ts';
 import { type Day, isoDay } from '../days.ts';
 
@@ -30,25 +31,34 @@ export function contractJson(answer: Answer): Record<string, unknown> {
     trust: answer.trust,
     data: report
       ? {
-          rows: report.rows,
-          accounts: report.accounts,
+          ...readJson(report),
           matured: census?.matured ?? 0,
           waiting: census?.waiting ?? 0,
           immature: census?.immature ?? 0,
-          returned: report.returned,
-          mergedRows: report.mergedRows,
           asOf: iso(census?.request.asOf ?? report.asOf),
-          asOfSource: report.asOfSource,
           tenure: answer.tenure,
           nextPointOn: iso(census?.nextPointOn),
-          rejected: report.rejected,
-          columns: report.columns,
-          dates: report.dates,
-          segments: report.segments,
         }
       : null,
     plan: answer.plan,
     timing,
+  };
+}
+
+/** What was read, for the `data` part of any answer's JSON. */
+export function readJson(report: ReadReport): Record<string, unknown> {
+  const { rows, accounts, returned, mergedRows, asOfSource, rejected, columns, dates, segments } = report;
+  return {
+    rows,
+    accounts,
+    returned,
+    mergedRows,
+    asOf: iso(report.asOf),
+    asOfSource,
+    rejected,
+    columns,
+    dates,
+    segments,
   };
 }
 

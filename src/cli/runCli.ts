@@ -1,6 +1,6 @@
 import { readFileSync } from 'node:fs';
 import { EbbError } from '../errors.ts';
-import { type CliOptions, readArguments } from './arguments.ts';
+import { type CliOptions, FILE_COMMANDS, readArguments } from './arguments.ts';
 import { HELP } from './help.ts';
 import type { CliSurroundings } from './types.ts';
 
@@ -20,23 +20,21 @@ export async function runCli(args: readonly string[], around: CliSurroundings): 
       around.stdout(`${version()}\n`);
       return 0;
     }
-    if (command !== 'ask' && command !== 'chart') {
+    const file = FILE_COMMANDS.find((name) => name === command);
+    if (file === undefined && command !== 'chart') {
       throw new EbbError(
         'COMMAND_UNKNOWN',
         `there is no command "${command}"`,
-        'The commands are ask and chart; ebb --help shows how.',
+        `The commands are ${FILE_COMMANDS.join(', ')} and chart; ebb --help shows how.`,
       );
     }
-    const options: CliOptions = readArguments(command, rest);
+    const options: CliOptions = readArguments(file ?? 'chart', rest);
     if (options.help) {
       around.stdout(HELP);
       return 0;
     }
-    const run =
-      command === 'ask'
-        ? (await import('./askCommand.ts')).askCommand
-        : (await import('./chartCommand.ts')).chartCommand;
-    await run(options, around);
+    if (file === undefined) await (await import('./chartCommand.ts')).chartCommand(options, around);
+    else await (await import('./askCommand.ts')).askCommand(file, options, around);
     return 0;
   } catch (error) {
     return report(error, json, around);

@@ -1,0 +1,39 @@
+import type { AccountTable } from '../../accounts/types.ts';
+import type { Census, CensusPlan } from '../../census/types.ts';
+import type { Chart } from '../../charts/types.ts';
+import type { Question } from '../../requests/types.ts';
+import type { Judgement } from '../../verdict/judgement.ts';
+import type { PictureInput, PointDates, Signal, Trust, Verdict } from '../../verdict/types.ts';
+import type { ResolvedPlan, ResolvedScope } from './scope.ts';
+
+/** What one way of answering "has it moved?" is given. */
+export interface AskContext {
+  readonly table: AccountTable;
+  readonly question: Question;
+  readonly scope: ResolvedScope;
+  /** what the picture calls the data */
+  readonly subject: string;
+  readonly resolved: ResolvedPlan;
+  /** a clock in milliseconds, for the timing figures only */
+  readonly clock: () => number;
+}
+
+/** A verdict reached, before its picture is drawn. */
+export interface Reached {
+  readonly verdict: Verdict;
+  readonly chart: Chart | null;
+  readonly dates: readonly PointDates[];
+  readonly signals: readonly Signal[];
+  readonly trust: Trust;
+  /** null for charts that are not judged by the binomial */
+  readonly judgement: Judgement | null;
+  readonly census: Census | null;
+  readonly plan: CensusPlan;
+  /** all the picture needs beside the chart, its dates, its signals and the verdict */
+  readonly drawn: Omit<PictureInput, 'chart' | 'dates' | 'signals' | 'verdict'>;
+  /** clock reading when the counting was done */
+  readonly countedAt: number;
+}
+
+/** One way of answering: which chart is drawn from which counts. */
+export type Way = (context: AskContext) => Promise<Reached>;
