@@ -41,6 +41,9 @@ export interface ChartPoint {
   /** 3 sigma limits, clipped to [0, 1] for a rate */
   readonly lower: number;
   readonly upper: number;
+  /** p charts: smallest and largest share not flagged by the exact binomial limits, offered beside the 3 sigma ones */
+  readonly exactLower?: number;
+  readonly exactUpper?: number;
   /** where the zones end, when they come from tail areas and not from multiples of sigma */
   readonly edges?: ZoneEdges;
 }

@@ -59,7 +59,8 @@ describe('Laney p′ chart', () => {
     ]) {
       const chart = pPrimeChart(flat);
       expect(chart.sigmaZ).toBe(1);
-      expect(chart.points).toEqual(pChart(flat).points);
+      const plain = pChart(flat).points.map(({ exactLower: _lower, exactUpper: _upper, ...point }) => point);
+      expect(chart.points).toEqual(plain);
     }
   });
 });

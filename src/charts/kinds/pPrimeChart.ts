@@ -21,7 +21,8 @@ export function pPrimeChart(counts: readonly SubgroupCount[], options: PChartOpt
     ...plain,
     kind: 'p-prime',
     sigmaZ,
-    points: plain.points.map((point) => {
+    // The exact limits of the plain chart are the binomial's, which these points do not follow.
+    points: plain.points.map(({ exactLower: _lower, exactUpper: _upper, ...point }) => {
       const sigma = point.sigma * sigmaZ;
       return { ...point, sigma, lower: Math.max(0, center - 3 * sigma), upper: Math.min(1, center + 3 * sigma) };
     }),
