@@ -23,29 +23,32 @@ const SAMPLED_ABOVE = 150_000;
 /** Months looked at: four years. */
 const LONGEST = 48;
 
+export interface HazardScope {
+  readonly segment?: string;
+  /** only accounts that started on or after this day */
+  readonly startedFrom?: Day;
+  /** only accounts that started before this day */
+  readonly startedBefore?: Day;
+  /** count every account, where errors are stated; else a sample of many, scaled up */
+  readonly whole?: boolean;
+}
+
 /**
  * Hazard by month of tenure: lost / atRisk, the Kaplan-Meier estimate with one step a month. An account is at risk in a month only when
  * the whole month lies before asOf, so young accounts bias nothing and no half-observed month needs a correction.
- * One aggregated query: accounts by (months observed, month of loss). From a sample, the counts are scaled up.
+ * One aggregated query: accounts by (months observed, month of loss).
  * Source: Kaplan and Meier (1958), "Nonparametric estimation from incomplete observations" (cited from memory).
  */
 export async function hazardByMonth(
   table: AccountTable,
   asOf: Day,
   settleDays: number,
-  segment?: string,
+  scope: HazardScope = {},
 ): Promise<TenureCounts> {
-  const date = (day: string): string => `(DATE '1970-01-01' + ${day})`;
-  const only = segment === undefined ? '' : ` AND segment = '${segment.replaceAll("'", "''")}'`;
-  const every = Math.max(1, Math.round(table.report.accounts / SAMPLED_ABOVE));
-  const sampled = every === 1 ? '' : ` AND key % ${every} = 0`;
-  const rows = await rowsOf(
-    table.connection,
-    `SELECT least(datesub('month', ${date('start_day')}, ${date(String(asOf - settleDays))}), ${LONGEST})::INTEGER AS observed,
-       CASE WHEN end_day IS NOT NULL THEN least(datesub('month', ${date('start_day')}, ${date('(end_day - 1)')}) + 1, ${LONGEST + 1})::INTEGER END AS loss,
-       count(*)::INTEGER AS accounts
-     FROM ${table.table} WHERE start_day <= ${asOf - settleDays}${only}${sampled} GROUP BY 1, 2`,
-  );
+  const every = scope.whole ? 1 : Math.max(1, Math.round(table.report.accounts / SAMPLED_ABOVE));
+  const until = asOf - settleDays;
+  if (until < table.report.firstStart) return { months: [], byTenure: [] };
+  const rows = await rowsOf(table.connection, monthsSql(table, until, scope, every));
   const cells = rows.map((row) => ({
     observed: Number(row.observed),
     loss: row.loss === null || row.loss === undefined ? Number.POSITIVE_INFINITY : Number(row.loss),
@@ -68,4 +71,31 @@ export async function hazardByMonth(
     });
   }
   return { months, byTenure };
+}
+
+/**
+ * Accounts by whole months observed and month of loss. Months are counted on the calendar of every day, joined by day number: month
+ * arithmetic account by account takes twice as long. A month is complete on the day of the month it began on, or on the last day of a
+ * month too short for it.
+ */
+function monthsSql(table: AccountTable, until: Day, scope: HazardScope, every: number): string {
+  const { segment, startedFrom, startedBefore } = scope;
+  const only = [
+    segment === undefined ? '' : ` AND a.segment = '${segment.replaceAll("'", "''")}'`,
+    startedFrom === undefined ? '' : ` AND a.start_day >= ${startedFrom}`,
+    startedBefore === undefined ? '' : ` AND a.start_day < ${startedBefore}`,
+    every === 1 ? '' : ` AND a.key % ${every} = 0`,
+  ].join('');
+  return `
+WITH days AS MATERIALIZED (
+  SELECT day, CAST(12 * EXTRACT(YEAR FROM date) + EXTRACT(MONTH FROM date) AS INTEGER) AS month, CAST(EXTRACT(DAY FROM date) AS INTEGER) AS place,
+    CAST(EXTRACT(DAY FROM CAST(date_trunc('month', date) + INTERVAL '1 month' AS DATE) - 1) AS INTEGER) AS length
+  FROM (SELECT CAST(day AS INTEGER) AS day, DATE '1970-01-01' + CAST(day AS INTEGER) AS date
+    FROM generate_series(${table.report.firstStart}, ${until}) AS every(day)) AS series
+)
+SELECT LEAST(u.month - s.month - CASE WHEN u.place < LEAST(s.place, u.length) THEN 1 ELSE 0 END, ${LONGEST}) AS observed,
+  LEAST(e.month - s.month + CASE WHEN e.place < LEAST(s.place, e.length) THEN 0 ELSE 1 END, ${LONGEST + 1}) AS loss,
+  COUNT(*) AS accounts
+FROM ${table.table} AS a JOIN days AS s ON a.start_day = s.day JOIN days AS u ON u.day = ${until} LEFT JOIN days AS e ON a.end_day - 1 = e.day
+WHERE a.start_day <= ${until}${only} GROUP BY 1, 2`;
 }

@@ -29,7 +29,14 @@ const TENURES = [1, 3, 6, 12] as const;
 export async function planCensus(table: AccountTable, partial: PlanRequest): Promise<CensusPlan> {
   const chosen = partial.tenure
     ? { tenure: partial.tenure, why: `read at ${tenureInWords(partial.tenure)}, as asked` }
-    : recommendTenure(await hazardByMonth(table, partial.asOf, partial.settleDays, partial.segment));
+    : recommendTenure(
+        await hazardByMonth(
+          table,
+          partial.asOf,
+          partial.settleDays,
+          partial.segment === undefined ? {} : { segment: partial.segment },
+        ),
+      );
   checkTenure(chosen.tenure);
   const { matured, lost, perWeek } = await maturedCounts(table, chosen.tenure, partial);
   // With nobody lost, one loss is assumed: any real rate could be that low.
