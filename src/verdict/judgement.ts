@@ -3,7 +3,7 @@ import { type Autocorrelation, autocorrelation } from '../charts/checks/autocorr
 import { type Dispersion, dispersion } from '../charts/checks/dispersion.ts';
 import { type Homogeneity, homogeneity } from '../charts/checks/homogeneity.ts';
 import { type Steadiness, steadiness } from '../charts/checks/steadiness.ts';
-import { simulatedRunLength } from '../charts/runLength/simulatedRunLength.ts';
+import { chartRunLength } from '../charts/runLength/chartRunLength.ts';
 import { smallestDetectable } from '../charts/standing/detectable.ts';
 import { type BlockDesign, LEAST_BEFORE } from '../charts/standing/lastBlock.ts';
 import { type Standing, standingJudge } from '../charts/standing/standing.ts';
@@ -202,19 +202,17 @@ function correlationOf(excess: number, used: readonly SubgroupCount[]): number {
 }
 
 function runLengthTrust(chart: Chart, correlation: number) {
-  const length = simulatedRunLength(
-    chart.points.map((point) => point.accounts),
+  const { method, length } = chartRunLength(
+    {
+      sizes: chart.points.map((point) => point.accounts),
+      center: chart.center,
+      sigmaZ: chart.sigmaZ,
+      correlation,
+      tests: SHIFT_TESTS,
+    },
     chart.center,
-    chart.center,
-    SHIFT_TESTS,
-    undefined,
-    { correlation, sigmaZ: chart.sigmaZ },
   );
-  return {
-    falseAlarmEvery: length?.mean ?? null,
-    method: 'simulated' as const,
-    standardError: length?.standardError ?? null,
-  };
+  return { falseAlarmEvery: length?.mean ?? null, method, standardError: length?.standardError ?? null };
 }
 
 function segmentTest(segments: readonly SegmentCounts[]): Homogeneity | null {
