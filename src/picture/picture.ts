@@ -2,7 +2,7 @@ import type { PictureInput } from '../verdict/types.ts';
 import { altText } from './altText.ts';
 import { useShippedFonts } from './fonts.ts';
 import { layout } from './layout.ts';
-import { EMPTY_SCENE } from './scene.ts';
+import { EMPTY_SCENE, type Scene } from './scene.ts';
 
 export interface Picture {
   readonly png: Uint8Array;
@@ -55,14 +55,22 @@ export async function warmPicture(): Promise<void> {
  * @throws  Error when Vega warns: a warning would mean a part of the drawing is missing
  */
 export async function drawPicture(input: PictureInput): Promise<Picture> {
+  return drawPlate(layout(input), altText(input));
+}
+
+/**
+ * Draws any other picture: one whose parts were placed with the kit in `panel/`.
+ * @param altText  what it shows, for those who cannot see it
+ * @throws  Error when Vega warns: a warning would mean a part of the drawing is missing
+ */
+export async function drawPlate(scene: Scene, altText: string): Promise<Picture> {
   const { renderPng, drawScene } = await loadRenderer();
-  const scene = layout(input);
   const svg = await drawScene(scene);
   const png = await renderPng(svg, DENSITY);
   return {
     png,
     svg,
-    altText: altText(input),
+    altText,
     widthPx: Math.round(scene.widthPx * DENSITY),
     heightPx: Math.round(scene.heightPx * DENSITY),
   };

@@ -64,6 +64,21 @@ export interface LevelLine {
   readonly dash: readonly number[];
 }
 
+/** A filled shape between two edges, in px of the drawing. */
+export interface Area {
+  readonly color: string;
+  readonly opacity?: number;
+  readonly edge: readonly { readonly x: number; readonly y: number; readonly y2: number }[];
+}
+
+/** A line through several places, in px of the drawing, drawn in the order given. */
+export interface Polyline {
+  readonly color: string;
+  readonly width: number;
+  readonly dash?: readonly [number, number];
+  readonly path: readonly { readonly x: number; readonly y: number }[];
+}
+
 export interface Frame {
   readonly left: number;
   readonly right: number;
@@ -80,6 +95,10 @@ export interface Scene {
   readonly slabs: readonly Slab[];
   /** tints over the band and under the lines */
   readonly veils: readonly Slab[];
+  /** bands that are not the chart's own: over the slabs, under everything else */
+  readonly areas?: readonly Area[];
+  /** curves and steps that are not the chart's own: under the strokes of `over` and all marks */
+  readonly polylines?: readonly Polyline[];
   readonly under: readonly Stroke[];
   /** limits and centre line per point, as steps: two rows where a step begins and ends */
   readonly band: readonly {

@@ -5,6 +5,9 @@ import { INK, PAPER, WATER_DEEP, WATER_EDGE, WATER_PALE } from './palette.ts';
 /** The parts of a scene that are lists of things to draw: the specification's data sets, by name. */
 export const DATA_SETS = ['slabs', 'band', 'veils', 'under', 'points', 'levels', 'over', 'marks', 'texts'] as const;
 
+/** Shapes of several places each: one row a place, told apart by `shape`. A scene without them is drawn without their layers. */
+export const SHAPE_SETS = ['areas', 'polylines'] as const;
+
 /** The single numbers of a scene: the specification's parameters. */
 export const PARAMETERS = [
   'left',
@@ -25,7 +28,7 @@ export const PARAMETERS = [
  * a text is.
  */
 export function drawingSpec(): TopLevelSpec {
-  const named = (name: (typeof DATA_SETS)[number]) => ({ name });
+  const named = (name: (typeof DATA_SETS)[number] | (typeof SHAPE_SETS)[number]) => ({ name });
   const value = (name: (typeof PARAMETERS)[number]) => ({ expr: name });
   const x = (field: string) => ({
     field,
@@ -121,6 +124,11 @@ export function drawingSpec(): TopLevelSpec {
         },
       },
       {
+        data: named('areas'),
+        mark: { type: 'area', fill: each('color'), opacity: each('opacity') },
+        encoding: { x: px('x'), y: px('y'), y2: { field: 'y2' }, detail: own('shape'), order: { value: null } },
+      },
+      {
         data: band,
         mark: {
           type: 'area',
@@ -174,6 +182,17 @@ export function drawingSpec(): TopLevelSpec {
           strokeDash: each('dash'),
         },
         encoding: { x: x('x'), x2: { field: 'x2' }, y: y('value') },
+      },
+      {
+        data: named('polylines'),
+        mark: {
+          type: 'line',
+          stroke: each('color'),
+          strokeWidth: each('width'),
+          strokeDash: { expr: 'datum.dash || []' },
+          strokeJoin: 'round',
+        },
+        encoding: { x: px('x'), y: px('y'), detail: own('shape'), order: { value: null } },
       },
       strokes('over'),
       {

@@ -1,22 +1,10 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { layout } from '../../src/picture/layout.ts';
-import { boxOf, overlap, type Scene } from '../../src/picture/scene.ts';
+import { boxOf } from '../../src/picture/scene.ts';
+import { faults } from './faults.ts';
 import { flag, makeInput } from './inputs.ts';
 import { makings, state } from './states.ts';
-
-/** Pairs of texts that touch, and texts that leave the drawing, in words. */
-function faults(scene: Scene): string[] {
-  const placed = scene.texts.map((text) => ({ text, box: boxOf(text) }));
-  const found: string[] = [];
-  for (const [i, one] of placed.entries()) {
-    const { left, right, top, bottom } = one.box;
-    if (left < 0 || top < 0 || right > scene.widthPx || bottom > scene.heightPx) found.push(`cut: ${one.text.text}`);
-    for (const other of placed.slice(i + 1))
-      if (overlap(one.box, other.box)) found.push(`touch: "${one.text.text}" and "${other.text.text}"`);
-  }
-  return found;
-}
 
 describe('layout', () => {
   test.each(Object.keys(makings))('%s: no two texts touch and none leaves the drawing', (name) => {

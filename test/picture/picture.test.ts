@@ -5,8 +5,9 @@ import { complainingLogger } from '../../src/picture/complainingLogger.ts';
 import { layout } from '../../src/picture/layout.ts';
 import { drawPicture, warmPicture } from '../../src/picture/picture.ts';
 import { boxOf } from '../../src/picture/scene.ts';
-import { DATA_SETS, PARAMETERS } from '../../src/picture/spec.ts';
+import { DATA_SETS, PARAMETERS, SHAPE_SETS } from '../../src/picture/spec.ts';
 import { renderSvg } from '../../src/picture/vectorDrawing.ts';
+import { normalised } from './normalised.ts';
 import { state } from './states.ts';
 
 /** Names of the states whose drawing is kept as a file; accept a change one picture at a time, after looking at it. */
@@ -22,18 +23,6 @@ const KEPT = [
   'unequal',
   'busy',
 ];
-
-/** The drawing with digits limited and ids counted anew, so that only a visible change changes the text. */
-function normalised(svg: string): string {
-  const ids = new Map<string, string>();
-  return svg
-    .replace(/gradient_\d+/g, (id) => {
-      if (!ids.has(id)) ids.set(id, `gradient-${ids.size + 1}`);
-      return ids.get(id) ?? id;
-    })
-    .replace(/-?\d+\.\d{2,}/g, (digits) => String(Number(Number(digits).toFixed(1))))
-    .replaceAll('><', '>\n<');
-}
 
 describe('drawPicture', () => {
   test.each(KEPT)('%s: draws as it did when somebody last looked at it', async (name) => {
@@ -127,7 +116,7 @@ describe('a drawing that Vega would warn about', () => {
 
   test('a scene goes into a compiled drawing that has a place for every part of it', () => {
     const drawing = compiledDrawing();
-    expect(drawing.data?.map(({ name }) => name)).toEqual(expect.arrayContaining([...DATA_SETS]));
+    expect(drawing.data?.map(({ name }) => name)).toEqual(expect.arrayContaining([...DATA_SETS, ...SHAPE_SETS]));
     expect(drawing.signals?.map(({ name }) => name)).toEqual(expect.arrayContaining([...PARAMETERS]));
     expect(drawing).toEqual(JSON.parse(JSON.stringify(drawing)));
   });
