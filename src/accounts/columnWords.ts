@@ -284,13 +284,16 @@ export const segmentWords: WordScore = (words) => {
 };
 
 export const amountWords: WordScore = (words) => {
-  if (hasAny(words, ['id', 'date', 'at', 'currency', 'count'])) return 0;
+  if (hasAny(words, ['id', 'date', 'at', 'currency', 'ccy', 'count'])) return 0;
   if (hasAny(words, ['mrr', 'arr', 'acv', 'arpa', 'arpu', 'arpc'])) return 10;
   if (hasAny(words, ['amount', 'revenue', 'price', 'betrag', 'preis', 'importe'])) return 9;
   if (hasAny(words, ['value', 'fee', 'fees', 'charge', 'cost', 'spend', 'total', 'sales', 'paid', 'billed', 'monthly']))
     return 6;
   return 0;
 };
+
+export const currencyWords: WordScore = (words) =>
+  hasAny(words, ['currency', 'ccy', 'curr', 'wahrung', 'waehrung', 'devise', 'moneda', 'valuta']) ? 10 : 0;
 
 export const statusWords: WordScore = (words) => (hasAny(words, ['status', 'state', 'stage']) ? 10 : 0);
 export const flagWords: WordScore = (words) =>

@@ -1,6 +1,7 @@
 import { EbbError } from '../errors.ts';
 import {
   amountWords,
+  currencyWords,
   endWords,
   flagWords,
   idWords,
@@ -22,6 +23,7 @@ export interface Columns {
   readonly end: number;
   readonly segment: number | undefined;
   readonly amount: number | undefined;
+  readonly currency: number | undefined;
   readonly status: number | undefined;
   readonly flag: number | undefined;
 }
@@ -78,6 +80,10 @@ const WANTED: Readonly<Record<ColumnRole | 'status' | 'flag', Wanted>> = {
     content: (c) => (c.filled > 0 && c.dates < 0.5 && c.numbers < 0.9 && (c.distinct <= 0.5 || c.rows < 20) ? 1 : 0),
   },
   amount: { words: amountWords, content: (c) => (c.filled > 0 && c.numbers >= 0.8 ? 1 : 0) },
+  currency: {
+    words: currencyWords,
+    content: (c) => (c.filled > 0 && c.dates < 0.5 && c.numbers < 0.2 && (c.distinct <= 0.5 || c.rows < 20) ? 1 : 0),
+  },
   status: { words: statusWords, content: (c) => (c.dates < 0.5 && c.distinct <= 0.5 ? 1 : 0) },
   flag: { words: flagWords, content: (c) => (c.dates < 0.5 && c.distinct <= 0.5 ? 1 : 0) },
 };
@@ -88,7 +94,7 @@ const WANTED: Readonly<Record<ColumnRole | 'status' | 'flag', Wanted>> = {
  */
 export function recogniseColumns(layout: Layout, named: ColumnMap = {}): Columns {
   const chosen = new Map<string, number>();
-  for (const role of ['id', 'start', 'end', 'segment', 'amount'] as const) {
+  for (const role of ['id', 'start', 'end', 'segment', 'amount', 'currency'] as const) {
     const name = named[role];
     if (name !== undefined) chosen.set(role, columnNamed(layout.headers, name, role));
   }
@@ -116,10 +122,11 @@ export function recogniseColumns(layout: Layout, named: ColumnMap = {}): Columns
   const end = pick('end') ?? endWithoutDates(layout, () => pick('end', false));
   const id = pick('id');
   const amount = pick('amount');
+  const currency = pick('currency');
   const segment = pick('segment');
   const status = pick('status');
   const flag = pick('flag');
-  return { id, start, end, segment, amount, status, flag };
+  return { id, start, end, segment, amount, currency, status, flag };
 }
 
 function startMissing(layout: Layout, byName: number | undefined): EbbError {

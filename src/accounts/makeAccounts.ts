@@ -1,6 +1,7 @@
 import type { DuckDBConnection } from '@duckdb/node-api';
 import type { Day } from '../days.ts';
-import { readAmounts } from './amounts.ts';
+import { describeAmounts } from './amountReport.ts';
+import { readAmounts, readCurrencies } from './amounts.ts';
 import { checkAsOf } from './checkAsOf.ts';
 import type { Columns } from './columns.ts';
 import { type DayCount, dataThrough, ENDS_LOOKED_AT_DAYS, latestSteadyStart } from './dataThrough.ts';
@@ -10,6 +11,7 @@ import type { Layout } from './layout.ts';
 import { findLines } from './lines.ts';
 import { allInFuture, nothingLeft } from './nothingLeft.ts';
 import type { RawTable } from './rawTable.ts';
+import { splitRecords } from './records.ts';
 import { countLeftOut, type LeftOut, listRejected } from './rejects.ts';
 import { ID_KIND, reasonSql, TRUE_END_SQL, tellingValues } from './rowRules.ts';
 import { settleDates } from './settleDates.ts';
@@ -52,7 +54,11 @@ export async function makeAccounts(
   );
   const rows = Number(state.rows);
   const order = await orderOf(connection, file, options, Number(state.date_texts) > 0);
-  if (Number(state.amount_texts) > 0) await readAmounts(connection, 'raw');
+  const amountTexts = Number(state.amount_texts) > 0;
+  const amountReading = amountTexts ? await readAmounts(connection, 'raw') : { decimalComma: false };
+  const currencies = columns.currency !== undefined || amountTexts;
+  if (currencies)
+    await readCurrencies(connection, 'raw', { column: columns.currency !== undefined, texts: amountTexts });
 
   const distinct = await distinctValues(connection, columns, data);
   const telling = tellingValues({
@@ -66,7 +72,7 @@ export async function makeAccounts(
   });
   const key = columns.id === undefined ? 'hash(rowid)' : 'key';
   await connection.run(
-    `CREATE VIEW judged AS SELECT rowid AS n, ${key} AS key, start_day, ${TRUE_END_SQL} AS end_day, segment, amount, ${reason} AS reason FROM ${data}`,
+    `CREATE VIEW judged AS SELECT rowid AS n, ${key} AS key, start_day, ${TRUE_END_SQL} AS end_day, segment, amount, currency, ${reason} AS reason FROM ${data}`,
   );
 
   const starts = await startsOf(connection);
@@ -97,10 +103,10 @@ export async function makeAccounts(
   // With nothing to leave out, a view on the raw table spares copying it.
   await connection.run(
     bad + future === 0
-      ? `CREATE VIEW kept AS SELECT rowid AS n, ${key} AS key, start_day, ${TRUE_END_SQL} AS end_day, segment, amount FROM ${data}`
+      ? `CREATE VIEW kept AS SELECT rowid AS n, ${key} AS key, start_day, ${TRUE_END_SQL} AS end_day, segment, amount, currency FROM ${data}`
       : `CREATE TABLE kept AS SELECT * EXCLUDE (reason) FROM judged WHERE reason IS NULL AND start_day <= ${asOf}`,
   );
-  const { duplicates, merged } = await mergeSpells(
+  const { duplicates, merged, severalAtOnce } = await mergeSpells(
     connection,
     options.bridgeDays ?? BRIDGE_DAYS,
     columns.id !== undefined,
@@ -135,7 +141,26 @@ export async function makeAccounts(
       ? distinct.segment
       : await valuesOf(connection, 'segment', 'accounts')
     ).slice(0, SEGMENTS_REPORTED),
+    ...(columns.amount === undefined
+      ? {}
+      : {
+          amounts: await describeAmounts(connection, {
+            texts: amountTexts,
+            decimalComma: amountReading.decimalComma,
+            currencies,
+            severalAtOnce,
+            place: (row) => amountPlace(file, row),
+          }),
+        }),
   };
+}
+
+/** Where a row's amount stands in the file, and what it says. */
+function amountPlace({ path, layout, columns, raw }: ReadFile, row: number): { line: number; value: string } {
+  const skipped = new Set(raw.ragged.map(({ offset }) => offset));
+  const place = findLines(path, layout.delimiter, skipped, new Set([row])).rows.get(row);
+  const fields = splitRecords(place?.text ?? '', layout.delimiter, 1)[0]?.fields ?? [];
+  return { line: place?.line ?? 0, value: fields[columns.amount ?? -1] ?? '' };
 }
 
 async function orderOf(
@@ -206,7 +231,7 @@ function total(counts: readonly DayCount[]): number {
 
 function columnMap(layout: Layout, columns: Columns): ColumnMap {
   const named: [string, string][] = [];
-  for (const role of ['id', 'start', 'end', 'segment', 'amount'] as const) {
+  for (const role of ['id', 'start', 'end', 'segment', 'amount', 'currency'] as const) {
     const column = columns[role];
     if (column !== undefined) named.push([role, layout.headers[column] ?? '']);
   }

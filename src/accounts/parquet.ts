@@ -2,18 +2,20 @@ import { randomUUID } from 'node:crypto';
 import { readFile, rm, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
 import type { Engine } from './engine.ts';
+import { ACCOUNT_COLUMNS, ACCOUNT_TYPES } from './spells.ts';
 import { quoteText } from './sql.ts';
 import type { AccountTable, ReadReport } from './types.ts';
 
 /**
- * The accounts as compact Parquet: key, start and end day, segment, amount, returned; sorted by start. Ids are not in it, only their keys.
+ * The accounts as compact Parquet: key, start and end day, segment, amount, returned, currency, later amounts; sorted by start. Ids are not in it, only
+ * their keys.
  * DuckDB writes files only: one goes through the engine's private folder (mode 0700) and is deleted at once.
  */
 export async function writeAccounts(engine: Engine, table: AccountTable): Promise<Uint8Array> {
   const file = join(engine.folder, `${randomUUID()}.parquet`);
   try {
     await table.connection.run(
-      `COPY (SELECT key, start_day, end_day, segment, amount, returned FROM ${table.table} ORDER BY start_day, key)
+      `COPY (SELECT ${ACCOUNT_COLUMNS} FROM ${table.table} ORDER BY start_day, key)
        TO ${quoteText(file)} (FORMAT parquet, COMPRESSION zstd)`,
     );
     return await readFile(file);
@@ -32,7 +34,8 @@ export async function loadAccounts(engine: Engine, parquet: Uint8Array, report: 
   try {
     await writeFile(file, parquet, { mode: 0o600 });
     await connection.run(
-      `CREATE TABLE accounts AS SELECT key, start_day, end_day, segment, amount, returned FROM read_parquet(${quoteText(file)})`,
+      // By name: what was stored before a column was kept lacks it, and gets it empty.
+      `CREATE TABLE accounts (${ACCOUNT_TYPES}); INSERT INTO accounts BY NAME SELECT * FROM read_parquet(${quoteText(file)})`,
     );
     return { connection, table: 'accounts', report };
   } catch (error) {

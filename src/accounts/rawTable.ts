@@ -62,7 +62,7 @@ function valueSql(column: string): string {
 }
 
 /**
- * Reads the file into table `raw`: key, start_day, end_day, segment, amount, id_kind, and status and flag where there are such columns; the
+ * Reads the file into table `raw`: key, start_day, end_day, segment, amount, currency, id_kind, and status and flag where there are such columns; the
  * table's rowid is the row's ordinal. Days are filled where the text is an ISO date. Every other text is kept beside (start_text, end_text,
  * amount_text), untouched but for a time of day behind the date.
  * @param options.texts  false when the beginning of the file holds nothing but ISO dates and plain numbers: three text columns are then
@@ -85,6 +85,8 @@ export async function readRaw(
   const day = (name: string): string =>
     `CASE WHEN ${name} >= DATE '1900-01-01' AND ${name} <= DATE '9999-12-31' THEN (${name} - DATE '1970-01-01')::INTEGER END`;
   const amount = columns.amount === undefined ? undefined : column(columns.amount);
+  // "nan" and "inf" are numbers to the engine, and no amounts to anybody.
+  const number = `try_cast(${amount} AS DOUBLE)`;
   const amountText = amount === undefined ? 'NULL::VARCHAR' : `CASE WHEN amount IS NULL THEN ${amount} END`;
   const odd = [
     '(start_day IS NULL AND start_source IS NOT NULL)',
@@ -98,11 +100,11 @@ export async function readRaw(
   await connection.run('DROP TABLE IF EXISTS csv_errors; DROP TABLE IF EXISTS csv_scans');
   await connection.run(
     `CREATE OR REPLACE TABLE raw AS SELECT ${columns.id === undefined ? 'NULL::UBIGINT' : `CASE WHEN id IS NOT NULL THEN ${keySql('id', options.idKey)} END`} AS key, ` +
-      `${['start_day', 'end_day', 'segment', 'amount', 'id_kind', ...ruled].join(', ')}, ${texts} ` +
+      `${['start_day', 'end_day', 'segment', 'amount', 'currency', 'id_kind', ...ruled].join(', ')}, ${texts} ` +
       `FROM (SELECT *, ${day('start_date')} AS start_day, ${day('end_date')} AS end_day FROM (SELECT *, ${text(columns.id)} AS id, ` +
       `${column(columns.start)} AS start_source, ${dateSql(column(columns.start))} AS start_date, ` +
       `${column(columns.end)} AS end_source, ${dateSql(column(columns.end))} AS end_date, ` +
-      `${text(columns.segment)} AS segment, ${amount === undefined ? 'NULL::DOUBLE' : `try_cast(${amount} AS DOUBLE)`} AS amount, ` +
+      `${text(columns.segment)} AS segment, ${amount === undefined ? 'NULL::DOUBLE' : `CASE WHEN isfinite(${number}) THEN ${number} END`} AS amount, ${text(columns.currency)} AS currency, ` +
       `${ruled.map((role) => `${text(columns[role])} AS ${role}, `).join('')}` +
       `${columns.id === undefined ? '0::UTINYINT' : idKindSql(column(columns.id))} AS id_kind FROM ${source}))`,
   );

@@ -12,7 +12,7 @@ import type { Day } from '../days.ts';
  * returned  a second spell after a gap longer than bridgeDays; counted lost at the end of its first spell
  */
 
-export type ColumnRole = 'id' | 'start' | 'end' | 'segment' | 'amount';
+export type ColumnRole = 'id' | 'start' | 'end' | 'segment' | 'amount' | 'currency';
 export type ColumnMap = Partial<Record<ColumnRole, string>>;
 export type DateOrder = 'iso' | 'dmy' | 'mdy';
 
@@ -44,6 +44,25 @@ export interface Rejected {
   readonly examples: readonly { readonly line: number; readonly value: string }[];
 }
 
+/** What the amount column holds, over the rows that were kept. Rows are rows of the file, accounts are accounts. */
+export interface AmountReport {
+  /** rows without an amount: empty, or a word for none */
+  readonly missing: number;
+  /** rows whose amount cannot be read, with the first of them */
+  readonly unreadable: number;
+  readonly firstUnreadable: { readonly line: number; readonly value: string } | null;
+  readonly negative: number;
+  readonly zero: number;
+  /** a comma is the decimal sign in this column */
+  readonly decimalComma: boolean;
+  /** rows in which a comma (or, with a decimal comma, a point) was read as a separator of thousands */
+  readonly thousands: number;
+  /** accounts with a row that begins, at another amount, while an earlier one still runs */
+  readonly severalAtOnce: number;
+  /** by sign, code or currency column, most first; null: none stated. Empty when nothing states any. */
+  readonly currencies: readonly { readonly currency: string | null; readonly accounts: number }[];
+}
+
 /** What was read, for the thread's first reply. */
 export interface ReadReport {
   readonly rows: number;
@@ -71,12 +90,15 @@ export interface ReadReport {
   readonly rejected: readonly Rejected[];
   /** distinct values of the segment column with account counts, most first, at most 50 */
   readonly segments: readonly { readonly value: string; readonly accounts: number }[];
+  /** absent without an amount column, and in datasets stored before it was kept */
+  readonly amounts?: AmountReport;
 }
 
 /**
  * Accounts ready to be counted: a table in an engine.
  * Columns: key UBIGINT (stable pseudonymous hash of the id), start_day INTEGER (days since 1970-01-01), end_day INTEGER or NULL,
- * segment VARCHAR or NULL, amount DOUBLE or NULL, returned BOOLEAN.
+ * segment VARCHAR or NULL, amount DOUBLE or NULL (of its first row that has one), returned BOOLEAN, currency VARCHAR or NULL (several joined by
+ * " and "), later_amounts STRUCT(day INTEGER, amount DOUBLE)[] or NULL: every change of the amount within the first spell, in order of day.
  */
 export interface AccountTable {
   readonly connection: DuckDBConnection;

@@ -10,6 +10,7 @@ const columnMap = z.object({
   end: z.string().exactOptional(),
   segment: z.string().exactOptional(),
   amount: z.string().exactOptional(),
+  currency: z.string().exactOptional(),
 });
 const dateOrder = z.enum(['iso', 'dmy', 'mdy']);
 const count = z.number().int().nonnegative();
@@ -57,6 +58,19 @@ export const reportSchema: z.ZodType<ReadReport> = z.object({
     }),
   ),
   segments: z.array(z.object({ value: z.string(), accounts: count })),
+  amounts: z
+    .object({
+      missing: count,
+      unreadable: count,
+      firstUnreadable: z.object({ line: count, value: z.string() }).nullable(),
+      negative: count,
+      zero: count,
+      decimalComma: z.boolean(),
+      thousands: count,
+      severalAtOnce: count,
+      currencies: z.array(z.object({ currency: z.string().nullable(), accounts: count })),
+    })
+    .exactOptional(),
 });
 
 /**
