@@ -29,7 +29,11 @@ export interface Question extends Scope {
 /** The questions that come before and after "has it moved?". */
 export type SideQuestion = Scope &
   (
-    | { readonly kind: 'where' | 'revenue' | 'worth' | 'spread' | 'explain' }
+    | { readonly kind: 'where' }
+    | { readonly kind: 'revenue' }
+    | { readonly kind: 'worth' }
+    | { readonly kind: 'spread' }
+    | { readonly kind: 'explain' }
     /** `move`: the change that should be seen, as a factor on the rate (0.5 a halving); `within`: points it should take */
     | { readonly kind: 'plan'; readonly move?: number; readonly within?: number }
     /** `move`: the change the watch is designed for, as a factor on the rate; both directions by half when absent */

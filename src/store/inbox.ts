@@ -9,6 +9,8 @@ const DAY_MS = 86_400_000;
 const INBOX_DAYS = 7;
 /** Longer than any job lives in the queue (14 days), so that a late repeat still finds what it already posted. */
 const POSTED_DAYS = 30;
+/** The last question of a thread nobody wrote in for this long is not asked about any more. */
+const ASKED_DAYS = 400;
 
 const key = z.string().min(1);
 const entrySchema = z.object({
@@ -77,5 +79,6 @@ export async function removeOld(database: Database, now: () => number): Promise<
   const posted = await database.query('DELETE FROM ebbline.posted WHERE posted_at < $1 RETURNING step', [
     new Date(now() - POSTED_DAYS * DAY_MS),
   ]);
+  await database.query('DELETE FROM ebbline.asked WHERE asked_at < $1', [new Date(now() - ASKED_DAYS * DAY_MS)]);
   return { inbox: inbox.length, posted: posted.length };
 }

@@ -62,6 +62,10 @@ export interface WorkspaceStore {
   currentDataset(channelId: string): Promise<Dataset | undefined>;
   datasets(channelId: string): Promise<readonly Dataset[]>;
   parquet(datasetId: string): Promise<Uint8Array>;
+  /** keeps the words of the last question answered in a thread */
+  rememberQuestion(channelId: string, threadTs: string | null, words: string): Promise<void>;
+  /** the last question answered in this thread, else in the channel */
+  lastQuestion(channelId: string, threadTs: string | null): Promise<string | undefined>;
   /** remembers that a step of a job already posted, so that a repeated job does not post twice */
   postedTs(jobKey: string, step: string): Promise<string | undefined>;
   recordPosted(jobKey: string, step: string, ts: string): Promise<void>;

@@ -53,6 +53,23 @@ export async function workspaceStore(
       );
     },
 
+    async rememberQuestion(channelId, threadTs, words) {
+      await scope.query(
+        `INSERT INTO ebbline.asked (team_id, channel_id, thread_ts, words, asked_at) VALUES ($1, $2, $3, $4, $5)
+         ON CONFLICT (team_id, channel_id, thread_ts) DO UPDATE SET words = excluded.words, asked_at = excluded.asked_at`,
+        [channelId, threadTs ?? '', words, new Date(now())],
+      );
+    },
+
+    async lastQuestion(channelId, threadTs) {
+      const rows = await scope.query<{ words: string }>(
+        `SELECT words FROM ebbline.asked WHERE team_id = $1 AND channel_id = $2
+         ORDER BY (thread_ts = $3) DESC, asked_at DESC LIMIT 1`,
+        [channelId, threadTs ?? ''],
+      );
+      return rows[0]?.words;
+    },
+
     async postedTs(jobKey, step) {
       const rows = await scope.query<{ ts: string }>(
         'SELECT ts FROM ebbline.posted WHERE team_id = $1 AND job_key = $2 AND step = $3',

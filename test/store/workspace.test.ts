@@ -38,6 +38,18 @@ onBothEngines('what one workspace stores', (engine) => {
     expect(await mine.settings('C2')).toEqual({});
   });
 
+  test('the last question answered is that of the thread, else the newest of the channel', async () => {
+    const mine = await workspace();
+    expect(await mine.lastQuestion('C1', null)).toBeUndefined();
+    await mine.rememberQuestion('C1', '1.0', 'has churn moved?');
+    await mine.rememberQuestion('C1', null, 'has churn at 6 months moved?');
+    await mine.rememberQuestion('C1', '1.0', 'has churn at 3 months moved?');
+    expect(await mine.lastQuestion('C1', '1.0')).toBe('has churn at 3 months moved?');
+    expect(await mine.lastQuestion('C1', null)).toBe('has churn at 6 months moved?');
+    expect(await mine.lastQuestion('C1', '2.0')).toMatch(/has churn at [36] months moved/);
+    expect(await mine.lastQuestion('C2', '1.0')).toBeUndefined();
+  });
+
   test('an upload is kept, changed only where told, and found in its thread', async () => {
     const mine = await workspace();
     const saved = await mine.saveUpload(upload());
@@ -104,6 +116,7 @@ onBothEngines('what one workspace stores', (engine) => {
       const up = await theirs.saveUpload(upload({ datasetId: set.id }));
       await theirs.saveSettings('C-seeds', { subgroupSize: 50 });
       await theirs.recordPosted('job', 'step', '1.0');
+      await theirs.rememberQuestion('C-seeds', null, 'has churn moved?');
 
       expect(await mine.dataset(set.id)).toBeUndefined();
       await expect(mine.parquet(set.id)).rejects.toMatchObject({ code: 'DATASET_MISSING' });
@@ -114,6 +127,7 @@ onBothEngines('what one workspace stores', (engine) => {
       await expect(mine.updateUpload(up.id, { state: 'refused' })).rejects.toThrow('no upload');
       expect(await mine.settings('C-seeds')).toEqual({});
       expect(await mine.postedTs('job', 'step')).toBeUndefined();
+      expect(await mine.lastQuestion('C-seeds', null)).toBeUndefined();
 
       expect(await theirs.upload(up.id)).toEqual(up);
       expect([...(await theirs.parquet(set.id))]).toEqual([7]);

@@ -1,12 +1,12 @@
 import { EbbError } from '../../errors.ts';
 import { putIntoWords } from '../../requests/putIntoWords.ts';
-import type { Question } from '../../requests/types.ts';
+import type { Question, SideQuestion, SideQuestionOf } from '../../requests/types.ts';
 import { understand } from '../../requests/understand.ts';
 import type { Dataset } from '../../store/types.ts';
 import { errorMessage } from '../messages/errorMessage.ts';
 import { helpMessage, noDataMessage } from '../messages/plainMessages.ts';
 import { readMessage } from '../messages/readMessage.ts';
-import type { UnderstoodWords } from '../messages/verdictMessage.ts';
+import { saidBy, type UnderstoodWords } from '../messages/verdictMessage.ts';
 import type { Poster } from '../posting/poster.ts';
 import { postVerdict } from '../posting/postVerdict.ts';
 import { datasetFor, type Job, requestContext } from './context.ts';
@@ -30,27 +30,50 @@ export async function answerAsk(job: Job, poster: Poster, text: string): Promise
         dataset ? readMessage(dataset.report, dataset.name, { dataset: dataset.id }) : noDataMessage(deps.practice),
       );
       return;
-    case 'ask':
+    default:
       if (!dataset) await poster.post('no-data', noDataMessage(deps.practice));
-      else await answerQuestion(job, poster, dataset, words.request, words);
+      else await answerRequest(job, poster, dataset, words.request, words);
   }
 }
 
-/** @param words null when nobody asked in words */
-export async function answerQuestion(
+/**
+ * Answers a question about one dataset.
+ * @param words null when nobody asked in words
+ */
+export async function answerRequest(
   job: Job,
   poster: Poster,
   dataset: Dataset,
-  question: Question,
+  asked: Question | SideQuestion,
   words: UnderstoodWords | null,
 ): Promise<void> {
   const { deps, client, rule, workspace, log } = job;
   if ((await poster.posted('verdict')) !== undefined) return;
   try {
-    const answer = await deps.answers.askDataset(workspace, dataset, question);
-    await postVerdict({ client, rule, poster, log }, answer, words, putIntoWords(question));
+    const request = asked.kind === 'explain' ? await aboutTheLast(job, poster, dataset, asked) : asked;
+    const answer =
+      request.kind === 'ask'
+        ? await deps.answers.askDataset(workspace, dataset, request)
+        : await deps.answers.askSide(workspace, dataset, request);
+    const shown = words && request !== asked ? { ...words, understood: putIntoWords(request) } : words;
+    await postVerdict({ client, rule, poster, log }, saidBy(answer), shown, putIntoWords(request));
+    if (request.kind === 'ask')
+      await workspace.rememberQuestion(poster.place.channel, poster.place.threadTs, putIntoWords(request));
   } catch (error) {
     if (!(error instanceof EbbError)) throw error;
     await poster.post('error', errorMessage(error));
   }
+}
+
+/** A bare "explain" is about the last verdict given here: in this thread, else in the channel. */
+async function aboutTheLast(
+  { deps, workspace }: Job,
+  { place }: Poster,
+  dataset: Dataset,
+  asked: SideQuestionOf<'explain'>,
+): Promise<SideQuestionOf<'explain'>> {
+  if (Object.keys(asked).length > 1) return asked;
+  const last = await workspace.lastQuestion(place.channel, place.threadTs);
+  const { request } = understand(last ?? '', requestContext(deps.now(), dataset));
+  return request.kind === 'ask' ? { ...request, kind: 'explain' } : asked;
 }

@@ -7,7 +7,7 @@ import { dateOrderMessage } from '../messages/dateOrderMessage.ts';
 import { errorMessage } from '../messages/errorMessage.ts';
 import { readingMessage, readMessage } from '../messages/readMessage.ts';
 import type { Poster } from '../posting/poster.ts';
-import { answerQuestion } from './answerAsk.ts';
+import { answerRequest } from './answerAsk.ts';
 import { type Job, requestContext } from './context.ts';
 
 /** A file that takes longer than this gets a word beforehand. */
@@ -60,8 +60,10 @@ export async function readUpload(
     readMessage(dataset.report, dataset.name, { upload: upload.id, dataset: dataset.id }, lead),
   );
   const words = asked === '' ? null : understand(asked, requestContext(deps.now(), dataset));
-  const question = words?.request.kind === 'ask' ? words.request : ({ kind: 'ask' } as const);
-  await answerQuestion(job, poster, dataset, question, words?.request.kind === 'ask' ? words : null);
+  const request = words?.request;
+  // Beside a file, "help" or words without a question still get the plain answer.
+  const answered = request && request.kind !== 'help' && request.kind !== 'data' ? request : null;
+  await answerRequest(job, poster, dataset, answered ?? { kind: 'ask' }, answered ? words : null);
 }
 
 async function ingested(job: Job, poster: Poster, upload: Upload, file: SharedFile) {

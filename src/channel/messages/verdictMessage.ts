@@ -1,6 +1,9 @@
+import type { Reply } from '../../answers/questions/types.ts';
 import type { Answer } from '../../answers/types.ts';
+import type { Picture } from '../../picture/picture.ts';
 import type { Understanding } from '../../requests/types.ts';
 import { understoodLines } from '../../requests/understoodLines.ts';
+import type { Signal, Verdict } from '../../verdict/types.ts';
 import { ACTION } from '../names.ts';
 import { type Block, bullets, button, context, type Message, message, section } from './blocks.ts';
 import { moreButton, verdictLines } from './moreLines.ts';
@@ -13,31 +16,41 @@ const MOST_PIECES = 5;
 const ALT_LENGTH = 2000;
 const BUTTON_VALUE_LENGTH = 2000;
 
+/** What an answer says, whichever question it answers. */
+export type Said = Pick<Verdict, 'headline' | 'evidence' | 'cautions' | 'next'> & {
+  readonly picture: Pick<Picture, 'png' | 'altText'> | null;
+  /** the flags told in the evidence */
+  readonly signals: readonly Pick<Signal, 'words'>[];
+};
+
+export function saidBy(answer: Pick<Answer, 'verdict' | 'picture' | 'signals'> | Reply): Said {
+  return 'verdict' in answer
+    ? { ...answer.verdict, picture: answer.picture, signals: answer.signals }
+    : { ...answer, signals: [] };
+}
+
 /**
- * The verdict as a message.
+ * An answer as a message.
  * @param words  null when nobody asked in words (after an upload)
  * @param again  the question in words, for the button that asks it again
  * @param fileId the uploaded picture; null leaves it out (the text carries the whole meaning)
  */
 export function verdictMessage(
-  answer: Answer,
+  said: Said,
   words: UnderstoodWords | null,
   fileId: string | null,
   again: string,
 ): Message {
-  const { verdict, picture } = answer;
-  const headline = inert(verdict.headline);
+  const { picture } = said;
+  const headline = inert(said.headline);
   const understood = words ? shownLines(understoodLines(words), MOST_PIECES + 1) : [];
-  const { whole, shown, rest } = verdictLines(verdict, answer.signals);
+  const { whole, shown, rest } = verdictLines(said, said.signals);
   const image: Block | undefined =
     picture && fileId !== null
       ? {
           type: 'image',
           slack_file: { id: fileId },
-          alt_text: shortened(
-            plainLine(picture.altText) || plainLine(verdict.headline) || 'Chart of churn',
-            ALT_LENGTH,
-          ),
+          alt_text: shortened(plainLine(picture.altText) || plainLine(said.headline) || 'Chart of churn', ALT_LENGTH),
         }
       : undefined;
   const buttons = [

@@ -1,11 +1,10 @@
 import { setTimeout as pause } from 'node:timers/promises';
 import type { WebClient } from '@slack/web-api';
 import type { Logger } from 'pino';
-import type { Answer } from '../../answers/types.ts';
 import type { HostRule } from '../download/hosts.ts';
 import { shareFailedMessage } from '../messages/plainMessages.ts';
 import { plainLine, shortened } from '../messages/text.ts';
-import { type UnderstoodWords, verdictMessage } from '../messages/verdictMessage.ts';
+import { type Said, type UnderstoodWords, verdictMessage } from '../messages/verdictMessage.ts';
 import type { Poster } from './poster.ts';
 import { uploadPicture } from './uploadPicture.ts';
 import { mayPass, refusal, refusalDetails } from './webClient.ts';
@@ -21,30 +20,30 @@ export interface VerdictPosting {
 }
 
 /**
- * Posts a verdict with its picture as one message. When the service will not show the picture in a block, it is shared in the thread;
+ * Posts an answer with its picture as one message. When the service will not show the picture in a block, it is shared in the thread;
  * when it will not take it at all, the words stand alone: they carry the whole meaning.
  */
 export async function postVerdict(
   posting: VerdictPosting,
-  answer: Answer,
+  said: Said,
   words: UnderstoodWords | null,
   again: string,
 ): Promise<void> {
   const { poster } = posting;
   if ((await poster.posted('verdict')) !== undefined) return;
-  const fileId = await uploaded(posting, answer);
-  if (fileId !== null && (await shown(posting, answer, words, fileId, again))) return;
-  await poster.post('verdict', verdictMessage(answer, words, null, again));
-  if (answer.picture && !(await shared(posting, answer))) await poster.post('no-picture', shareFailedMessage());
+  const fileId = await uploaded(posting, said);
+  if (fileId !== null && (await shown(posting, said, words, fileId, again))) return;
+  await poster.post('verdict', verdictMessage(said, words, null, again));
+  if (said.picture && !(await shared(posting, said))) await poster.post('no-picture', shareFailedMessage());
 }
 
 /** The picture's file id; null when there is none or the service refuses it. */
-async function uploaded({ client, rule, poster, log }: VerdictPosting, answer: Answer): Promise<string | null> {
-  if (!answer.picture) return null;
+async function uploaded({ client, rule, poster, log }: VerdictPosting, said: Said): Promise<string | null> {
+  if (!said.picture) return null;
   const before = await poster.posted('picture');
   if (before !== undefined) return before;
   try {
-    const id = await uploadPicture(client, rule, answer.picture, nameOf(answer), null);
+    const id = await uploadPicture(client, rule, said.picture, nameOf(said), null);
     await poster.remember('picture', id);
     return id;
   } catch (error) {
@@ -59,14 +58,14 @@ async function uploaded({ client, rule, poster, log }: VerdictPosting, answer: A
 
 async function shown(
   { poster, log }: VerdictPosting,
-  answer: Answer,
+  said: Said,
   words: UnderstoodWords | null,
   fileId: string,
   again: string,
 ): Promise<boolean> {
   for (const wait of [...SHOW_WAITS_MS, null]) {
     try {
-      await poster.post('verdict', verdictMessage(answer, words, fileId, again));
+      await poster.post('verdict', verdictMessage(said, words, fileId, again));
       return true;
     } catch (error) {
       const aboutPicture =
@@ -83,11 +82,11 @@ async function shown(
   return false;
 }
 
-async function shared({ client, rule, poster, log }: VerdictPosting, answer: Answer): Promise<boolean> {
-  if (!answer.picture) return true;
+async function shared({ client, rule, poster, log }: VerdictPosting, said: Said): Promise<boolean> {
+  if (!said.picture) return true;
   if ((await poster.posted('share')) !== undefined) return true;
   try {
-    await poster.remember('share', await uploadPicture(client, rule, answer.picture, nameOf(answer), poster.place));
+    await poster.remember('share', await uploadPicture(client, rule, said.picture, nameOf(said), poster.place));
     return true;
   } catch (error) {
     log.warn({ err: error, refusal: refusal(error) }, 'the picture could not be shared either');
@@ -95,6 +94,6 @@ async function shared({ client, rule, poster, log }: VerdictPosting, answer: Ans
   }
 }
 
-function nameOf(answer: Answer): { name: string; title: string } {
-  return { name: 'churn.png', title: shortened(plainLine(answer.verdict.headline), 200) };
+function nameOf(said: Said): { name: string; title: string } {
+  return { name: 'churn.png', title: shortened(plainLine(said.headline), 200) };
 }

@@ -1,5 +1,6 @@
+import { asked } from './asked.ts';
 import { first } from './first.ts';
 import type { Migration } from './types.ts';
 
 /** All steps in order. Append only. */
-export const MIGRATIONS: readonly Migration[] = [first];
+export const MIGRATIONS: readonly Migration[] = [first, asked];
