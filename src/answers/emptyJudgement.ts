@@ -19,5 +19,6 @@ export function emptyJudgement(): Judgement {
     neighbours: null,
     segmentsDiffer: null,
     mix: null,
+    standingChance: null,
   };
 }

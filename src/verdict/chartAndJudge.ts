@@ -14,11 +14,18 @@ export interface ChartRequest {
   readonly baselineLast?: number;
   readonly excluded?: readonly number[];
   readonly segments?: readonly SegmentCounts[];
+  /** false leaves out how often flags are raised with nothing changed: where many charts are judged and it is not told */
+  readonly runLength?: boolean;
 }
 
 export interface JudgedChart {
   readonly chart: Chart;
   readonly judgement: Judgement;
+  /**
+   * p value of "moved": the chance, with nothing changed, of a chart that reads as moved on at least such evidence; null when it could not
+   * be judged
+   */
+  readonly movedChance: number | null;
 }
 
 const KINDS = { p: pChart, 'p-prime': pPrimeChart } as const;
@@ -45,21 +52,37 @@ export function chartAndJudge(request: ChartRequest): JudgedChart {
   const last = request.baselineLast ?? recommendedBaseline(counts.length);
   const kind = request.kind ?? (isOverdispersed(chartOf('p', last)) ? 'p-prime' : 'p');
   const usual = chartWith(last);
-  if (request.baselineLast !== undefined || usual.judgement.finding !== 'unsteady-baseline') return usual;
+  const fixed = request.baselineLast !== undefined;
+  const usualWay = { ...usual, movedChance: movedChance(usual.judgement, fixed ? 1 : USUAL_SHARE) };
+  if (fixed || usual.judgement.finding !== 'unsteady-baseline') return usualWay;
   const before = usual.judgement.steadiness?.splitAfter ?? 0;
   const trial = usual.chart.baseline.last >= counts.length;
-  if (before < (trial ? LEAST_BEFORE : LEAST_POINTS) || before >= usual.chart.baseline.last) return usual;
+  if (before < (trial ? LEAST_BEFORE : LEAST_POINTS) || before >= usual.chart.baseline.last) return usualWay;
   // On trial limits the second part of the split reaches the newest point: the split's own calibrated test has told the two apart.
   const shortened = chartWith(before, trial);
   const { finding } = shortened.judgement;
-  return finding === 'risen' || finding === 'fallen' || finding === 'mix-change' ? shortened : usual;
+  if (finding !== 'risen' && finding !== 'fallen' && finding !== 'mix-change') return usualWay;
+  return { ...shortened, movedChance: Math.min(1, usual.judgement.steadiness!.pValue / (1 - USUAL_SHARE)) };
 
-  function chartWith(baselineLast: number, stepProven = false): JudgedChart {
+  function chartWith(baselineLast: number, stepProven = false): Pick<JudgedChart, 'chart' | 'judgement'> {
     const chart = chartOf(kind, baselineLast);
-    return { chart, judgement: judge(chart, segments, stepProven) };
+    return { chart, judgement: judge(chart, segments, stepProven, request.runLength) };
   }
 
   function chartOf(of: SubgroupKind, baselineLast: number): Chart {
     return KINDS[of](counts, { baselineLast: Math.min(baselineLast, counts.length), excluded });
   }
+}
+
+/**
+ * There are two ways for a chart to read as moved: its last stretch stands out, or its baseline splits and the points since stand out from
+ * its first part. Their p values share the chance of error between them in these parts (weighted Bonferroni; our choice of weights: the
+ * first way finds most moves, and the smallest chance that 999 simulated splits can show still counts among a dozen groups).
+ */
+const USUAL_SHARE = 0.7;
+
+/** Of a baseline that is no level nothing can be said: it gets no small p value. */
+function movedChance({ finding, standingChance }: Judgement, share: number): number | null {
+  if (standingChance === null) return null;
+  return finding === 'unsteady-baseline' ? 1 : Math.min(1, standingChance / share);
 }

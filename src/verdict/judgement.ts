@@ -8,7 +8,7 @@ import { smallestDetectable } from '../charts/standing/detectable.ts';
 import { type BlockDesign, LEAST_BEFORE } from '../charts/standing/lastBlock.ts';
 import { type Standing, standingJudge } from '../charts/standing/standing.ts';
 import { type StartCandidates, startCandidates } from '../charts/standing/startCandidates.ts';
-import { LEAST_RATIO, standingThreshold } from '../charts/standing/threshold.ts';
+import { chanceOfScore, LEAST_RATIO, standingThreshold } from '../charts/standing/threshold.ts';
 import { SHIFT_TESTS } from '../charts/tests/nelsonTests.ts';
 import type { Chart, ChartPoint, SubgroupCount } from '../charts/types.ts';
 import { type MixReading, readMix } from './mix.ts';
@@ -47,6 +47,8 @@ export interface Judgement {
   readonly neighbours: Autocorrelation | null;
   readonly segmentsDiffer: Homogeneity | null;
   readonly mix: MixReading | null;
+  /** chance of a last stretch that stands out at least this much with nothing changed; null where no threshold was calibrated */
+  readonly standingChance: number | null;
 }
 
 const NO_TRUST: Trust = {
@@ -62,8 +64,14 @@ const NO_TRUST: Trust = {
  * @param segments    counts per segment value and point, or empty
  * @param stepProven  true when the points after the baseline were found to differ by a calibrated test of their own, so that any flagged
  *                    block stands
+ * @param withRunLength  false leaves out how often flags are raised with nothing changed, where that is not told
  */
-export function judge(chart: Chart, segments: readonly SegmentCounts[] = [], stepProven = false): Judgement {
+export function judge(
+  chart: Chart,
+  segments: readonly SegmentCounts[] = [],
+  stepProven = false,
+  withRunLength = true,
+): Judgement {
   const counts: SubgroupCount[] = chart.points.map(({ accounts, lost }) => ({
     accounts,
     lost,
@@ -86,6 +94,7 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = [], ste
     neighbours: null,
     segmentsDiffer: segmentTest(segments),
     mix: null,
+    standingChance: null,
   };
   const quiet: Standing = {
     above: { block: { first: newest, ratio: 0 }, score: 0 },
@@ -133,13 +142,14 @@ export function judge(chart: Chart, segments: readonly SegmentCounts[] = [], ste
   } = {
     ...nothing,
     trust: {
-      ...runLengthTrust(chart, design.correlation ?? 0),
+      ...(withRunLength ? runLengthTrust(chart, design.correlation ?? 0) : NO_TRUST),
       falseVerdictChance: threshold.falseVerdictChance,
       wouldSee: smallestDetectable(design, chart.center, wouldSeeFrom, calibrated.ratio * shrink, WOULD_SEE_CHANCE),
     },
     steadiness: split,
     dispersion: spread,
     neighbours: autocorrelation(level.map((count) => count.lost / count.accounts)),
+    standingChance: chanceOfScore(calibrated, standing[side].score / shrink),
   };
   const judged = (
     finding: Finding,

@@ -15,6 +15,8 @@ export interface Threshold {
   readonly falseVerdictChance: number;
   readonly standardError: number;
   readonly histories: number;
+  /** the simulated scores, ascending */
+  readonly scores: readonly number[];
 }
 
 /** A ratio below this is no evidence whatever the design (a factor of e in likelihood): the threshold never sinks under it. */
@@ -47,5 +49,22 @@ export function calibrated(scores: number[]): Threshold {
     falseVerdictChance: moved,
     standardError: Math.sqrt((moved * (1 - moved)) / histories),
     histories,
+    scores,
   };
+}
+
+/**
+ * Chance of a score at least this large with nothing changed: a p value, counting the real history with the simulated ones, so that it is
+ * never 0.
+ * Source: the add-one rule of Monte Carlo tests, Davison AC and Hinkley DV, Bootstrap Methods and their Application, 1997, section 4.2
+ * (section from memory).
+ */
+export function chanceOfScore({ scores }: Pick<Threshold, 'scores'>, score: number): number {
+  let [low, high] = [0, scores.length];
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (scores[middle]! < score) low = middle + 1;
+    else high = middle;
+  }
+  return (1 + scores.length - low) / (1 + scores.length);
 }
