@@ -17,6 +17,18 @@ export function subgroupSizes(rate: number): { fiveLosses: number; positiveLower
   return { fiveLosses: rounded(five), positiveLowerLimit: rounded(positive), seesHalving: rounded(halving) };
 }
 
+/**
+ * Size at which a rise from `rate` by `rise` takes the expected share lost up to the upper 3 sigma limit, so that about every second point lies
+ * beyond it. Not rounded.
+ * @param rate  0 < rate < 1
+ * @param rise  in the rate's own unit, a fraction, above 0
+ * Source: Duncan AJ, Quality Control and Industrial Statistics (rule and example from memory).
+ * Example: from 1 % to 5 %, 56 accounts (55.69); the exact chance is then 53.5 %, since counts are whole numbers.
+ */
+export function sizeThatReachesLimit(rate: number, rise: number): number {
+  return (9 * rate * (1 - rate)) / rise ** 2;
+}
+
 export function rounded(size: number): number {
   return size < 20 ? size : Math.ceil(size / 5) * 5;
 }

@@ -1,5 +1,9 @@
 import { describe, expect, test } from 'vitest';
+import { rounded, sizeThatReachesLimit, subgroupSizes } from '../../src/census/sizes.ts';
 import { pChart } from '../../src/charts/kinds/pChart.ts';
+import { binomialChances } from '../../src/charts/random/binomialChances.ts';
+import { exactRunLength } from '../../src/charts/runLength/exactRunLength.ts';
+import { countZones } from '../../src/charts/runLength/zoneChances.ts';
 import { nelsonTests } from '../../src/charts/tests/nelsonTests.ts';
 import { zoneOf } from '../../src/charts/tests/zone.ts';
 import type { Chart, SubgroupCount } from '../../src/charts/types.ts';
@@ -125,7 +129,10 @@ describe('p chart with unequal sizes', () => {
 });
 
 describe('smallest size with a lower limit above zero', () => {
-  for (const entry of checkValues<{ p: number }, { smallest_n: number; positive_lcl_bound: number }>('nmin-p')) {
+  for (const entry of checkValues<
+    { p: number },
+    { smallest_n: number; positive_lcl_bound: number; np5: number; n95_atleast1: number }
+  >('nmin-p')) {
     test(`p = ${entry.inputs.p}: n = ${entry.expected.smallest_n}, and one less has none: ${entry.cited}`, () => {
       const lower = (accounts: number): number =>
         pChart(
@@ -139,5 +146,30 @@ describe('smallest size with a lower limit above zero', () => {
       expect(lower(entry.expected.positive_lcl_bound)).toBeLessThan(1e-15);
       expect(entry.expected.smallest_n).toBe(entry.expected.positive_lcl_bound + 1);
     });
+
+    test(`p = ${entry.inputs.p}: the sizes that are offered are these, rounded up`, () => {
+      const { fiveLosses, positiveLowerLimit } = subgroupSizes(entry.inputs.p);
+      expect(fiveLosses).toBe(rounded(entry.expected.np5));
+      expect(positiveLowerLimit).toBe(rounded(entry.expected.smallest_n));
+    });
+
+    test(`p = ${entry.inputs.p}: ${entry.expected.n95_atleast1} accounts hold at least one loss in 95 of 100 cases, one fewer does not`, () => {
+      const none = (size: number): number => binomialChances(size, entry.inputs.p).chances[0]!;
+      expect(binomialChances(entry.expected.n95_atleast1, entry.inputs.p).first).toBe(0);
+      expect(none(entry.expected.n95_atleast1)).toBeLessThanOrEqual(0.05);
+      expect(none(entry.expected.n95_atleast1 - 1)).toBeGreaterThan(0.05);
+    });
   }
+
+  const { inputs, expected, tolerance, cited } = checkValue<
+    { p: number; delta: number },
+    { n_exact: number; n: number; exact_power_at_56_p05: number }
+  >('nmin-duncan');
+  test(`the size at which a rise reaches the upper limit, and how often the next point then lies beyond it: ${cited}`, () => {
+    const { p, delta } = inputs;
+    near(sizeThatReachesLimit(p, delta), expected.n_exact, tolerance);
+    expect(Math.ceil(sizeThatReachesLimit(p, delta))).toBe(expected.n);
+    const zones = countZones({ size: expected.n, center: p, rate: p + delta, sigmaZ: 1, correlation: 0 });
+    near(exactRunLength(zones, [1]).within(1), expected.exact_power_at_56_p05, tolerance);
+  });
 });
