@@ -40,3 +40,18 @@ if (only === undefined || only === 'bot') {
     `  ${bot.asks} questions: median ${ms(bot.p50)}, 95th percentile ${ms(bot.p95)}, worst ${ms(bot.worst)}; wanted: 95th percentile under 1000 ms`,
   );
 }
+
+if (only === undefined || only === 'questions') {
+  const sizes = [100_000, 1_000_000];
+  const times = await withModule('everyQuestion.ts', (module) => module.everyQuestionBench(sizes));
+  console.log(
+    `every kind of chart and question with its picture, on ${sizes.map((n) => n.toLocaleString('en-US')).join(' and ')} accounts already read`,
+  );
+  for (const {
+    name,
+    ms: [small, large],
+  } of times)
+    console.log(
+      `  ${name.padEnd(18)} ${ms(small).padStart(9)} ${ms(large).padStart(9)}   ten times the accounts take ${(large / small).toFixed(1)} times as long`,
+    );
+}
