@@ -80,7 +80,7 @@ export function optionsOf(command: Command): string[] {
   return Object.keys(KNOWN).filter((name) => !others.includes(name));
 }
 
-const ROLES: readonly ColumnRole[] = ['id', 'start', 'end', 'segment', 'amount'];
+const ROLES: readonly ColumnRole[] = ['id', 'start', 'end', 'segment', 'amount', 'currency'];
 const CHARTS: readonly (ChartKind | 'auto')[] = ['auto', 'p', 'p-prime', 'g', 't', 'individuals', 'ewma', 'cusum'];
 const VIEWS: readonly CensusView[] = ['start', 'renewal', 'calendar'];
 const ORDERS: readonly DateOrder[] = ['iso', 'dmy', 'mdy'];

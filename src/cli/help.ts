@@ -26,7 +26,7 @@ Options about the question; they win over its words
 Options about the file
   --as-of YYYY-MM-DD         last day the data is complete for
   --columns ROLE=COL,...     which column is which; the roles are start, end, id,
-                             segment and amount: --columns start=joined,end=left
+                             segment, amount and currency: --columns start=joined,end=left
   --dates iso|dmy|mdy        how dates are written: year, day or month first
 
 Options of chart

@@ -43,3 +43,32 @@ it('says where the data-through date comes from: the last start, an end after it
   expect(through({ lastStart: report.asOf - 3 })).toMatch(/\(worked out from the file: its last start or end\)/);
   expect(through({ asOfSource: 'given' })).toMatch(/\(as you said\)/);
 });
+
+it('says what in the amounts decides a sum of revenue', () => {
+  const amounts = {
+    missing: 3,
+    unreadable: 1,
+    firstUnreadable: { line: 88, value: 'ask Wren' },
+    negative: 2,
+    zero: 5,
+    decimalComma: true,
+    thousands: 4,
+    severalAtOnce: 0,
+    currencies: [
+      { currency: 'EUR', accounts: 900 },
+      { currency: null, accounts: 588 },
+    ],
+  };
+  expect(readText({ ...report, amounts }, 'x.csv').filter((line) => /amount|currenc/i.test(line))).toEqual([
+    'Amounts: a comma is the decimal sign, as some of them can only be read so.',
+    'Amounts: 4 rows with a point between thousands.',
+    'Currencies of the amounts: EUR (900 accounts) and none stated (588 accounts).',
+    'Amounts that cannot be read, 1 row: line 88 says “ask Wren”. The accounts count; no sum of revenue holds them.',
+    '3 rows without an amount.',
+    '2 rows with a negative amount, which no sum of revenue holds.',
+  ]);
+  const plain = { ...amounts, missing: 0, unreadable: 0, firstUnreadable: null, negative: 0, thousands: 0 };
+  expect(readText({ ...report, amounts: { ...plain, decimalComma: false, currencies: [] } }, 'x.csv')).toEqual(
+    readText(report, 'x.csv'),
+  );
+});

@@ -90,7 +90,7 @@ export async function bySubgroups(context: AskContext): Promise<Reached> {
 }
 
 /** When somebody asked "since when", and the chart dates the move earlier, it says so. */
-function withSince(verdict: Verdict, since: Day | undefined): Verdict {
+export function withSince(verdict: Verdict, since: Day | undefined): Verdict {
   const start = verdict.since?.start ?? null;
   if (since === undefined || start === null || start >= since) return verdict;
   const earlier = `You asked about accounts since ${dayInWords(since)}; the chart itself dates the move earlier, to about ${dayInWords(start)}.`;
@@ -98,7 +98,7 @@ function withSince(verdict: Verdict, since: Day | undefined): Verdict {
 }
 
 /** Day on which this many accounts will have matured, from those already started. */
-function maturedOn(census: Census, accounts: number): Day | null {
+export function maturedOn(census: Census, accounts: number): Day | null {
   let sum = census.matured;
   for (const { day, accounts: more } of census.maturing) {
     sum += more;
@@ -108,7 +108,7 @@ function maturedOn(census: Census, accounts: number): Day | null {
 }
 
 /** The baseline the question fixes, if it does, and what to say when it could not be followed. */
-function chooseBaseline(
+export function chooseBaseline(
   question: Question,
   census: Census,
 ): { baseline: { baselineLast?: number }; caution: readonly string[] } {

@@ -1,6 +1,6 @@
-import type { ReadReport } from '../../accounts/types.ts';
+import type { AmountReport, ReadReport } from '../../accounts/types.ts';
 import { dayInWords } from '../../days.ts';
-import { counted } from './format.ts';
+import { counted, listed } from './format.ts';
 
 const ORDER_WORDS = {
   iso: 'year first',
@@ -10,7 +10,7 @@ const ORDER_WORDS = {
 
 /** What was read, line by line: nothing that decides the answer is left unsaid. */
 export function readText(report: ReadReport, name: string): string[] {
-  const roles = (['id', 'start', 'end', 'segment', 'amount'] as const)
+  const roles = (['id', 'start', 'end', 'segment', 'amount', 'currency'] as const)
     .flatMap((role) => (report.columns[role] === undefined ? [] : [`${role} = ${report.columns[role]}`]))
     .join(', ');
   const lines = [
@@ -24,11 +24,33 @@ export function readText(report: ReadReport, name: string): string[] {
     lines.push(`${counted(report.returned, 'account')} left and came back; each counts as lost where it first left.`);
   if (report.futureEnds > 0)
     lines.push(`${counted(report.futureEnds, 'end')} dated after that day: still customers until then.`);
+  if (report.amounts) lines.push(...amountLines(report.amounts));
   for (const entry of report.rejected) {
     lines.push(
       `Not used, ${counted(entry.rows, 'row')}: ${entry.reason} (${entry.rows === 1 ? '' : 'first on '}line ${entry.firstLine}).`,
     );
   }
+  return lines;
+}
+
+/** What in the amounts decides a sum: how they were read, and what could not be. */
+function amountLines({ decimalComma, thousands, currencies, ...amounts }: AmountReport): string[] {
+  const lines: string[] = [];
+  if (decimalComma) lines.push('Amounts: a comma is the decimal sign, as some of them can only be read so.');
+  if (thousands > 0)
+    lines.push(`Amounts: ${counted(thousands, 'row')} with a ${decimalComma ? 'point' : 'comma'} between thousands.`);
+  const named = currencies.map(
+    ({ currency, accounts }) => `${currency ?? 'none stated'} (${counted(accounts, 'account')})`,
+  );
+  if (named.length > 0)
+    lines.push(`${named.length === 1 ? 'Currency' : 'Currencies'} of the amounts: ${listed(named)}.`);
+  const { unreadable, firstUnreadable, missing, negative } = amounts;
+  if (unreadable > 0 && firstUnreadable)
+    lines.push(
+      `Amounts that cannot be read, ${counted(unreadable, 'row')}: line ${firstUnreadable.line} says “${firstUnreadable.value}”. The accounts count; no sum of revenue holds them.`,
+    );
+  if (missing > 0) lines.push(`${counted(missing, 'row')} without an amount.`);
+  if (negative > 0) lines.push(`${counted(negative, 'row')} with a negative amount, which no sum of revenue holds.`);
   return lines;
 }
 
