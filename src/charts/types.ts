@@ -46,6 +46,8 @@ export interface ChartPoint {
   readonly exactUpper?: number;
   /** where the zones end, when they come from tail areas and not from multiples of sigma */
   readonly edges?: ZoneEdges;
+  /** the unfinished gap of a g or t chart: no loss has ended it, and it is at least this long */
+  readonly open?: true;
 }
 
 export interface Baseline {
@@ -70,6 +72,8 @@ export interface Chart {
   /** n when every subgroup has the same size, else null */
   readonly subgroupSize: number | null;
   readonly center: number;
+  /** g and t: mean gap of the baseline, where center is the median */
+  readonly mean?: number;
   readonly baseline: Baseline;
   readonly points: readonly ChartPoint[];
 }

@@ -68,6 +68,7 @@ export function exponentialEdges(mean: number, areas: readonly [number, number, 
 
 /** The same for whole days: the first days that lie beyond have tails of at most the area, as for geometric gaps. */
 export function wholeDayEdges(mean: number, areas: readonly [number, number, number] = TAIL_AREAS): ZoneEdges {
+  if (mean <= 0) return exponentialEdges(0, areas);
   const pace = 1 / mean;
   // log of m (exp(1/m) - 1), which is 0 for long gaps; written so that very short ones do not overflow
   const hours = pace < 30 ? Math.log(Math.expm1(pace) / pace) : pace - Math.log(pace);
