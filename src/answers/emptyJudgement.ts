@@ -20,5 +20,6 @@ export function emptyJudgement(): Judgement {
     segmentsDiffer: null,
     mix: null,
     standingChance: null,
+    lastBlock: null,
   };
 }

@@ -3,16 +3,16 @@ import { type Autocorrelation, autocorrelation } from '../charts/checks/autocorr
 import { type Dispersion, dispersion } from '../charts/checks/dispersion.ts';
 import { type Homogeneity, homogeneity } from '../charts/checks/homogeneity.ts';
 import { type Steadiness, steadiness } from '../charts/checks/steadiness.ts';
-import { chartRunLength } from '../charts/runLength/chartRunLength.ts';
 import { smallestDetectable } from '../charts/standing/detectable.ts';
 import { type BlockDesign, LEAST_BEFORE } from '../charts/standing/lastBlock.ts';
-import { type Standing, standingJudge } from '../charts/standing/standing.ts';
+import { type Standing, type StandingSide, standingJudge } from '../charts/standing/standing.ts';
 import { type StartCandidates, startCandidates } from '../charts/standing/startCandidates.ts';
 import { chanceOfScore, LEAST_RATIO, standingThreshold } from '../charts/standing/threshold.ts';
 import { SHIFT_TESTS } from '../charts/tests/nelsonTests.ts';
-import type { Chart, ChartPoint, SubgroupCount } from '../charts/types.ts';
+import type { Chart, ChartPoint, ShiftTest, SubgroupCount } from '../charts/types.ts';
 import { type MixReading, readMix } from './mix.ts';
 import { readSignals } from './signals.ts';
+import { NO_TRUST, runLengthTrust } from './trust.ts';
 import type { Signal, Trust } from './types.ts';
 
 /** Fewest points on which anything is judged. Common practice, no source; below it the reply is "too early". */
@@ -34,6 +34,23 @@ export type Finding =
   | 'fallen'
   | 'steady';
 
+/** The last block that decides whether churn moved, on the side that stands out more. */
+export interface LastBlockReading {
+  readonly side: 'above' | 'below';
+  /** point at which the block starts */
+  readonly first: number;
+  /** binomial log likelihood ratio of the block against the usual level */
+  readonly ratio: number;
+  /** the ratio is divided by this: how much more the points vary than the binomial allows; 1 when they do not */
+  readonly dividedBy: number;
+  /** what is compared: the divided ratio, or 0 when no flag lies in the block */
+  readonly score: number;
+  /** what the score must exceed */
+  readonly threshold: number;
+  /** intra-class correlation the histories behind the threshold were simulated with; absent on a p chart */
+  readonly correlation?: number;
+}
+
 /** Everything the numbers say, before any words. */
 export interface Judgement {
   readonly finding: Finding;
@@ -49,29 +66,30 @@ export interface Judgement {
   readonly mix: MixReading | null;
   /** chance of a last stretch that stands out at least this much with nothing changed; null where no threshold was calibrated */
   readonly standingChance: number | null;
+  /** null where no threshold was calibrated */
+  readonly lastBlock: LastBlockReading | null;
 }
 
-const NO_TRUST: Trust = {
-  falseAlarmEvery: null,
-  method: 'simulated',
-  standardError: null,
-  falseVerdictChance: null,
-  wouldSee: null,
-};
+export interface JudgeOptions {
+  /** counts per segment value and point */
+  readonly segments?: readonly SegmentCounts[];
+  /** the tests whose flags count; all that speak about a shift when absent */
+  readonly tests?: readonly ShiftTest[];
+  /**
+   * true when the points after the baseline were found to differ by a calibrated test of their own, so that any flagged block stands
+   */
+  readonly stepProven?: boolean;
+  /** false leaves out how often flags are raised and how soon, where that is not told */
+  readonly runLength?: boolean;
+  /** accounts that reach the age in a week, where it is known: what turns a delay into weeks */
+  readonly accountsPerWeek?: number;
+}
 
 /**
  * Judges a chart: which flags stand, whether that is a verdict, and how far it can be trusted.
- * @param segments    counts per segment value and point, or empty
- * @param stepProven  true when the points after the baseline were found to differ by a calibrated test of their own, so that any flagged
- *                    block stands
- * @param withRunLength  false leaves out how often flags are raised with nothing changed, where that is not told
  */
-export function judge(
-  chart: Chart,
-  segments: readonly SegmentCounts[] = [],
-  stepProven = false,
-  withRunLength = true,
-): Judgement {
+export function judge(chart: Chart, options: JudgeOptions = {}): Judgement {
+  const { segments = [], tests = SHIFT_TESTS, stepProven = false } = options;
   const counts: SubgroupCount[] = chart.points.map(({ accounts, lost }) => ({
     accounts,
     lost,
@@ -81,6 +99,7 @@ export function judge(
     accounts: counts.map((count) => count.accounts),
     baselineLast: chart.baseline.last,
     excluded: chart.baseline.excluded,
+    tests,
   };
   const newest = counts.length;
   const trial = chart.baseline.last >= newest;
@@ -95,6 +114,7 @@ export function judge(
     segmentsDiffer: segmentTest(segments),
     mix: null,
     standingChance: null,
+    lastBlock: null,
   };
   const quiet: Standing = {
     above: { block: { first: newest, ratio: 0 }, score: 0 },
@@ -111,7 +131,7 @@ export function judge(
     return {
       ...nothing,
       finding: 'too-few-points',
-      signals: readSignals(chart, quiet, null),
+      signals: readSignals(chart, quiet, null, { tests }),
     };
 
   const used = baselinePoints(chart);
@@ -142,7 +162,9 @@ export function judge(
   } = {
     ...nothing,
     trust: {
-      ...(withRunLength ? runLengthTrust(chart, design.correlation ?? 0) : NO_TRUST),
+      ...(options.runLength === false
+        ? NO_TRUST
+        : runLengthTrust(chart, design.correlation ?? 0, tests, options.accountsPerWeek ?? 0)),
       falseVerdictChance: threshold.falseVerdictChance,
       wouldSee: smallestDetectable(design, chart.center, wouldSeeFrom, calibrated.ratio * shrink, WOULD_SEE_CHANCE),
     },
@@ -150,6 +172,10 @@ export function judge(
     dispersion: spread,
     neighbours: autocorrelation(level.map((count) => count.lost / count.accounts)),
     standingChance: chanceOfScore(calibrated, standing[side].score / shrink),
+    lastBlock: readLastBlock(standing[side], side, prime ? Math.max(1, spread?.ratio ?? 1) : shrink, shrink, {
+      threshold: threshold.ratio,
+      ...(design.correlation === undefined ? {} : { correlation: design.correlation }),
+    }),
   };
   const judged = (
     finding: Finding,
@@ -158,7 +184,7 @@ export function judge(
   ): Judgement => ({
     ...base,
     finding,
-    signals: readSignals(chart, standing, signalSide, finding === 'mix-change'),
+    signals: readSignals(chart, standing, signalSide, { tests, explained: finding === 'mix-change' }),
     ...more,
   });
 
@@ -180,6 +206,18 @@ export function judge(
   if (mix?.explains === 'all') return judged('mix-change', null, { start, mix });
   if (mix?.explains === 'unclear') return judged('mix-unclear', null, { start, mix });
   return judged(moved === 'above' ? 'risen' : 'fallen', moved, { start, mix });
+}
+
+/** @param divided  what a p' chart divided by when the block could not be scored, because no flag lies in it */
+function readLastBlock(
+  { block, score }: StandingSide,
+  side: 'above' | 'below',
+  divided: number,
+  shrink: number,
+  rest: Pick<LastBlockReading, 'threshold' | 'correlation'>,
+): LastBlockReading {
+  const dividedBy = score > 0 ? (block.ratio / score) * shrink : divided;
+  return { side, ...block, dividedBy, score: score / shrink, ...rest };
 }
 
 /** The points that set the usual level. */
@@ -209,20 +247,6 @@ function spreadAround(step: Steadiness | null, used: readonly SubgroupCount[]): 
 function correlationOf(excess: number, used: readonly SubgroupCount[]): number {
   const size = used.reduce((sum, { accounts }) => sum + accounts, 0) / used.length;
   return size > 1 ? Math.min(0.9, (excess - 1) / (size - 1)) : 0;
-}
-
-function runLengthTrust(chart: Chart, correlation: number) {
-  const { method, length } = chartRunLength(
-    {
-      sizes: chart.points.map((point) => point.accounts),
-      center: chart.center,
-      sigmaZ: chart.sigmaZ,
-      correlation,
-      tests: SHIFT_TESTS,
-    },
-    chart.center,
-  );
-  return { falseAlarmEvery: length?.mean ?? null, method, standardError: length?.standardError ?? null };
 }
 
 function segmentTest(segments: readonly SegmentCounts[]): Homogeneity | null {
