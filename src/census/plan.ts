@@ -1,7 +1,7 @@
 import { firstRow } from '../accounts/sql.ts';
 import type { AccountTable } from '../accounts/types.ts';
 import type { Day } from '../days.ts';
-import { hazardByMonth, type TenureCounts } from './hazard.ts';
+import { type HazardMonth, hazardByMonth, type TenureCounts } from './hazard.ts';
 import { rounded, SOON_POINTS, subgroupSizes } from './sizes.ts';
 import { checkTenure, lastMaturedStart, tenureInWords, tenurePointSql } from './tenure.ts';
 import type { CensusPlan, Tenure } from './types.ts';
@@ -39,10 +39,8 @@ export async function planCensus(table: AccountTable, partial: PlanRequest): Pro
       );
   checkTenure(chosen.tenure);
   const { matured, lost, perWeek } = await maturedCounts(table, chosen.tenure, partial);
-  // With nobody lost, one loss is assumed: any real rate could be that low.
   const rate = matured === 0 ? 0 : lost / matured;
-  const assumed = Math.min(Math.max(rate, 1 / (matured + 2)), 1 - 1 / (matured + 2));
-  const sizes = subgroupSizes(matured === 0 ? 0.05 : assumed);
+  const sizes = subgroupSizes(assumedRate(rate, matured));
   const size = partial.subgroupSize
     ? { subgroupSize: partial.subgroupSize, why: `${count(partial.subgroupSize)} accounts a point, as asked` }
     : recommendSize(matured, sizes);
@@ -58,6 +56,14 @@ export async function planCensus(table: AccountTable, partial: PlanRequest): Pro
     sizes,
     rate,
   };
+}
+
+/**
+ * The rate that sizes are worked out for. With nobody lost, about one loss is assumed, for any real rate could be that low; with everybody
+ * lost, about one that stayed; with no account to go by, 5 %.
+ */
+export function assumedRate(rate: number, matured: number): number {
+  return matured === 0 ? 0.05 : Math.min(Math.max(rate, 1 / (matured + 2)), 1 - 1 / (matured + 2));
 }
 
 async function maturedCounts(
@@ -126,22 +132,37 @@ export function recommendTenure(counts: TenureCounts): { tenure: Tenure; why: st
 /** A peak this close to the highest is taken as well: the earlier of the two answers sooner. Our choice, no source. */
 const NEARLY_AS_HIGH = 2 / 3;
 
+export interface RiskyMonth extends HazardMonth {
+  readonly hazard: number;
+}
+
 /**
- * The first month whose hazard stands out: half again the middle month's, by three standard errors, and not far below the highest. With
- * several risky times, such as renewals, the earliest answers soonest.
+ * Months whose hazard stands out: half again the middle month's, and by three standard errors; in order of month. Only months with
+ * enough accounts and losses are looked at.
  */
-function hazardPeak(counts: TenureCounts): { month: number; hazard: number } | undefined {
+export function riskyMonths(counts: TenureCounts): {
+  /** hazard of the middle month; null when too few months can be looked at */
+  readonly usual: number | null;
+  readonly risky: readonly RiskyMonth[];
+} {
   const usable = counts.months
     .filter(({ atRisk, lost }) => atRisk >= 100 && lost >= 10)
-    .map(({ month, atRisk, lost }) => ({ month, atRisk, hazard: lost / atRisk }));
-  if (usable.length < 2) return undefined;
+    .map((month) => ({ ...month, hazard: month.lost / month.atRisk }));
+  if (usable.length < 2) return { usual: null, risky: [] };
   const hazards = usable.map(({ hazard }) => hazard).sort((a, b) => a - b);
-  const middle = hazards[Math.floor((hazards.length - 1) / 2)] ?? 0;
-  const highest = hazards.at(-1) ?? 0;
-  return usable.find(({ hazard, atRisk }) => {
+  const usual = hazards[Math.floor((hazards.length - 1) / 2)] ?? 0;
+  const risky = usable.filter(({ hazard, atRisk }) => {
     const error = Math.sqrt((hazard * (1 - hazard)) / atRisk);
-    return hazard >= NEARLY_AS_HIGH * highest && hazard > 1.5 * middle && hazard - middle > 3 * error;
+    return hazard > 1.5 * usual && hazard - usual > 3 * error;
   });
+  return { usual, risky };
+}
+
+/** The first risky month that is not far below the riskiest. With several risky times, such as renewals, the earliest answers soonest. */
+function hazardPeak(counts: TenureCounts): RiskyMonth | undefined {
+  const { risky } = riskyMonths(counts);
+  const highest = Math.max(...risky.map(({ hazard }) => hazard));
+  return risky.find(({ hazard }) => hazard >= NEARLY_AS_HIGH * highest);
 }
 
 /** One of the three sizes: the one with a lower limit above zero when it leaves 50 points, else the one that sees a halving, else five losses. */
