@@ -172,10 +172,13 @@ export function judge(chart: Chart, options: JudgeOptions = {}): Judgement {
     dispersion: spread,
     neighbours: autocorrelation(level.map((count) => count.lost / count.accounts)),
     standingChance: chanceOfScore(calibrated, standing[side].score / shrink),
-    lastBlock: readLastBlock(standing[side], side, prime ? Math.max(1, spread?.ratio ?? 1) : shrink, shrink, {
-      threshold: threshold.ratio,
-      ...(design.correlation === undefined ? {} : { correlation: design.correlation }),
-    }),
+    // So few losses that nothing could ever stand out: there is no threshold to compare with.
+    lastBlock: !Number.isFinite(threshold.ratio)
+      ? null
+      : readLastBlock(standing[side], side, prime ? Math.max(1, spread?.ratio ?? 1) : shrink, shrink, {
+          threshold: threshold.ratio,
+          ...(design.correlation === undefined ? {} : { correlation: design.correlation }),
+        }),
   };
   const judged = (
     finding: Finding,
@@ -215,9 +218,11 @@ function readLastBlock(
   divided: number,
   shrink: number,
   rest: Pick<LastBlockReading, 'threshold' | 'correlation'>,
-): LastBlockReading {
+): LastBlockReading | null {
   const dividedBy = score > 0 ? (block.ratio / score) * shrink : divided;
-  return { side, ...block, dividedBy, score: score / shrink, ...rest };
+  const reading = { side, ...block, dividedBy, score: score / shrink, ...rest };
+  // With next to nobody lost, or next to nobody kept, the figures leave the range of numbers.
+  return [reading.ratio, dividedBy, reading.threshold].every(Number.isFinite) ? reading : null;
 }
 
 /** The points that set the usual level. */
