@@ -1,29 +1,30 @@
 import { rowsOf } from '../accounts/sql.ts';
 import type { AccountTable } from '../accounts/types.ts';
 import type { Day } from '../days.ts';
-import { EbbError } from '../errors.ts';
-import { censusSql, OTHER_SEGMENT, startsSql } from './censusSql.ts';
-import { checkTenure, lastMaturedStart, tenurePoint } from './tenure.ts';
-import type { Census, CensusRequest, CensusSubgroup, SegmentCounts } from './types.ts';
+import { takeMonths } from './calendarCensus.ts';
+import { censusSql, startsSql } from './censusSql.ts';
+import { takeRenewals } from './renewalCensus.ts';
+import { checkRequest, segmentUnknown } from './requestChecks.ts';
+import { segmentCounts, segmentNamesOf } from './segmentCounts.ts';
+import { lastMaturedStart, tenurePoint } from './tenure.ts';
+import type { Census, CensusRequest, CensusSubgroup } from './types.ts';
 
-/** Segment values counted by themselves; the rest is pooled. */
-const SEGMENTS = 12;
 const QUARTER_DAYS = 91;
 
 /**
- * The census, start view: matured accounts in order of start, ties by the stable key, in subgroups of exactly n.
+ * The census in the view asked for; start unless said otherwise.
+ *
+ * Start view: matured accounts in order of start, ties by the stable key, in subgroups of exactly n.
  * An account counts as lost when it ended on or before its tenure point. The unfinished last subgroup is withheld.
  * @throws EbbError OPTION_INVALID, SEGMENT_UNKNOWN
  */
 export async function takeCensus(table: AccountTable, request: CensusRequest): Promise<Census> {
-  checkTenure(request.tenure);
-  checkSize(request);
+  checkRequest(request);
+  if (request.view === 'renewal') return takeRenewals(table, request);
+  if (request.view === 'calendar') return takeMonths(table, request);
   const { connection } = table;
   const maturedUntil = lastMaturedStart(request.asOf, request.tenure, request.settleDays);
-  const segmentNames =
-    request.segment === undefined && table.report.segments.length > 1
-      ? table.report.segments.slice(0, SEGMENTS).map(({ value }) => value)
-      : [];
+  const segmentNames = segmentNamesOf(table, request.segment);
   const rows = await rowsOf(
     connection,
     censusSql(table.table, request, table.report.firstStart, maturedUntil, segmentNames),
@@ -84,31 +85,6 @@ export async function takeCensus(table: AccountTable, request: CensusRequest): P
   };
 }
 
-function checkSize(request: CensusRequest): void {
-  if (
-    Number.isInteger(request.subgroupSize) &&
-    request.subgroupSize >= 1 &&
-    Number.isInteger(request.settleDays) &&
-    request.settleDays >= 0
-  )
-    return;
-  throw new EbbError(
-    'OPTION_INVALID',
-    `a subgroup size of ${request.subgroupSize} with ${request.settleDays} days to settle cannot be used`,
-    'The subgroup size is a whole number from 1, the days to settle a whole number from 0.',
-  );
-}
-
-function segmentUnknown(table: AccountTable, segment: string): EbbError {
-  const known = table.report.segments.map(({ value }) => value);
-  return new EbbError(
-    'SEGMENT_UNKNOWN',
-    `no account has the ${table.report.columns.segment ?? 'segment'} "${segment}"`,
-    known.length === 0 ? 'The export has no segment column.' : `The values are: ${known.slice(0, 12).join(', ')}.`,
-    { detail: { segment, known } },
-  );
-}
-
 interface Starts {
   readonly day: Day;
   readonly accounts: number;
@@ -143,20 +119,4 @@ async function inflow(
   const starts = from >= maturedUntil - 2 * QUARTER_DAYS ? known : await startsFrom(table, from, segment);
   const count = starts.filter(({ day }) => day >= from && day <= to).reduce((sum, { accounts }) => sum + accounts, 0);
   return (count * 7) / (to - from + 1);
-}
-
-function segmentCounts(
-  names: readonly string[],
-  finished: readonly { segments: ReadonlyMap<string, { accounts: number; lost: number }> }[],
-): SegmentCounts[] {
-  const pooled =
-    !names.includes(OTHER_SEGMENT) && finished.some(({ segments }) => segments.has(OTHER_SEGMENT))
-      ? [OTHER_SEGMENT]
-      : [];
-  if (names.length === 0) return [];
-  return [...names, ...pooled].map((segment) => ({
-    segment,
-    accounts: finished.map(({ segments }) => segments.get(segment)?.accounts ?? 0),
-    lost: finished.map(({ segments }) => segments.get(segment)?.lost ?? 0),
-  }));
 }
