@@ -1,21 +1,17 @@
-import type { SegmentCounts } from '../census/types.ts';
 import { recommendedBaseline } from '../charts/baseline.ts';
 import { pChart } from '../charts/kinds/pChart.ts';
 import { pPrimeChart } from '../charts/kinds/pPrimeChart.ts';
 import { LEAST_BEFORE } from '../charts/standing/lastBlock.ts';
 import type { Chart, ChartKind, SubgroupCount } from '../charts/types.ts';
-import { isOverdispersed, type Judgement, judge, LEAST_POINTS } from './judgement.ts';
+import { isOverdispersed, type Judgement, type JudgeOptions, judge, LEAST_POINTS } from './judgement.ts';
 
-export interface ChartRequest {
+export interface ChartRequest extends Omit<JudgeOptions, 'stepProven'> {
   readonly counts: readonly SubgroupCount[];
   /** the kind somebody asked for; else the one that fits */
   readonly kind?: SubgroupKind;
   /** last baseline point, when the asker fixed it; else the recommended one, shortened if a move begins inside it */
   readonly baselineLast?: number;
   readonly excluded?: readonly number[];
-  readonly segments?: readonly SegmentCounts[];
-  /** false leaves out how often flags are raised with nothing changed: where many charts are judged and it is not told */
-  readonly runLength?: boolean;
 }
 
 export interface JudgedChart {
@@ -48,7 +44,7 @@ export function isSubgroupKind(kind: ChartKind | undefined): kind is SubgroupKin
  * @throws RangeError when there are no counts
  */
 export function chartAndJudge(request: ChartRequest): JudgedChart {
-  const { counts, excluded = [], segments = [] } = request;
+  const { counts, excluded = [] } = request;
   const last = request.baselineLast ?? recommendedBaseline(counts.length);
   const kind = request.kind ?? (isOverdispersed(chartOf('p', last)) ? 'p-prime' : 'p');
   const usual = chartWith(last);
@@ -66,7 +62,7 @@ export function chartAndJudge(request: ChartRequest): JudgedChart {
 
   function chartWith(baselineLast: number, stepProven = false): Pick<JudgedChart, 'chart' | 'judgement'> {
     const chart = chartOf(kind, baselineLast);
-    return { chart, judgement: judge(chart, segments, stepProven, request.runLength) };
+    return { chart, judgement: judge(chart, { ...request, stepProven }) };
   }
 
   function chartOf(of: SubgroupKind, baselineLast: number): Chart {

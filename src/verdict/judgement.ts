@@ -172,13 +172,10 @@ export function judge(chart: Chart, options: JudgeOptions = {}): Judgement {
     dispersion: spread,
     neighbours: autocorrelation(level.map((count) => count.lost / count.accounts)),
     standingChance: chanceOfScore(calibrated, standing[side].score / shrink),
-    // So few losses that nothing could ever stand out: there is no threshold to compare with.
-    lastBlock: !Number.isFinite(threshold.ratio)
-      ? null
-      : readLastBlock(standing[side], side, prime ? Math.max(1, spread?.ratio ?? 1) : shrink, shrink, {
-          threshold: threshold.ratio,
-          ...(design.correlation === undefined ? {} : { correlation: design.correlation }),
-        }),
+    lastBlock: readLastBlock(standing[side], side, prime ? Math.max(1, spread?.ratio ?? 1) : shrink, shrink, {
+      threshold: threshold.ratio,
+      ...(design.correlation === undefined ? {} : { correlation: design.correlation }),
+    }),
   };
   const judged = (
     finding: Finding,

@@ -1,7 +1,7 @@
 import type { Standing } from '../charts/standing/standing.ts';
-import { nelsonTests } from '../charts/tests/nelsonTests.ts';
+import { isShiftTest, nelsonTests, SHIFT_TESTS } from '../charts/tests/nelsonTests.ts';
 import { TEST_SPAN } from '../charts/tests/patterns.ts';
-import type { Chart } from '../charts/types.ts';
+import type { Chart, ShiftTest } from '../charts/types.ts';
 import type { Signal, SignalState } from './types.ts';
 import { testWords, withinLimits } from './words/testWords.ts';
 
@@ -11,22 +11,25 @@ const NEW_WITHIN = TEST_SPAN[2];
 /**
  * All flags of a chart, each told apart: standing, watching (new, not standing yet) or passed.
  * @param moved      side on which the verdict found a standing shift, or null
+ * @param tests      shift tests that were chosen to decide; flags of the others are not raised
  * @param explained  true when a move was found and something else explains it: its flags are passed, not watched
  */
 export function readSignals(
   chart: Chart,
   standing: Standing,
   moved: 'above' | 'below' | null,
-  explained = false,
+  { tests = SHIFT_TESTS, explained = false }: { tests?: readonly ShiftTest[]; explained?: boolean } = {},
 ): Signal[] {
   const newest = chart.points.length;
   const judgedFrom = chart.baseline.last >= newest ? 1 : chart.baseline.last + 1;
-  const values = chart.points.map(({ value, sigma }) => ({
+  const values = chart.points.map(({ value, sigma, edges }) => ({
     value,
     center: chart.center,
     sigma,
+    ...(edges ? { edges } : {}),
   }));
-  return nelsonTests(values).map((episode) => {
+  const raised = nelsonTests(values).filter(({ test }) => !isShiftTest(test) || tests.includes(test));
+  return raised.map((episode) => {
     let state: SignalState;
     const recent = newest - episode.until < NEW_WITHIN;
     if (episode.speaks === 'cut' || episode.side === 'both') {

@@ -1,4 +1,4 @@
-import type { Chart, Interval, Side, TestEpisode } from '../charts/types.ts';
+import type { Chart, Interval, ShiftTest, Side, TestEpisode } from '../charts/types.ts';
 import type { Day } from '../days.ts';
 
 export type Outcome = 'risen' | 'fallen' | 'steady' | 'too-early' | 'cannot-say';
@@ -18,6 +18,8 @@ export interface PooledRate {
   readonly high: number;
   readonly lost: number;
   readonly accounts: number;
+  /** given where losses are counted over days and not over accounts: rate, low and high are then losses a day */
+  readonly days?: number;
 }
 
 export interface Since {
@@ -29,11 +31,51 @@ export interface Since {
   readonly candidates: readonly [number, number];
 }
 
+/** From a lasting move to the first flag, on average. */
+export interface Delay {
+  /** the moved rate */
+  readonly rate: number;
+  /** null when it is hardly ever flagged */
+  readonly points: number | null;
+  readonly accounts: number | null;
+  /** at the recent pace of accounts that reach the age; null when that is not known */
+  readonly weeks: number | null;
+}
+
 export interface Trust {
   /** points between two false flags of the shift tests when nothing changed */
   readonly falseAlarmEvery: number | null;
   readonly method: 'exact' | 'simulated';
   readonly standardError: number | null;
+  /** what the false-alarm figures were computed for; this and the next three are absent where no run length was */
+  readonly settings?: {
+    /** accounts a point; null when the points differ */
+    readonly n: number | null;
+    /** rate of the usual level, taken as true */
+    readonly p: number;
+    /** the tests whose flags count, numbered as by Nelson */
+    readonly tests: readonly ShiftTest[];
+    /** how much more the points vary than the binomial allows, as a factor on sigma; 1 on a p chart */
+    readonly sigmaZ: number;
+  };
+  /** points to the first false flag when nothing changed: on average, and within which half, 10 % and 90 % of such charts raise it */
+  readonly runLength?: {
+    readonly mean: number;
+    readonly median: number | null;
+    readonly p10: number | null;
+    readonly p90: number | null;
+  } | null;
+  /** how long a rise by half and a halving take to be flagged; null for a rate that cannot be */
+  readonly delay?: { readonly rise: Delay | null; readonly fall: Delay | null };
+  /** the false-alarm figure when the usual level is not known but estimated from as many points as here */
+  readonly estimated?: {
+    /** points that set the usual level */
+    readonly points: number;
+    readonly falseAlarmEvery: number | null;
+    /** in 8 of 10 such charts the false-alarm figure lies between these */
+    readonly low: number;
+    readonly high: number | null;
+  } | null;
   readonly falseVerdictChance: number | null;
   readonly wouldSee: {
     readonly rise: number | null;

@@ -9,6 +9,7 @@ import { countSentence, pooled, signalSentence, sizeSentences, stretch, trustSen
 import { capitalised, counted, percentagePoints } from './words/format.ts';
 import { headline } from './words/headline.ts';
 import { nextSteps } from './words/next.ts';
+import { furtherTrustSentences } from './words/trust.ts';
 
 const OUTCOME: Readonly<Record<Finding, Outcome>> = {
   risen: 'risen',
@@ -58,6 +59,7 @@ export function writeVerdict(chart: Chart | null, judgement: Judgement, context:
     ...trustSentences(judgement, context, judgement.finding === 'steady'),
     ...(chart ? [countSentence(chart.points.length, context)] : []),
     ...context.howChosen,
+    ...furtherTrustSentences(judgement),
   ];
 
   return {

@@ -2,6 +2,8 @@ import * as fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import type { SegmentCounts } from '../../src/census/types.ts';
 import { pChart } from '../../src/charts/kinds/pChart.ts';
+import { exactRunLength } from '../../src/charts/runLength/exactRunLength.ts';
+import { countZones } from '../../src/charts/runLength/zoneChances.ts';
 import type { SubgroupCount } from '../../src/charts/types.ts';
 import { chartAndJudge } from '../../src/verdict/chartAndJudge.ts';
 import { type Finding, type Judgement, judge, LEAST_POINTS } from '../../src/verdict/judgement.ts';
@@ -19,7 +21,7 @@ function expectFinite(judgement: Judgement): void {
 }
 
 const judged = (counts: readonly SubgroupCount[], segments?: readonly SegmentCounts[], baselineLast?: number) =>
-  judge(pChart(counts, baselineLast === undefined ? {} : { baselineLast }), segments);
+  judge(pChart(counts, baselineLast === undefined ? {} : { baselineLast }), segments ? { segments } : {});
 
 /** Accounts and losses per point of two plans, as segments and as the sums that are charted. */
 function twoPlans(length: number, at: (point: number) => [[number, number], [number, number]]) {
@@ -285,5 +287,98 @@ describe('a move that began inside the usual baseline', () => {
     const { chart, judgement } = chartAndJudge({ counts: early });
     expect(chart.baseline.last).toBe(25);
     expect(judgement.finding).toBe('unsteady-baseline');
+  });
+});
+
+describe('which tests decide', () => {
+  const stepped = points(100, [...calm(25), ...calm(12, [11, 12, 11, 12])]);
+
+  const shifts = ({ signals }: Judgement) =>
+    new Set(signals.filter(({ speaks }) => speaks === 'shift').map((signal) => signal.test));
+
+  test('only the chosen ones raise flags, and the others of their kind are not shown', () => {
+    const all = chartAndJudge({ counts: stepped }).judgement;
+    expect(shifts(all)).toEqual(new Set([2, 5, 6]));
+    const few = chartAndJudge({ counts: stepped, tests: [2] }).judgement;
+    expect(few.finding).toBe('risen');
+    expect(shifts(few)).toEqual(new Set([2]));
+    const none = chartAndJudge({ counts: stepped, tests: [1] }).judgement;
+    expect(shifts(none)).toEqual(new Set());
+    expect(none.finding).toBe('steady');
+  });
+
+  test('all five named are the same as none named', () => {
+    expect(chartAndJudge({ counts: stepped, tests: [1, 2, 3, 5, 6] })).toEqual(chartAndJudge({ counts: stepped }));
+  });
+
+  test('threshold, what could have been missed and the figures of trust are those of the chosen tests', () => {
+    const { trust: all } = chartAndJudge({ counts: points(100, calm(50)) }).judgement;
+    const { trust: one } = chartAndJudge({ counts: points(100, calm(50)), tests: [1] }).judgement;
+    expect(one.settings).toMatchObject({ n: 100, tests: [1], sigmaZ: 1 });
+    expect(one.falseAlarmEvery!).toBeGreaterThan(2 * all.falseAlarmEvery!);
+    expect(one.delay!.rise!.points!).toBeGreaterThan(all.delay!.rise!.points!);
+    // One test alone flags fewer of the blocks that would stand: a larger move is needed.
+    expect(one.wouldSee!.rise!).toBeGreaterThan(all.wouldSee!.rise!);
+    expect(one.falseVerdictChance!).toBeLessThanOrEqual(0.05);
+  });
+
+  test('without the trend test the figures are exact and have no standard error', () => {
+    const counts = points(100, calm(50));
+    const { trust } = chartAndJudge({ counts, tests: [1, 2, 5, 6] }).judgement;
+    expect(trust).toMatchObject({ method: 'exact', standardError: null });
+    const { chart } = chartAndJudge({ counts });
+    const design = { size: 100, center: chart.center, rate: chart.center, sigmaZ: 1, correlation: 0 };
+    const exact = exactRunLength(countZones(design), [1, 2, 5, 6]);
+    expect(trust.falseAlarmEvery).toBe(exact.mean);
+    expect(trust.runLength).toEqual({ mean: exact.mean, median: exact.median, p10: exact.p10, p90: exact.p90 });
+    const simulated = chartAndJudge({ counts }).judgement.trust;
+    expect(simulated.method).toBe('simulated');
+    expect(simulated.standardError).toBeGreaterThan(0);
+    // Points of two sizes are too many for the chain.
+    const two = points(100, calm(50)).map((point, i) => (i === 3 ? { accounts: 101, lost: 6 } : point));
+    expect(chartAndJudge({ counts: two, tests: [1, 2, 5, 6] }).judgement.trust).toMatchObject({
+      method: 'simulated',
+      settings: { n: null },
+    });
+  });
+});
+
+describe('how soon a move is flagged', () => {
+  test('in points, accounts and weeks that agree, for a rise by half and a halving', () => {
+    const { chart, judgement } = chartAndJudge({
+      counts: points(100, calm(50)),
+      tests: [1, 2, 5, 6],
+      accountsPerWeek: 80,
+    });
+    const { rise, fall } = judgement.trust.delay!;
+    expect(rise!.rate).toBeCloseTo(1.5 * chart.center, 12);
+    expect(fall!.rate).toBeCloseTo(0.5 * chart.center, 12);
+    for (const one of [rise!, fall!]) {
+      expect(one.points!).toBeGreaterThan(1);
+      expect(one.points!).toBeLessThan(judgement.trust.falseAlarmEvery! / 4);
+      expect(one.accounts!).toBeCloseTo(100 * one.points!, 9);
+      expect(one.weeks!).toBeCloseTo(one.accounts! / 80, 9);
+    }
+  });
+
+  test('without a known pace there are no weeks; a rate that would pass 1 has no rise by half', () => {
+    expect(chartAndJudge({ counts: points(100, calm(50)) }).judgement.trust.delay!.rise!.weeks).toBeNull();
+    const most = chartAndJudge({ counts: points(100, calm(50, [80, 82, 79, 81])) }).judgement;
+    expect(most.trust.delay!.rise).toBeNull();
+    expect(most.trust.delay!.fall!.points).toBeCloseTo(1, 2);
+    expectFinite(most);
+  });
+
+  test('a usual level from fewer points makes the range of the false-alarm figure wider, down most of all', () => {
+    const of = (baselineLast: number) =>
+      chartAndJudge({ counts: points(100, calm(60)), baselineLast, tests: [1, 2, 5, 6] }).judgement.trust.estimated!;
+    const few = of(12);
+    const many = of(50);
+    expect([few.points, many.points]).toEqual([12, 50]);
+    expect(few.low).toBeLessThan(many.low);
+    for (const { low, high, falseAlarmEvery } of [few, many]) {
+      expect(low).toBeLessThan(falseAlarmEvery!);
+      expect(falseAlarmEvery!).toBeLessThan(high!);
+    }
   });
 });

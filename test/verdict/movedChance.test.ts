@@ -67,11 +67,14 @@ describe('chance that a chart reads as moved with nothing changed', () => {
     const same = counts(40, 100, [0.08, 0.08], 0, 4);
     const full = chartAndJudge({ counts: same });
     const lean = chartAndJudge({ counts: same, runLength: false });
+    const { falseVerdictChance, wouldSee, settings, runLength, delay, estimated } = full.judgement.trust;
+    for (const told of [falseVerdictChance, wouldSee, settings, runLength, delay, estimated]) expect(told).toBeTruthy();
     expect(lean.judgement.trust).toEqual({
-      ...full.judgement.trust,
       falseAlarmEvery: null,
       method: 'simulated',
       standardError: null,
+      falseVerdictChance,
+      wouldSee,
     });
     expect({ ...lean.judgement, trust: null }).toEqual({ ...full.judgement, trust: null });
   });

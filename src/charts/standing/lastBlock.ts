@@ -1,4 +1,5 @@
 import { maxLogLikelihood } from '../logLikelihood.ts';
+import type { ShiftTest } from '../types.ts';
 
 /** The last stretch of points, from its most likely start to the newest, taken as one block. */
 export interface LastBlock {
@@ -25,6 +26,8 @@ export interface BlockDesign {
    * every history, real or simulated, estimates its own sigmaZ and dispersion from its baseline, as the chart does.
    */
   readonly correlation?: number;
+  /** the tests whose flags count; all that speak about a shift when absent */
+  readonly tests?: readonly ShiftTest[];
 }
 
 /** Fewest points that must lie before a block when the baseline is every point there is: fewer would be no level to compare with. */

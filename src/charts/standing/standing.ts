@@ -16,16 +16,13 @@ export interface Standing {
   readonly below: StandingSide;
 }
 
-const ABOVE = patternMask(SHIFT_TESTS, 'above');
-const BELOW = patternMask(SHIFT_TESTS, 'below');
-
 const BINOMIAL = { sigmaZ: 1, dispersion: 1 } as const;
 
 /**
  * Prepares the judge of one design: the same function looks at the real counts and at every simulated history, so that the threshold is
  * calibrated for exactly what is done.
  *
- * A flag stands when a shift test on one side holds inside the last block on that side, and the block's log likelihood ratio exceeds the
+ * A flag stands when one of the design's tests on one side holds inside the last block on that side, and the block's log likelihood ratio exceeds the
  * threshold. Flags inside a baseline that is followed by judged points do not count: they were used to set the level.
  *
  * On a p' chart the flags are raised at the widened limits, and every ratio is divided by the dispersion of the baseline (quasi-likelihood).
@@ -35,6 +32,8 @@ export function standingJudge(design: BlockDesign): (lost: ArrayLike<number>) =>
   const { accounts, baselineLast, excluded } = design;
   const findBlocks = lastBlockFinder(design);
   const machine = new PatternMachine();
+  const flagsAbove = patternMask(design.tests ?? SHIFT_TESTS, 'above');
+  const flagsBelow = patternMask(design.tests ?? SHIFT_TESTS, 'below');
   const left = new Set(excluded);
   const count = accounts.length;
   const judgedFrom = baselineLast >= count ? 0 : baselineLast;
@@ -66,8 +65,8 @@ export function standingJudge(design: BlockDesign): (lost: ArrayLike<number>) =>
       );
       previous = value;
       if (i < judgedFrom) continue;
-      if ((holds & ABOVE) !== 0) lastAbove = i + 1;
-      if ((holds & BELOW) !== 0) lastBelow = i + 1;
+      if ((holds & flagsAbove) !== 0) lastAbove = i + 1;
+      if ((holds & flagsBelow) !== 0) lastBelow = i + 1;
     }
     const { above, below } = findBlocks(lost);
     return {

@@ -1,4 +1,4 @@
-import type { Side, TestEpisode, TestNumber } from '../types.ts';
+import type { ShiftTest, Side, TestEpisode, TestNumber } from '../types.ts';
 import { PatternMachine, patternBit, TEST_SPAN } from './patterns.ts';
 import { moveOf, zoneOf } from './zone.ts';
 import { type ZoneEdges, zoneBetween } from './zoneEdges.ts';
@@ -13,7 +13,11 @@ export interface JudgedValue {
 }
 
 /** Tests that speak about a shift; the others speak about how the data was cut. */
-export const SHIFT_TESTS: readonly TestNumber[] = [1, 2, 3, 5, 6];
+export const SHIFT_TESTS: readonly ShiftTest[] = [1, 2, 3, 5, 6];
+
+export function isShiftTest(test: TestNumber): test is ShiftTest {
+  return (SHIFT_TESTS as readonly TestNumber[]).includes(test);
+}
 
 const SIDED: readonly [TestNumber, readonly Side[]][] = [
   [1, ['above', 'below']],
@@ -57,7 +61,7 @@ export function nelsonTests(points: readonly JudgedValue[]): TestEpisode[] {
           point: i + 1,
           members: membersAt(test, side, i, zones),
           until: until + 1,
-          speaks: SHIFT_TESTS.includes(test) ? 'shift' : 'cut',
+          speaks: isShiftTest(test) ? 'shift' : 'cut',
         });
       }
     }

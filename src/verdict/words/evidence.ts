@@ -36,9 +36,19 @@ export function sizeSentences(
   ];
 }
 
+/** A flag rarer than this is told as such: no figure beyond it means anything to anybody. */
+export const RAREST_TOLD = 100_000;
+
+/** "about once in 81 points". */
+function onceIn(points: number): string {
+  return points > RAREST_TOLD
+    ? `less than once in ${count(RAREST_TOLD)} points`
+    : `about once in ${counted(Math.max(1, points), 'point')}`;
+}
+
 /** What could have been missed, and how often a chart like this cries wolf. */
 /** Findings about which the chart's own false-alarm figures say something; where it cannot say, they would only mislead. */
-const ANSWERED: ReadonlySet<Judgement['finding']> = new Set(['risen', 'fallen', 'steady', 'mix-change']);
+export const ANSWERED: ReadonlySet<Judgement['finding']> = new Set(['risen', 'fallen', 'steady', 'mix-change']);
 
 export function trustSentences(judgement: Judgement, context: VerdictContext, quiet: boolean): string[] {
   if (!ANSWERED.has(judgement.finding)) return [];
@@ -67,9 +77,7 @@ export function trustSentences(judgement: Judgement, context: VerdictContext, qu
       trust.falseVerdictChance === null
         ? ''
         : `, and a chart of this length reads as moved in about ${Math.max(1, Math.round(trust.falseVerdictChance * 100))} of 100 cases`;
-    sentences.push(
-      `With nothing changed, this chart raises a false flag about once in ${count(trust.falseAlarmEvery)} points${chance}.`,
-    );
+    sentences.push(`With nothing changed, this chart raises a false flag ${onceIn(trust.falseAlarmEvery)}${chance}.`);
   }
   return sentences;
 }
