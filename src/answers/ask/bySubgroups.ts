@@ -2,7 +2,7 @@ import { takeCensus } from '../../census/census.ts';
 import { tenureInWords } from '../../census/tenure.ts';
 import type { Census } from '../../census/types.ts';
 import { type Day, dayInWords } from '../../days.ts';
-import type { Question } from '../../requests/types.ts';
+import type { Scope } from '../../requests/types.ts';
 import { chartAndJudge, isSubgroupKind } from '../../verdict/chartAndJudge.ts';
 import type { VerdictContext } from '../../verdict/context.ts';
 import { LEAST_POINTS } from '../../verdict/judgement.ts';
@@ -109,7 +109,7 @@ export function maturedOn(census: Census, accounts: number): Day | null {
 
 /** The baseline the question fixes, if it does, and what to say when it could not be followed. */
 export function chooseBaseline(
-  question: Question,
+  question: Scope,
   census: Census,
 ): { baseline: { baselineLast?: number }; caution: readonly string[] } {
   const { since } = question;

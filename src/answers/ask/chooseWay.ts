@@ -14,6 +14,8 @@ export async function chooseWay({ question }: AskContext): Promise<Way> {
     case 'p':
     case 'p-prime':
       return bySubgroups;
+    case 'individuals':
+      return (await import('./byRevenue.ts')).byRevenue;
     default:
       throw notYet(`a chart of the kind ${chart}`);
   }

@@ -1,9 +1,9 @@
 import type { ChartKind, TestEpisode } from '../../charts/types.ts';
 import { numberWord } from './format.ts';
 
-/** What keeps points within the limits: on a p' chart they are set by how much the points really vary. */
+/** What keeps points within the limits: on a p' chart, and for ratios that are no counts, they are set by how much the points really vary. */
 export function withinLimits(kind: ChartKind): string {
-  return kind === 'p-prime' ? 'the usual spread' : 'chance alone';
+  return kind === 'p-prime' || kind === 'individuals' ? 'the usual spread' : 'chance alone';
 }
 
 /**
