@@ -18,6 +18,8 @@ import { openStore } from './store/openStore.ts';
 const SERVER_STOP_MS = 3000;
 /** How often records that are no longer needed are removed. */
 const TIDY_EVERY_MS = 3_600_000;
+/** How often it is looked whether a weekly post is due. */
+const WEEKLY_EVERY_MS = 15_000;
 const EVENTS_PATH = '/slack/events';
 
 /** What was started, undone in reverse order. */
@@ -77,6 +79,12 @@ async function start(settings: Settings, log: Logger, stops: Stop[]): Promise<st
   }, TIDY_EVERY_MS);
   tidying.unref();
   stops.push(async () => clearInterval(tidying));
+  const weekly = setInterval(() => {
+    app
+      .takeDuePosts()
+      .catch((error: unknown) => log.warn({ err: error }, 'the weekly posts that are due could not be taken'));
+  }, WEEKLY_EVERY_MS);
+  stops.push(async () => clearInterval(weekly));
   void warmPicture().catch((error: unknown) => log.warn({ err: error }, 'the picture could not be prepared'));
   if (reach.service) {
     await furnish(reach.service, store, app);

@@ -16,6 +16,7 @@ import { boltLogger } from './logging.ts';
 import { stillHereMessage } from './messages/plainMessages.ts';
 import { clientOptions, refusal, webClient } from './posting/webClient.ts';
 import type { ChannelDeps } from './types.ts';
+import { takeDuePosts } from './weeklyPosts.ts';
 
 export type Inbound =
   | { readonly mode: 'http'; readonly signingSecret: string }
@@ -30,6 +31,8 @@ export interface ChannelApp {
   connect(): Promise<void>;
   /** says in a channel which export it still has; for the practice workspace, whose messages do not last */
   sayStillHere(channel: string, dataset: Pick<Dataset, 'name' | 'report'>): Promise<void>;
+  /** writes down the weekly posts that are due, to be worked from the queue; call it now and then, several times a minute */
+  takeDuePosts(): Promise<number>;
   /** takes in nothing more, and waits for what a listener began */
   stop(): Promise<void>;
 }
@@ -98,6 +101,7 @@ export function buildApp(deps: ChannelDeps, inbound: Inbound): ChannelApp {
       const { text, blocks } = stillHereMessage(name, report.accounts);
       await app.client.chat.postMessage({ channel, text, blocks });
     },
+    takeDuePosts: () => takeDuePosts(deps),
     async stop() {
       ready = false;
       stopping = true;

@@ -43,6 +43,8 @@ const payloads = {
     user: id,
     order: dateOrder.nullable(),
   }),
+  /** a weekly post that is due; `due` in milliseconds since 1970 */
+  weekly: z.strictObject({ follow: id, due: z.number() }),
   /** the mend modal, handed in; columns by their place among the headers */
   mend: mendPlaceSchema.extend({
     user: id,

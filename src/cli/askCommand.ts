@@ -4,6 +4,7 @@ import { readExport } from '../accounts/readExport.ts';
 import type { ReadReport } from '../accounts/types.ts';
 import { answerQuestion } from '../answers/answerQuestion.ts';
 import { EbbError } from '../errors.ts';
+import { isAnswerable } from '../requests/answerable.ts';
 import type { Question, Request, SideQuestion, Understanding } from '../requests/types.ts';
 import { notUsedLines, understoodLines } from '../requests/understoodLines.ts';
 import { readText } from '../verdict/words/readText.ts';
@@ -48,7 +49,13 @@ export async function askCommand(command: FileCommand, options: CliOptions, arou
     const lacking = understanding?.notUnderstood[0];
     if (request.kind === 'help' && command !== 'ask' && lacking)
       throw new EbbError('OPTION_INVALID', `${command} needs a figure`, lacking.nearest);
-    if (request.kind === 'help' || request.kind === 'data') {
+    if (!isAnswerable(request) && request.kind !== 'help' && request.kind !== 'data')
+      throw new EbbError(
+        'OPTION_INVALID',
+        `"${asked.join(' ')}" is about the posts a channel gets by itself`,
+        'Say it in the channel; on the command line, ask has churn moved.',
+      );
+    if (!isAnswerable(request)) {
       const { understood, notUnderstood } = understanding!;
       const read = request.kind === 'data' ? readText(table.report, name) : null;
       if (options.json) around.stdout(`${JSON.stringify({ understood, notUnderstood, read })}\n`);

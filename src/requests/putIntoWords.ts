@@ -3,6 +3,7 @@ import { type Day, dayInWords } from '../days.ts';
 import { moveInWords } from './movePhrase.ts';
 import type { Question, Request, Scope, SideQuestion } from './types.ts';
 import { chartInWords } from './viewPhrase.ts';
+import { weeklyInWords } from './weeklyPhrase.ts';
 
 /** An age in words: "6 months", "1 week". */
 export function tenureInWords(tenure: Tenure): string {
@@ -16,6 +17,10 @@ export function tenureInWords(tenure: Tenure): string {
 export function putIntoWords(request: Request): string {
   if (request.kind === 'help') return 'help';
   if (request.kind === 'data') return 'what did you read?';
+  if (request.kind === 'weekly-show') return 'when do you post?';
+  if (request.kind === 'weekly-stop')
+    return `stop the weekly post${request.which === null ? 's' : ` ${request.which}`}`;
+  if (request.kind === 'weekly-set') return `${weeklyInWords(request.time)}: ${putIntoWords(request.question)}`;
   return `${opening(request)}${scopeInWords(request)}${CLOSING[request.kind] ?? ''}`;
 }
 

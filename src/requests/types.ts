@@ -46,10 +46,33 @@ export type SideQuestion = Scope &
 export type SideKind = SideQuestion['kind'];
 export type SideQuestionOf<K extends SideKind> = Extract<SideQuestion, { readonly kind: K }>;
 
+/** A moment that comes once a week on the clock of a place. */
+export interface WeeklyTime {
+  /** 1 Monday to 7 Sunday */
+  readonly weekday: number;
+  readonly hour: number;
+  readonly minute: number;
+  /** IANA name, such as "Europe/Vienna" */
+  readonly zone: string;
+}
+
+/** What is asked about the posts a channel gets by itself. */
+export type WeeklyRequest =
+  /** set or changed; zone absent: the setter's own */
+  | {
+      readonly kind: 'weekly-set';
+      readonly time: Omit<WeeklyTime, 'zone'> & { readonly zone?: string };
+      readonly question: Question;
+    }
+  | { readonly kind: 'weekly-show' }
+  /** `which`: one of several, from 1; null for all */
+  | { readonly kind: 'weekly-stop'; readonly which: number | null };
+
 /** All that can be asked for in words. */
 export type Request =
   | Question
   | SideQuestion
+  | WeeklyRequest
   | { readonly kind: 'help' }
   /** what was read from the current export, and the means to mend it */
   | { readonly kind: 'data' };

@@ -11,6 +11,7 @@ import { tenurePhrase } from './tenurePhrase.ts';
 import { type Token, tokens } from './tokens.ts';
 import type { Question, Request, RequestContext, Scope, SideQuestion, Understanding } from './types.ts';
 import { chartPhrase, viewPhrase } from './viewPhrase.ts';
+import { showsWeekly, stopPhrase, weeklyPhrase } from './weeklyPhrase.ts';
 
 type Found = { readonly from: number; readonly to: number };
 type Draft = { -readonly [K in keyof Scope]: Scope[K] };
@@ -33,6 +34,8 @@ export function understand(text: string, context: RequestContext): Understanding
   const meant = list
     .filter((token) => !/^(please|hey|hi|hello|ebbline|ebb|me|the|a|to)$/.test(token.text))
     .map((t) => t.text);
+  const weekly = weeklyRequest(text, context);
+  if (weekly) return weekly;
   const other = otherThanAsk(meant);
   if (other) return { request: other, understood: putIntoWords(other), notUnderstood: [] };
 
@@ -55,6 +58,32 @@ export function understand(text: string, context: RequestContext): Understanding
   // "Thank you" or "why?" alone is no question about churn; a verdict nobody asked for would be noise.
   const settled: Request = asksNothing ? { kind: 'help' } : request;
   return { request: settled, understood: putIntoWords(settled), notUnderstood };
+}
+
+const WHEN =
+  'Say the day and the time, such as “every Monday at 9:00”; a time zone may follow, such as “Europe/Vienna”.';
+
+function weeklyRequest(text: string, context: RequestContext): Understanding | undefined {
+  const whole = (request: Request, notUnderstood: Pieces = []): Understanding => ({
+    request,
+    understood: putIntoWords(request),
+    notUnderstood,
+  });
+  const stop = stopPhrase(text);
+  if (stop) return whole({ kind: 'weekly-stop', which: stop.which });
+  if (showsWeekly(text)) return whole({ kind: 'weekly-show' });
+  const found = weeklyPhrase(text);
+  if (found === undefined) return undefined;
+  if (found === 'no-time') return whole({ kind: 'help' }, [{ text, nearest: WHEN }]);
+  const rest = understand(found.rest === '' ? 'has churn moved' : found.rest, context);
+  // Words such as "post" or "tell us" are no question of their own.
+  const question: Question = rest.request.kind === 'ask' ? rest.request : { kind: 'ask' };
+  const odd = rest.request.kind !== 'ask' && rest.request.kind !== 'help';
+  const only = 'By itself I post only whether churn has moved; ask the other questions when you want them.';
+  return whole(
+    { kind: 'weekly-set', time: found.time, question },
+    odd ? [{ text: found.rest, nearest: only }] : rest.request.kind === 'ask' ? rest.notUnderstood : [],
+  );
 }
 
 const HELP =

@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import type { ReadReport } from '../accounts/types.ts';
-import type { ChannelSettings, ReadChoices } from './types.ts';
+import type { WeeklyTime } from '../requests/types.ts';
+import type { ChannelSettings, ReadChoices, Seen } from './types.ts';
 
 /* What the JSON columns hold. Checked on reading, since an older version, or a person with a database tool, may have written them. */
 
@@ -27,6 +28,25 @@ export const settingsSchema: z.ZodType<ChannelSettings> = z.object({
   subgroupSize: z.number().int().positive().exactOptional(),
   segment: z.string().exactOptional(),
   settleDays: count.exactOptional(),
+});
+
+export const timeSchema: z.ZodType<WeeklyTime> = z.object({
+  weekday: z.number().int().min(1).max(7),
+  hour: z.number().int().min(0).max(23),
+  minute: z.number().int().min(0).max(59),
+  zone: z.string(),
+});
+
+export const timesSchema = z.array(z.number());
+
+export const seenSchema: z.ZodType<Seen> = z.object({
+  at: z.number(),
+  asOf: day,
+  outcome: z.string(),
+  tenure: z.string(),
+  subgroupSize: count,
+  points: z.array(z.object({ start: day, accounts: count, lost: count })),
+  flags: z.array(z.object({ key: z.string(), words: z.string(), state: z.string() })),
 });
 
 export const headersSchema = z.array(z.string());

@@ -1,5 +1,6 @@
 import type { Logger } from 'pino';
 import { openEmbedded } from './embeddedSql.ts';
+import { advanceFollow, dueFollows } from './follows.ts';
 import { entryOf, receiveEntry, removeOld } from './inbox.ts';
 import { migrate } from './migrate.ts';
 import { MIGRATIONS } from './migrations/all.ts';
@@ -98,6 +99,9 @@ function storeOver(
         },
       });
     },
+
+    dueFollows: (moment) => dueFollows(database, moment),
+    advanceFollow: (due, next, missed) => advanceFollow(database, due, next, missed),
 
     drained: settled.drained,
 

@@ -1,5 +1,6 @@
 import type { ColumnMap, DateOrder, ReadReport } from '../accounts/types.ts';
 import type { Day } from '../days.ts';
+import type { WeeklyTime } from '../requests/types.ts';
 
 /** How a file was told to be read: kept so that a mend changes one thing and keeps the rest. */
 export interface ReadChoices {
@@ -44,6 +45,40 @@ export interface ChannelSettings {
   readonly settleDays?: number;
 }
 
+/** What a weekly post showed, kept so that the next one can say what is new. Days since 1970. */
+export interface Seen {
+  /** when it was posted, milliseconds since 1970 */
+  readonly at: number;
+  readonly asOf: number;
+  readonly outcome: string;
+  readonly tenure: string;
+  readonly subgroupSize: number;
+  readonly points: readonly { readonly start: number; readonly accounts: number; readonly lost: number }[];
+  readonly flags: readonly { readonly key: string; readonly words: string; readonly state: string }[];
+}
+
+/** A question that is answered in a channel by itself once a week. */
+export interface Follow {
+  readonly id: string;
+  readonly channelId: string;
+  /** in words that are understood again */
+  readonly question: string;
+  readonly time: WeeklyTime;
+  readonly setBy: string;
+  /** milliseconds since 1970 */
+  readonly nextDue: number;
+  /** moments at which a post was due and could not be made in time */
+  readonly missed: readonly number[];
+  readonly seen: Seen | null;
+}
+
+export interface DueFollow {
+  readonly teamId: string;
+  readonly id: string;
+  readonly time: WeeklyTime;
+  readonly due: number;
+}
+
 /** Everything one workspace may see; there is no way from here to another workspace's rows. */
 export interface WorkspaceStore {
   readonly teamId: string;
@@ -66,6 +101,14 @@ export interface WorkspaceStore {
   rememberQuestion(channelId: string, threadTs: string | null, words: string): Promise<void>;
   /** the last question answered in this thread, else in the channel */
   lastQuestion(channelId: string, threadTs: string | null): Promise<string | undefined>;
+  /** follows a question in a channel; one that is followed there already gets the new time */
+  saveFollow(follow: Pick<Follow, 'channelId' | 'question' | 'time' | 'setBy' | 'nextDue'>): Promise<Follow>;
+  follow(id: string): Promise<Follow | undefined>;
+  /** what a channel follows, oldest first */
+  follows(channelId: string): Promise<readonly Follow[]>;
+  removeFollow(id: string): Promise<boolean>;
+  /** keeps what a post showed (null: nothing new to keep), and takes the missed moments it told off the list */
+  recordSeen(id: string, seen: Seen | null, told: readonly number[]): Promise<void>;
   /** remembers that a step of a job already posted, so that a repeated job does not post twice */
   postedTs(jobKey: string, step: string): Promise<string | undefined>;
   recordPosted(jobKey: string, step: string, ts: string): Promise<void>;
@@ -96,6 +139,10 @@ export interface Store {
     ) => Promise<void>,
     concurrency: number,
   ): Promise<void>;
+  /** the weekly posts of all workspaces that are due at this moment */
+  dueFollows(now: number): Promise<readonly DueFollow[]>;
+  /** moves a weekly post on, once, whoever comes first */
+  advanceFollow(due: Pick<DueFollow, 'teamId' | 'id' | 'due'>, next: number, missed: readonly number[]): Promise<void>;
   /** resolves when every received entry has been worked (or has failed for good); event driven, for tests and shutdown */
   drained(timeoutMs: number): Promise<void>;
   /** removes entries older than 7 days with their payload, unless still to be worked, and tidies the queue; call it now and then, about hourly */

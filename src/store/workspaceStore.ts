@@ -1,6 +1,7 @@
 import { randomBytes } from 'node:crypto';
 import { readColumn, settingsSchema } from './columns.ts';
 import { datasetsOf } from './datasets.ts';
+import { followsOf } from './follows.ts';
 import { scopeOf } from './scope.ts';
 import { asJson, type Sql } from './sql.ts';
 import type { WorkspaceStore } from './types.ts';
@@ -27,6 +28,7 @@ export async function workspaceStore(
     teamId,
     ...uploadsOf(scope),
     ...datasetsOf(scope, now),
+    ...followsOf(scope),
 
     async idKey() {
       // The first to come sets it; who comes second at the same moment gets the one that was set.

@@ -10,9 +10,13 @@ import { saidBy, type UnderstoodWords } from '../messages/verdictMessage.ts';
 import type { Poster } from '../posting/poster.ts';
 import { postVerdict } from '../posting/postVerdict.ts';
 import { datasetFor, type Job, requestContext } from './context.ts';
+import { workWeeklyRequest } from './weeklyRequests.ts';
 
-/** Answers a question asked in words, in the thread of the poster's place. Empty words get help. */
-export async function answerAsk(job: Job, poster: Poster, text: string): Promise<void> {
+/**
+ * Answers a question asked in words, in the thread of the poster's place. Empty words get help.
+ * @param user who asks; their time zone is taken for a weekly post
+ */
+export async function answerAsk(job: Job, poster: Poster, text: string, user: string): Promise<void> {
   const { deps, workspace } = job;
   const dataset = await datasetFor(workspace, poster.place);
   if (text === '') {
@@ -30,6 +34,10 @@ export async function answerAsk(job: Job, poster: Poster, text: string): Promise
         dataset ? readMessage(dataset.report, dataset.name, { dataset: dataset.id }) : noDataMessage(deps.practice),
       );
       return;
+    case 'weekly-set':
+    case 'weekly-show':
+    case 'weekly-stop':
+      return workWeeklyRequest(job, poster, words.request, user);
     default:
       if (!dataset) await poster.post('no-data', noDataMessage(deps.practice));
       else await answerRequest(job, poster, dataset, words.request, words);

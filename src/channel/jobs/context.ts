@@ -15,11 +15,13 @@ export interface Job {
   readonly workspace: WorkspaceStore;
   readonly teamId: string;
   readonly jobKey: string;
+  /** an earlier attempt at the same work may have got part of the way */
+  readonly again: boolean;
   readonly log: Logger;
 }
 
 export function posterFor(job: Job, place: Place): Poster {
-  return poster(job.client, job.workspace, job.jobKey, place);
+  return poster(job.client, job.workspace, job.jobKey, place, job.again);
 }
 
 const DAY_MS = 86_400_000;

@@ -1,4 +1,5 @@
 import { EbbError } from '../../errors.ts';
+import { isAnswerable } from '../../requests/answerable.ts';
 import { understand } from '../../requests/understand.ts';
 import type { Upload } from '../../store/types.ts';
 import { withFetchedFile } from '../download/fetchFile.ts';
@@ -62,7 +63,7 @@ export async function readUpload(
   const words = asked === '' ? null : understand(asked, requestContext(deps.now(), dataset));
   const request = words?.request;
   // Beside a file, "help" or words without a question still get the plain answer.
-  const answered = request && request.kind !== 'help' && request.kind !== 'data' ? request : null;
+  const answered = request && isAnswerable(request) ? request : null;
   await answerRequest(job, poster, dataset, answered ?? { kind: 'ask' }, answered ? words : null);
 }
 

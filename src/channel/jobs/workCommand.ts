@@ -19,7 +19,7 @@ export async function workCommand(job: Job, payload: Payload<'command'>): Promis
     await respond(job, payload.responseUrl, 'I am not in this channel yet. Invite me (`/invite`), then ask again.');
     return;
   }
-  await answerAsk(job, root.in({ channel: payload.channel, threadTs }), payload.text);
+  await answerAsk(job, root.in({ channel: payload.channel, threadTs }), payload.text, payload.user);
 }
 
 /** The address that came with the command works without being in the channel. */

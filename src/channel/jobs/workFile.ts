@@ -22,7 +22,7 @@ export async function workFile(job: Job, payload: Payload<'file'>): Promise<void
   if (problem !== undefined || !file) {
     if (!payload.mentioned) return;
     await poster.post('cannot-read', cannotReadMessage(file ? fileName(file) : 'The file', problem ?? 'gone'));
-    if (payload.question !== '' && payload.alone) await answerAsk(job, poster, payload.question);
+    if (payload.question !== '' && payload.alone) await answerAsk(job, poster, payload.question, payload.user);
     return;
   }
   const known = await workspace.uploadInThread(payload.channel, payload.threadTs);

@@ -14,6 +14,7 @@ import { inOrder } from './inOrder.ts';
 import { workCommand } from './workCommand.ts';
 import { workFile, workFileShared } from './workFile.ts';
 import { workDateOrder, workMend } from './workMend.ts';
+import { workWeekly } from './workWeekly.ts';
 
 export type Handler = (
   entry: InboxEntry & { readonly attempt: number; readonly lastAttempt: boolean },
@@ -30,7 +31,16 @@ export function createHandler(deps: ChannelDeps, client: WebClient): Handler {
     ordered(orderKey(entry), async () => {
       const log = deps.log.child({ team: entry.teamId, kind: entry.kind, event: entry.eventKey });
       const workspace = await deps.store.workspace(entry.teamId);
-      const job: Job = { deps, client, rule, workspace, teamId: entry.teamId, jobKey: entry.eventKey, log };
+      const job: Job = {
+        deps,
+        client,
+        rule,
+        workspace,
+        teamId: entry.teamId,
+        jobKey: entry.eventKey,
+        again: entry.attempt > 1,
+        log,
+      };
       let work: Work | undefined;
       try {
         work = workOf(entry);
@@ -56,7 +66,7 @@ function orderKey(entry: InboxEntry): string {
 async function run(job: Job, work: Work): Promise<void> {
   switch (work.kind) {
     case 'ask':
-      return answerAsk(job, posterFor(job, work.payload), work.payload.text);
+      return answerAsk(job, posterFor(job, work.payload), work.payload.text, work.payload.user);
     case 'command':
       return workCommand(job, work.payload);
     case 'file':
@@ -68,6 +78,8 @@ async function run(job: Job, work: Work): Promise<void> {
       return;
     case 'date-order':
       return workDateOrder(job, work.payload);
+    case 'weekly':
+      return workWeekly(job, work.payload);
     case 'mend':
       return workMend(job, work.payload);
   }
@@ -112,6 +124,7 @@ function placeOf(work: Work): Place | undefined {
       return { channel: work.payload.channel, threadTs: null };
     case 'file-shared':
     case 'joined':
+    case 'weekly':
       return undefined;
   }
 }

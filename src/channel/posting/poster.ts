@@ -30,17 +30,61 @@ const NOT_REPLACEABLE = new Set([
   'channel_not_found',
 ]);
 
-export function poster(client: WebClient, workspace: WorkspaceStore, jobKey: string, place: Place): Poster {
+/** How far back in a place it is looked for what an attempt that was cut off may have posted. */
+const LOOKED_BACK = 200;
+const EVENT_TYPE = 'ebbline_post';
+
+/**
+ * @param again true when an earlier attempt may have been cut off between posting and remembering it: then every post is first looked for
+ *              in its place, by a mark that each of them carries
+ */
+export function poster(
+  client: WebClient,
+  workspace: WorkspaceStore,
+  jobKey: string,
+  place: Place,
+  again: boolean,
+): Poster {
+  const markOf = (step: string): string => `${jobKey}|${place.threadTs ?? ''}|${step}`;
+
+  /** What an earlier attempt posted for this step, though it could not remember it. */
+  const found = async (step: string): Promise<string | undefined> => {
+    const where = { channel: place.channel, limit: LOOKED_BACK, include_all_metadata: true };
+    let messages: readonly { ts?: string; metadata?: { event_type?: string; event_payload?: unknown } }[];
+    try {
+      const read =
+        place.threadTs === null
+          ? await client.conversations.history(where)
+          : await client.conversations.replies({ ...where, ts: place.threadTs });
+      messages = (read.messages ?? []) as typeof messages;
+    } catch (error) {
+      // Where the past cannot be read, posting once too often is better than not at all.
+      if (refusal(error) === undefined) throw error;
+      return undefined;
+    }
+    return messages.find(
+      ({ metadata }) =>
+        metadata?.event_type === EVENT_TYPE &&
+        (metadata.event_payload as { mark?: unknown } | undefined)?.mark === markOf(step),
+    )?.ts;
+  };
+
   const posted = (step: string): Promise<string | undefined> => workspace.postedTs(jobKey, step);
   const remember = (step: string, ts: string): Promise<void> => workspace.recordPosted(jobKey, step, ts);
   const post = async (step: string, message: Message): Promise<string> => {
     const before = await posted(step);
     if (before !== undefined) return before;
+    const already = again ? await found(step) : undefined;
+    if (already !== undefined) {
+      await remember(step, already);
+      return already;
+    }
     const sent = await client.chat.postMessage({
       channel: place.channel,
       ...(place.threadTs === null ? {} : { thread_ts: place.threadTs }),
       text: message.text,
       blocks: message.blocks,
+      metadata: { event_type: EVENT_TYPE, event_payload: { mark: markOf(step) } },
       unfurl_links: false,
       unfurl_media: false,
     });
@@ -50,7 +94,7 @@ export function poster(client: WebClient, workspace: WorkspaceStore, jobKey: str
   };
   return {
     place,
-    in: (other) => poster(client, workspace, jobKey, other),
+    in: (other) => poster(client, workspace, jobKey, other, again),
     posted,
     remember,
     post,

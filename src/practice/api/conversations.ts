@@ -1,8 +1,10 @@
 /** conversations.*: what a channel is, who is in it, joining and opening. */
 import { Refusal } from '../wire/refusal.ts';
+import type { Request } from '../wire/requests.ts';
 import { directChannel } from '../world/marrowby.ts';
-import { presentChannel } from '../world/present.ts';
-import { channelOf, type MethodTable, personOf } from './method.ts';
+import { presentChannel, presentMessage } from '../world/present.ts';
+import type { Message } from '../world/world.ts';
+import { type Call, channelOf, type MethodTable, memberChannel, personOf } from './method.ts';
 
 const READ = ['channels:read', 'groups:read', 'im:read'];
 
@@ -17,9 +19,36 @@ function pageOf<T>(all: readonly T[], cursor: string | undefined, limit: number 
   };
 }
 
+const HISTORY = ['channels:history', 'groups:history', 'im:history'];
+
+/** Messages of a channel within a stretch of time, as the app may see them: what is for one person only is in no history. */
+function within(call: Call, args: Request<'conversations.history'>): Message[] {
+  const channel = memberChannel(call, args.channel);
+  const [oldest, latest] = [Number(args.oldest ?? 0), Number(args.latest ?? Number.POSITIVE_INFINITY)];
+  return call.world.messages.filter((message) => {
+    const at = Number(message.ts);
+    const inside = args.inclusive === true ? at >= oldest && at <= latest : at > oldest && at < latest;
+    return message.channel === channel.id && message.onlyFor === undefined && inside;
+  });
+}
+
+/** Metadata is left out unless it is asked for. */
+function shown(call: Call, messages: readonly Message[], all: boolean | undefined) {
+  return messages.map((message) => {
+    const { metadata, ...rest } = presentMessage(call.world, message);
+    return all === true && metadata ? { ...rest, metadata } : rest;
+  });
+}
+
 export const conversations: Pick<
   MethodTable,
-  'conversations.info' | 'conversations.members' | 'conversations.join' | 'conversations.open' | 'conversations.list'
+  | 'conversations.info'
+  | 'conversations.members'
+  | 'conversations.join'
+  | 'conversations.open'
+  | 'conversations.list'
+  | 'conversations.history'
+  | 'conversations.replies'
 > = {
   'conversations.info': {
     scopes: READ,
@@ -48,6 +77,34 @@ export const conversations: Pick<
       );
       const { items, response_metadata } = pageOf(seen, args.cursor, args.limit);
       return { channels: items.map((c) => presentChannel(c, install)), response_metadata };
+    },
+  },
+  'conversations.history': {
+    scopes: HISTORY,
+    token: 'bot',
+    run: (call, args) => {
+      // Newest first; replies are in their threads.
+      const heads = within(call, args).filter((m) => m.threadTs === undefined || m.threadTs === m.ts);
+      const { items, response_metadata } = pageOf(heads.reverse(), args.cursor, args.limit);
+      return {
+        messages: shown(call, items, args.include_all_metadata),
+        has_more: response_metadata.next_cursor !== '',
+        response_metadata,
+      };
+    },
+  },
+  'conversations.replies': {
+    scopes: HISTORY,
+    token: 'bot',
+    run: (call, args) => {
+      const thread = within(call, args).filter((m) => m.ts === args.ts || m.threadTs === args.ts);
+      if (thread.length === 0) throw new Refusal('thread_not_found');
+      const { items, response_metadata } = pageOf(thread, args.cursor, args.limit);
+      return {
+        messages: shown(call, items, args.include_all_metadata),
+        has_more: response_metadata.next_cursor !== '',
+        response_metadata,
+      };
     },
   },
   'conversations.join': {
