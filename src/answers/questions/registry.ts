@@ -5,7 +5,13 @@ import type { AnswerSide, Reply, SideContext } from './types.ts';
 type Loaders = { readonly [K in SideKind]?: () => Promise<AnswerSide<K>> };
 
 /** Every question by its kind, loaded when first asked: a verdict need not wait for the code of all the others. */
-const QUESTIONS: Loaders = {};
+const QUESTIONS: Loaders = {
+  revenue: async () => (await import('./revenue.ts')).answerRevenue,
+  target: async () => (await import('./target.ts')).answerTarget,
+  early: async () => (await import('./early.ts')).answerEarly,
+  where: async () => (await import('./where.ts')).answerWhere,
+  plan: async () => (await import('./plan.ts')).answerPlan,
+};
 
 /** Answers a question around the verdict. */
 export async function answerByKind(context: SideContext, request: SideQuestion): Promise<Reply> {

@@ -1,0 +1,57 @@
+import { percent } from '../../words/format.ts';
+import type { Change } from './change.ts';
+
+/** A part below this share of both parts together is not told by group. Our choice, no source. */
+const WORTH_TELLING = 0.1;
+
+/**
+ * The change of all accounts, told apart: what the groups' own rates made of it, and what their shares made of it. The two figures told
+ * add up to the third as they are printed.
+ * @param when  how the two stretches are called: "before 3 March 2025", "since then"
+ */
+export function changeWords(change: Change, when: { readonly before: string; readonly after: string }): string[] {
+  const total = hundredths(change.difference);
+  const rates = hundredths(change.ratePart);
+  const sentences = [
+    `${LEAD[change.basis]}from ${percent(change.before)} (${when.before}) to ${percent(change.after)} (${when.after}): ${points(total)} percentage points. Rates within the groups make ${points(rates)} of it (95 % interval ${points(hundredths(change.ratePartLow))} to ${points(hundredths(change.ratePartHigh))}), and the mix, how the accounts spread over the groups, ${points(total - rates)}.`,
+  ];
+  const size = Math.abs(change.ratePart) + Math.abs(change.mixPart);
+  if (size === 0) return sentences;
+  const largest = (part: 'ratePart' | 'mixPart'): number =>
+    change.groups.reduce(
+      (best, group, i) => (Math.abs(group[part]) > Math.abs(change.groups[best]![part]) ? i : best),
+      0,
+    );
+  if (Math.abs(change.ratePart) >= WORTH_TELLING * size) {
+    const at = largest('ratePart');
+    const { rateBefore, rateAfter, ratePart } = change.groups[at]!;
+    if (rateBefore !== null && rateAfter !== null)
+      sentences.push(
+        `The group that made most of it by its own rate is ${change.names[at]}: ${percent(rateBefore)} to ${percent(rateAfter)}, which is ${points(hundredths(ratePart))} points of the whole.`,
+      );
+  }
+  if (Math.abs(change.mixPart) >= WORTH_TELLING * size) {
+    const at = largest('mixPart');
+    const { shareBefore, shareAfter, mixPart } = change.groups[at]!;
+    sentences.push(
+      `The share that mattered most is that of ${change.names[at]}: ${percent(shareBefore)} of the accounts before, ${percent(shareAfter)} since, which is ${points(hundredths(mixPart))} points of the whole.`,
+    );
+  }
+  return sentences;
+}
+
+const LEAD: Readonly<Record<Change['basis'], string>> = {
+  move: 'All accounts together went ',
+  level:
+    'All accounts together show no move to compare before and after, so what set the usual level is compared with all that came since. They went ',
+  halves:
+    'All accounts together show no move to compare before and after, so the first half of the points is compared with the second. They went ',
+};
+
+const hundredths = (part: number): number => Math.round(part * 10_000);
+
+/** Whole hundredths of a percentage point, signed. */
+function points(whole: number): string {
+  const text = (Math.abs(whole) / 100).toFixed(2);
+  return whole === 0 ? text : `${whole < 0 ? '−' : '+'}${text}`;
+}
