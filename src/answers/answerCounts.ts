@@ -1,8 +1,9 @@
-import type { ChartKind, SubgroupCount } from '../charts/types.ts';
+import type { ChartKind, ShiftTest, SubgroupCount } from '../charts/types.ts';
 import { drawPicture } from '../picture/picture.ts';
 import { chartAndJudge, isSubgroupKind } from '../verdict/chartAndJudge.ts';
 import type { PointDates } from '../verdict/types.ts';
 import { writeVerdict } from '../verdict/verdict.ts';
+import { chosenTests } from '../verdict/words/testWords.ts';
 import { drawnFrom } from './drawnFrom.ts';
 import type { Answer } from './types.ts';
 
@@ -11,6 +12,8 @@ export interface CountsQuestion {
   readonly baseline?: number;
   readonly excluded?: readonly number[];
   readonly chart?: ChartKind;
+  /** shift tests that decide; all of them when absent */
+  readonly tests?: readonly ShiftTest[];
   readonly picture: boolean;
   readonly clock: () => number;
 }
@@ -24,6 +27,7 @@ export async function answerCounts(question: CountsQuestion): Promise<Answer> {
     ...(question.baseline === undefined ? {} : { baselineLast: question.baseline }),
     ...(question.excluded ? { excluded: question.excluded } : {}),
     ...(isSubgroupKind(question.chart) ? { kind: question.chart } : {}),
+    ...(question.tests ? { tests: question.tests } : {}),
   });
   const dates: PointDates[] = counts.map(() => ({
     firstStart: null,
@@ -47,7 +51,7 @@ export async function answerCounts(question: CountsQuestion): Promise<Answer> {
     segmentColumn: null,
     segment: null,
     segmentValues: [],
-    howChosen: [],
+    howChosen: question.tests ? [chosenTests(question.tests)] : [],
     readCautions: [],
   });
   const chartDone = clock();

@@ -17,6 +17,7 @@ export async function chartCommand(options: CliOptions, around: CliSurroundings)
     ...(options.baseline === undefined ? {} : { baseline: options.baseline }),
     // Ready counts come from a table or a spreadsheet whose owner expects the plain chart; auto chooses.
     ...(options.chart === 'auto' ? {} : { chart: options.chart ?? 'p' }),
+    ...(options.tests ? { tests: options.tests } : {}),
     picture: options.picture !== undefined,
     clock: around.clock,
   });

@@ -59,7 +59,7 @@ export function writeVerdict(chart: Chart | null, judgement: Judgement, context:
     ...trustSentences(judgement, context, judgement.finding === 'steady'),
     ...(chart ? [countSentence(chart.points.length, context)] : []),
     ...context.howChosen,
-    ...furtherTrustSentences(judgement),
+    ...furtherTrustSentences(judgement, context.tenure === null ? 'case' : 'account'),
   ];
 
   return {

@@ -13,6 +13,12 @@ const rate = z.number().min(0).max(1);
 const pooled = z.object({ rate, low: rate, high: rate, lost: z.number().int(), accounts: z.number().int() });
 
 /** The names other programs rely on. */
+const delay = z.strictObject({
+  rate,
+  points: z.number().min(1).nullable(),
+  accounts: z.number().positive().nullable(),
+  weeks: z.number().positive().nullable(),
+});
 const contract = z.object({
   verdict: z.object({
     outcome: z.enum(['risen', 'fallen', 'steady', 'too-early', 'cannot-say']),
@@ -67,6 +73,26 @@ const contract = z.object({
     method: z.enum(['exact', 'simulated']),
     standardError: z.number().nullable(),
     falseVerdictChance: z.number().max(0.05).nullable(),
+    settings: z
+      .strictObject({ n: z.number().nullable(), p: rate, tests: z.array(z.number()), sigmaZ: z.number().positive() })
+      .optional(),
+    runLength: z
+      .strictObject({
+        mean: z.number().min(1),
+        median: z.number().int().nullable(),
+        p10: z.number().int().nullable(),
+        p90: z.number().int().nullable(),
+      })
+      .nullish(),
+    delay: z.strictObject({ rise: delay.nullable(), fall: delay.nullable() }).optional(),
+    estimated: z
+      .strictObject({
+        points: z.number().int(),
+        falseAlarmEvery: z.number().positive().nullable(),
+        low: z.number().positive(),
+        high: z.number().positive().nullable(),
+      })
+      .nullish(),
     wouldSee: z.object({ rise: rate.nullable(), fall: rate.nullable(), chance: z.literal(0.8) }).nullable(),
   }),
   data: z.object({
@@ -101,6 +127,28 @@ const ask = async (file: string, ...args: string[]) => {
   expect(run.code).toBe(0);
   return contract.parse(JSON.parse(run.stdout));
 };
+
+it('--tests chooses what decides: without the trend test the false-alarm figure is exact', async () => {
+  const usual = await ask('marrowby-nothing-changed.csv');
+  expect(usual.trust).toMatchObject({ method: 'simulated', settings: { tests: [1, 2, 3, 5, 6] } });
+  expect(usual.trust.standardError).toBeGreaterThan(0);
+  const exact = await ask('marrowby-nothing-changed.csv', '--tests', '1,2,5,6');
+  expect(exact.trust).toMatchObject({ method: 'exact', standardError: null, settings: { tests: [1, 2, 5, 6] } });
+  expect(exact.chart.signals.every(({ test }) => test !== 3)).toBe(true);
+  expect(exact.verdict.evidence.join(' ')).toContain('As you asked, only these flags count');
+  expect(exact.trust.delay!.rise!.weeks).toBeGreaterThan(0);
+  const ready = await runEbb(
+    'chart',
+    '--counts',
+    '12,15,8,10,4,7,16,9,14,10,5,6,17,12',
+    '--sizes',
+    '50',
+    '--tests',
+    '1',
+    '--json',
+  );
+  expect(JSON.parse(ready.stdout).trust).toMatchObject({ method: 'exact', settings: { n: 50, tests: [1] } });
+});
 
 describe('ebb ask on the Marrowby exports', () => {
   for (const entry of truth.exports) {

@@ -1,14 +1,16 @@
 import { takeCensus } from '../../census/census.ts';
 import { tenureInWords } from '../../census/tenure.ts';
-import type { Census } from '../../census/types.ts';
+import type { Census, CensusPlan } from '../../census/types.ts';
 import { type Day, dayInWords } from '../../days.ts';
 import type { Scope } from '../../requests/types.ts';
 import { chartAndJudge, isSubgroupKind } from '../../verdict/chartAndJudge.ts';
 import type { VerdictContext } from '../../verdict/context.ts';
 import { LEAST_POINTS } from '../../verdict/judgement.ts';
-import type { PointDates, Verdict } from '../../verdict/types.ts';
+import type { PictureInput, PointDates, Verdict } from '../../verdict/types.ts';
 import { writeVerdict } from '../../verdict/verdict.ts';
 import { capitalised, counted } from '../../verdict/words/format.ts';
+import { chosenTests } from '../../verdict/words/testWords.ts';
+import { type ViewWords, viewWords } from '../../verdict/words/viewWords.ts';
 import { drawnFrom } from '../drawnFrom.ts';
 import { emptyJudgement } from '../emptyJudgement.ts';
 import { readCautions } from '../readCautions.ts';
@@ -18,10 +20,48 @@ import type { AskContext, Reached } from './types.ts';
 export async function bySubgroups(context: AskContext): Promise<Reached> {
   const { table, question, scope, resolved } = context;
   const { plan, tenureOfAll } = resolved;
+  const { tenure, subgroupSize } = plan;
+  const census = await takeCensus(table, { tenure, subgroupSize, view: 'start', ...scope });
+  return answerCensus(context, {
+    census,
+    plan,
+    tenure: tenureInWords(tenure),
+    countedAt: context.clock(),
+    howChosen: [
+      ...(question.tenure
+        ? []
+        : [
+            tenureOfAll
+              ? `Read at ${tenureInWords(tenureOfAll)}, the age taken for all accounts.`
+              : `${capitalised(plan.tenureWhy)}.`,
+          ]),
+      ...(question.subgroupSize ? [] : [`${capitalised(plan.sizeWhy)}.`]),
+    ],
+    waiting: { accounts: census.waiting, of: subgroupSize, on: census.nextPointOn },
+  });
+}
+
+/** What was counted in one view of the census, and what must be said about it. */
+export interface Counted {
+  readonly census: Census;
+  readonly plan: CensusPlan;
+  /** the age or the time between renewals, in words */
+  readonly tenure: string;
+  readonly countedAt: number;
+  readonly howChosen: readonly string[];
+  readonly waiting: PictureInput['waiting'];
+  /** cautions that the view itself calls for */
+  readonly cautions?: readonly string[];
+  readonly withheld?: VerdictContext['withheld'];
+}
+
+/** Charts and judges the subgroups of a census and puts them into words. */
+export function answerCensus(context: AskContext, taken: Counted): Reached {
+  const { table, question, scope } = context;
+  const { census, plan, countedAt } = taken;
   const { report } = table;
-  const { tenure } = plan;
-  const census = await takeCensus(table, { tenure, subgroupSize: plan.subgroupSize, view: 'start', ...scope });
-  const countedAt = context.clock();
+  const { view } = census.request;
+  const words = viewWords(view);
 
   const dates: PointDates[] = census.subgroups.map(({ firstStart, lastStart, asOf: day }) => ({
     firstStart,
@@ -34,15 +74,18 @@ export async function bySubgroups(context: AskContext): Promise<Reached> {
       ? chartAndJudge({
           counts: census.subgroups,
           segments: census.segments,
+          accountsPerWeek: census.inflowPerWeek,
           ...baseline,
+          ...(question.tests ? { tests: question.tests } : {}),
           ...(isSubgroupKind(question.chart) ? { kind: question.chart } : {}),
         })
       : { chart: null, judgement: emptyJudgement() };
-  const tenureWords = tenureInWords(tenure);
   const verdictContext: VerdictContext = {
-    tenure: tenureWords,
+    view,
+    withheld: taken.withheld ?? null,
+    tenure: taken.tenure,
     dates,
-    subgroupSize: plan.subgroupSize,
+    subgroupSize: view === 'calendar' ? null : plan.subgroupSize,
     accounts: report.accounts,
     matured: census.matured,
     waiting: census.waiting,
@@ -52,22 +95,14 @@ export async function bySubgroups(context: AskContext): Promise<Reached> {
     inflowPerWeek: census.inflowPerWeek,
     asOf: scope.asOf,
     asOfInferred: question.asOf === undefined && report.asOfSource !== 'given',
-    segmentColumn: report.columns.segment ?? null,
+    // Renewals are grouped by their number; the export's own groups are not compared in that view.
+    segmentColumn: view === 'renewal' ? null : (report.columns.segment ?? null),
     segment: scope.segment ?? null,
     segmentValues: census.segments.map((entry) => entry.segment),
-    howChosen: [
-      ...(question.tenure
-        ? []
-        : [
-            tenureOfAll
-              ? `Read at ${tenureInWords(tenureOfAll)}, the age taken for all accounts.`
-              : `${capitalised(plan.tenureWhy)}.`,
-          ]),
-      ...(question.subgroupSize ? [] : [`${capitalised(plan.sizeWhy)}.`]),
-    ],
-    readCautions: [...caution, ...readCautions(report, scope.asOf)],
+    howChosen: [...taken.howChosen, ...(question.tests ? [chosenTests(question.tests)] : [])],
+    readCautions: [...caution, ...(taken.cautions ?? []), ...readCautions(report, scope.asOf)],
   };
-  const verdict = withSince(writeVerdict(chart, judgement, verdictContext), question.since);
+  const verdict = withSince(writeVerdict(chart, judgement, verdictContext), question.since, words);
   return {
     verdict,
     chart,
@@ -79,9 +114,10 @@ export async function bySubgroups(context: AskContext): Promise<Reached> {
     plan,
     drawn: {
       ...drawnFrom(judgement),
-      waiting: { accounts: census.waiting, of: plan.subgroupSize, on: census.nextPointOn },
+      view,
+      waiting: taken.waiting,
       immature: census.immature,
-      measure: `lost within ${tenureWords} of starting`,
+      measure: words.measure(taken.tenure),
       subject: scope.segment === undefined ? context.subject : `${context.subject}, ${scope.segment}`,
       asOf: scope.asOf,
     },
@@ -90,10 +126,10 @@ export async function bySubgroups(context: AskContext): Promise<Reached> {
 }
 
 /** When somebody asked "since when", and the chart dates the move earlier, it says so. */
-export function withSince(verdict: Verdict, since: Day | undefined): Verdict {
+export function withSince(verdict: Verdict, since: Day | undefined, words: ViewWords): Verdict {
   const start = verdict.since?.start ?? null;
   if (since === undefined || start === null || start >= since) return verdict;
-  const earlier = `You asked about accounts since ${dayInWords(since)}; the chart itself dates the move earlier, to about ${dayInWords(start)}.`;
+  const earlier = `You asked about ${words.one}s since ${dayInWords(since)}; the chart itself dates the move earlier, to about ${words.day(start)}.`;
   return { ...verdict, cautions: [earlier, ...verdict.cautions] };
 }
 
@@ -121,7 +157,7 @@ export function chooseBaseline(
   if (before >= LEAST_POINTS && before < count) return { baseline: { baselineLast: before }, caution: [] };
   const why =
     before >= count
-      ? `No full point has started since ${dayInWords(since)} yet`
+      ? `No full point lies after ${dayInWords(since)} yet`
       : `Only ${counted(before, 'full point')} lie before ${dayInWords(since)}, too few to set a usual level`;
   return { baseline: {}, caution: [`${why}, so the usual split of the chart was kept.`] };
 }

@@ -1,5 +1,5 @@
-import type { ChartKind, TestEpisode } from '../../charts/types.ts';
-import { numberWord } from './format.ts';
+import type { ChartKind, ShiftTest, TestEpisode } from '../../charts/types.ts';
+import { listed, numberWord } from './format.ts';
 
 /** What keeps points within the limits: on a p' chart, and for ratios that are no counts, they are set by how much the points really vary. */
 export function withinLimits(kind: ChartKind): string {
@@ -37,6 +37,19 @@ export function testWords(
     case 8:
       return `${longer(8)} points in a row clearly away from the usual level, some above and some below`;
   }
+}
+
+const SHIFT_IN_WORDS: Readonly<Record<ShiftTest, string>> = {
+  1: 'one point beyond three sigma',
+  2: 'nine in a row on one side',
+  3: 'six in a row rising or falling',
+  5: 'two of three beyond two sigma',
+  6: 'four of five beyond one sigma',
+};
+
+/** Which tests decide, where somebody chose them. */
+export function chosenTests(tests: readonly ShiftTest[]): string {
+  return `As you asked, only these flags count (sigma is the usual spread of a point): ${listed(tests.map((test) => SHIFT_IN_WORDS[test]))}.`;
 }
 
 /** What a test about the cut of the data suggests looking at. */

@@ -3,35 +3,32 @@ import type { Delay } from '../types.ts';
 import { ANSWERED, RAREST_TOLD } from './evidence.ts';
 import { count, counted, percent } from './format.ts';
 
-/** How soon a move would be flagged, and what an estimated level does to the false-alarm figure: read after everything else. */
-export function furtherTrustSentences(judgement: Judgement): string[] {
+/** How soon a move would be flagged, and what an estimated level does to the false-alarm figure: read after everything else. `unit` is what is counted. */
+export function furtherTrustSentences(judgement: Judgement, unit: string): string[] {
   if (!ANSWERED.has(judgement.finding)) return [];
   const { delay, estimated, falseAlarmEvery } = judgement.trust;
-  const sentences: string[] = [];
   const moves = [
-    delay?.rise ? (['a rise by half', delay.rise] as const) : null,
-    delay?.fall ? (['a halving', delay.fall] as const) : null,
+    delay?.rise ? `a rise by half, to ${percent(delay.rise.rate)}, ${howSoon(delay.rise, unit)}` : null,
+    delay?.fall ? `a halving, to ${percent(delay.fall.rate)}, ${howSoon(delay.fall, unit)}` : null,
   ].filter((move) => move !== null);
-  if (moves.length > 0)
-    sentences.push(
-      `How soon a first flag comes, on average: ${moves.map(([name, move]) => `${name}, to ${percent(move.rate)}, ${howSoon(move)}`).join('; ')}.`,
-    );
+  const sentences = moves.length > 0 ? [`How soon a first flag would come, on average: ${moves.join('; ')}.`] : [];
   if (estimated && falseAlarmEvery !== null && falseAlarmEvery <= RAREST_TOLD) {
-    const from = counted(estimated.low, 'point');
-    const range =
-      estimated.high === null || estimated.high > RAREST_TOLD
-        ? `${from} or more`
-        : `${count(estimated.low)} to ${counted(estimated.high, 'point')}`;
     sentences.push(
-      `A usual level from ${counted(estimated.points, 'point')} is itself a little off: one false flag in ${range} is what 8 of 10 charts like this have.`,
+      `A usual level from ${counted(estimated.points, 'point')} is itself a little off: in 8 of 10 charts like this one a false flag comes once in ${range(estimated)}.`,
     );
   }
   return sentences;
 }
 
-/** "after about 4 points (540 accounts, 5 weeks)". */
-function howSoon({ points, accounts, weeks }: Delay): string {
+/** "after about 4 points (520 accounts, about 8 weeks)". */
+function howSoon({ points, accounts, weeks }: Delay, unit: string): string {
   if (points === null || accounts === null || points > RAREST_TOLD) return 'hardly ever';
+  const many = counted(accounts < 100 ? accounts : Math.round(accounts / 10) * 10, unit);
   const time = weeks === null ? '' : `, about ${counted(Math.max(1, weeks), 'week')}`;
-  return `after about ${counted(Math.max(1, points), 'point')} (${counted(accounts, 'account')}${time})`;
+  return `after about ${counted(Math.max(1, points), 'point')} (${many}${time})`;
+}
+
+function range({ low, high }: { low: number; high: number | null }): string {
+  if (high === null || high > RAREST_TOLD) return `${counted(low, 'point')} or more`;
+  return `${count(low)} to ${counted(high, 'point')}`;
 }
