@@ -59,7 +59,7 @@ export function smallestDetectable(
 }
 
 /** Rate between `rate` and `limit` whose information against `rate` per account is `wanted`; the limit when none is that informative. */
-function expectedMove(rate: number, limit: 0 | 1, wanted: number): number {
+export function expectedMove(rate: number, limit: 0 | 1, wanted: number): number {
   let near = rate;
   let far: number = limit;
   for (let step = 0; step < 40; step++) {
@@ -72,7 +72,7 @@ function expectedMove(rate: number, limit: 0 | 1, wanted: number): number {
 }
 
 /** Smallest move from `rate` towards `limit` that is seen, looked for around `guess`; null when not even the limit is. */
-function smallestMove(rate: number, limit: 0 | 1, guess: number, seen: (moved: number) => boolean): number | null {
+export function smallestMove(rate: number, limit: 0 | 1, guess: number, seen: (moved: number) => boolean): number | null {
   const move = (size: number): number => (limit === 1 ? Math.min(1, rate + size) : Math.max(0, rate - size));
   const reach = Math.abs(limit - rate);
   let enough = Math.min(reach, 1.3 * Math.abs(guess - rate));

@@ -1,10 +1,10 @@
 import type { WatchSum } from './watchSum.ts';
 
-/** A stretch over which the sum stood at or beyond its limit. Accounts are numbered from 1 in order of start. */
+/** One climb from zero that reached the limit. Accounts are numbered from 1 in order of start. */
 export interface Alarm {
-  /** the account at which the sum reached the limit */
+  /** the account at which the sum first reached the limit */
   readonly at: number;
-  /** the last account at which it still stood there; the newest account while the alarm stands */
+  /** the last account of the climb at which it stood there; the newest account while the alarm stands */
   readonly until: number;
   /** the sum was last at zero after this many accounts; what moved it came after them */
   readonly zeroAfter: number;
@@ -42,6 +42,13 @@ export function bernoulliCusum(
   let zeroAfter = 0;
   let raised: { at: number; zeroAfter: number } | null = null;
 
+  /** A sum that dips below its limit and comes back without having been at zero is still on the same climb. */
+  const close = (alarm: { at: number; zeroAfter: number }, until: number): void => {
+    const before = alarms.at(-1);
+    if (before?.zeroAfter === alarm.zeroAfter) alarms[alarms.length - 1] = { ...before, until };
+    else alarms.push({ ...alarm, until });
+  };
+
   /** Goes on to account `to` in equal steps. */
   const advance = (to: number, step: number): void => {
     for (; values.length < at.length && at[values.length]! < to; ) {
@@ -53,7 +60,7 @@ export function bernoulliCusum(
       if (raised === null && value >= limit) raised = { at: done + Math.ceil((limit - from) / step), zeroAfter };
     } else {
       if (raised !== null && value < limit) {
-        alarms.push({ ...raised, until: done + Math.floor((from - limit) / -step) });
+        close(raised, done + Math.floor((from - limit) / -step));
         raised = null;
       }
       if (value === 0) zeroAfter = to;
@@ -68,6 +75,6 @@ export function bernoulliCusum(
   }
   if (accounts > done) advance(accounts, keptStep);
   while (values.length < at.length) values.push(value);
-  if (raised !== null) alarms.push({ ...(raised as { at: number; zeroAfter: number }), until: accounts });
+  if (raised !== null) close(raised, accounts);
   return { value, zeroAfter, alarms, values };
 }

@@ -11,13 +11,13 @@ function plainly(sum: WatchSum, outcomes: readonly boolean[]) {
   const values = [value];
   const alarms: Alarm[] = [];
   outcomes.forEach((lost, i) => {
-    const before = value;
     value = Math.max(0, value + (lost ? sum.lostStep : sum.keptStep));
     values.push(value);
     if (value === 0) zeroAfter = i + 1;
     if (value >= sum.limit) {
-      if (before < sum.limit || alarms.length === 0) alarms.push({ at: i + 1, until: i + 1, zeroAfter });
-      else alarms[alarms.length - 1] = { ...alarms.at(-1)!, until: i + 1 };
+      const climb = alarms.at(-1);
+      if (climb?.zeroAfter === zeroAfter) alarms[alarms.length - 1] = { ...climb, until: i + 1 };
+      else alarms.push({ at: i + 1, until: i + 1, zeroAfter });
     }
   });
   return { values, alarms, zeroAfter };
