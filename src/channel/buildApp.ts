@@ -14,7 +14,7 @@ import { listenToSharedFiles } from './listeners/sharedFiles.ts';
 import { listenToShortcut } from './listeners/shortcut.ts';
 import { boltLogger } from './logging.ts';
 import { stillHereMessage } from './messages/plainMessages.ts';
-import { clientOptions, refusal, webClient } from './posting/webClient.ts';
+import { clientOptions, onceOnlyClient, refusal, webClient } from './posting/webClient.ts';
 import type { ChannelDeps } from './types.ts';
 import { takeDuePosts } from './weeklyPosts.ts';
 
@@ -91,7 +91,10 @@ export function buildApp(deps: ChannelDeps, inbound: Inbound): ChannelApp {
       } catch (error) {
         throw refusedToken(error);
       }
-      await deps.store.work(createHandler(deps, webClient(deps)), deps.concurrency ?? CONCURRENCY);
+      await deps.store.work(
+        createHandler(deps, webClient(deps), onceOnlyClient(deps)),
+        deps.concurrency ?? CONCURRENCY,
+      );
       ready = true;
     },
     async connect() {

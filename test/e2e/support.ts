@@ -36,6 +36,8 @@ export interface BotOptions {
   readonly maxUploadBytes?: number;
   readonly ackTimeoutMs?: number;
   readonly scopes?: readonly string[];
+  /** milliseconds since 1970 */
+  readonly now?: () => number;
 }
 
 function seeded(seed: number): () => number {
@@ -47,13 +49,14 @@ function seeded(seed: number): () => number {
 }
 
 export async function startBot(options: BotOptions = {}): Promise<Bot> {
+  const now = options.now ?? Date.now;
   const folder = await mkdtemp(join(tmpdir(), 'ebbline-e2e-'));
   const service = await startPracticeService({
     host: '127.0.0.1',
     signingSecret: SECRET,
     botToken: BOT_TOKEN,
     appToken: APP_TOKEN,
-    now: Date.now,
+    now,
     random: seeded(11),
     retryDelaysMs: [20, 40, 80],
     commands: ['/ebb'],
@@ -63,14 +66,14 @@ export async function startBot(options: BotOptions = {}): Promise<Bot> {
   });
   const lines: string[] = [];
   const log = pino({ level: 'debug' }, { write: (line: string) => void lines.push(line) });
-  const store = await openStore({ dataFolder: folder, now: Date.now, log, queue: { retrySeconds: 0, pollMs: 50 } });
+  const store = await openStore({ dataFolder: folder, now, log, queue: { retrySeconds: 0, pollMs: 50 } });
   const real = createAnswers({ clock: () => performance.now() });
   const answers = options.answers?.(real) ?? real;
   const deps = {
     store,
     answers,
     log,
-    now: Date.now,
+    now,
     random: seeded(3),
     slack: { botToken: BOT_TOKEN, apiUrl: service.apiUrl },
     maxUploadBytes: options.maxUploadBytes ?? 50_000_000,

@@ -11,6 +11,8 @@ import type { ChannelDeps } from '../types.ts';
 export interface Job {
   readonly deps: ChannelDeps;
   readonly client: WebClient;
+  /** tries each call once only: for posting */
+  readonly posting: WebClient;
   readonly rule: HostRule;
   readonly workspace: WorkspaceStore;
   readonly teamId: string;
@@ -21,7 +23,7 @@ export interface Job {
 }
 
 export function posterFor(job: Job, place: Place): Poster {
-  return poster(job.client, job.workspace, job.jobKey, place, job.again);
+  return poster(job.client, job.posting, job.workspace, job.jobKey, place, job.again);
 }
 
 const DAY_MS = 86_400_000;

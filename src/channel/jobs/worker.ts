@@ -24,7 +24,7 @@ export type Handler = (
  * Works the entries of the inbox. What may pass (the network, an overloaded service, a database that is away) is thrown, so that the
  * queue tries again; anything else is told in the thread at once, because trying again would fail again.
  */
-export function createHandler(deps: ChannelDeps, client: WebClient): Handler {
+export function createHandler(deps: ChannelDeps, client: WebClient, posting: WebClient): Handler {
   const rule = hostRule(deps.slack.apiUrl);
   const ordered = inOrder();
   return (entry) =>
@@ -34,6 +34,7 @@ export function createHandler(deps: ChannelDeps, client: WebClient): Handler {
       const job: Job = {
         deps,
         client,
+        posting,
         rule,
         workspace,
         teamId: entry.teamId,

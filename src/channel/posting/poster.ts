@@ -1,7 +1,7 @@
 import type { WebClient } from '@slack/web-api';
 import type { WorkspaceStore } from '../../store/types.ts';
 import type { Message } from '../messages/blocks.ts';
-import { refusal } from './webClient.ts';
+import { mayPass, refusal } from './webClient.ts';
 
 export interface Place {
   readonly channel: string;
@@ -35,11 +35,13 @@ const LOOKED_BACK = 200;
 const EVENT_TYPE = 'ebbline_post';
 
 /**
+ * @param posting a client that tries each call once only
  * @param again true when an earlier attempt may have been cut off between posting and remembering it: then every post is first looked for
  *              in its place, by a mark that each of them carries
  */
 export function poster(
   client: WebClient,
+  posting: WebClient,
   workspace: WorkspaceStore,
   jobKey: string,
   place: Place,
@@ -79,22 +81,34 @@ export function poster(
       await remember(step, already);
       return already;
     }
-    const sent = await client.chat.postMessage({
-      channel: place.channel,
-      ...(place.threadTs === null ? {} : { thread_ts: place.threadTs }),
-      text: message.text,
-      blocks: message.blocks,
-      metadata: { event_type: EVENT_TYPE, event_payload: { mark: markOf(step) } },
-      unfurl_links: false,
-      unfurl_media: false,
-    });
-    const ts = sent.ts ?? '';
+    const ts = await postOnce(step, message);
     await remember(step, ts);
     return ts;
   };
+
+  const postOnce = async (step: string, message: Message): Promise<string> => {
+    try {
+      const sent = await posting.chat.postMessage({
+        channel: place.channel,
+        ...(place.threadTs === null ? {} : { thread_ts: place.threadTs }),
+        text: message.text,
+        blocks: message.blocks,
+        metadata: { event_type: EVENT_TYPE, event_payload: { mark: markOf(step) } },
+        unfurl_links: false,
+        unfurl_media: false,
+      });
+      return sent.ts ?? '';
+    } catch (error) {
+      // The service may have taken the message and only its answer was lost.
+      const ts = mayPass(error) ? await found(step) : undefined;
+      if (ts === undefined) throw error;
+      return ts;
+    }
+  };
+
   return {
     place,
-    in: (other) => poster(client, workspace, jobKey, other, again),
+    in: (other) => poster(client, posting, workspace, jobKey, other, again),
     posted,
     remember,
     post,

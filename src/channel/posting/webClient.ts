@@ -26,6 +26,15 @@ export function webClient(deps: Pick<ChannelDeps, 'slack' | 'log'>): WebClient {
   return new WebClient(deps.slack.botToken, { ...clientOptions(deps), logger: boltLogger(deps.log) });
 }
 
+/** For posting only: a call whose answer was lost may have been carried out, so the client must not try it again by itself. */
+export function onceOnlyClient(deps: Pick<ChannelDeps, 'slack' | 'log'>): WebClient {
+  return new WebClient(deps.slack.botToken, {
+    ...clientOptions(deps),
+    retryConfig: { retries: 0 },
+    logger: boltLogger(deps.log),
+  });
+}
+
 /** The error code with which the service refused a call, or undefined for anything else. */
 export function refusal(error: unknown): string | undefined {
   return error instanceof WebAPIPlatformError ? String(error.data.error) : undefined;
