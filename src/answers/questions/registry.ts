@@ -6,6 +6,7 @@ type Loaders = { readonly [K in SideKind]?: () => Promise<AnswerSide<K>> };
 
 /** Every question by its kind, loaded when first asked: a verdict need not wait for the code of all the others. */
 const QUESTIONS: Loaders = {
+  spread: async () => (await import('./spread.ts')).answerSpread,
   revenue: async () => (await import('./revenue.ts')).answerRevenue,
   target: async () => (await import('./target.ts')).answerTarget,
   early: async () => (await import('./early.ts')).answerEarly,

@@ -130,7 +130,12 @@ export function words(
     return {
       ink: {
         texts: lines.map((one, i) =>
-          placed(one.replace(/ ·$/, ''), left, top + (i + 1) * size * LINE - size * 0.2, { color, weight, size, role }),
+          placed(one.replace(/\u00a0·$/, ''), left, top + (i + 1) * size * LINE - size * 0.2, {
+            color,
+            weight,
+            size,
+            role,
+          }),
         ),
       },
       bottom: top + lines.length * size * LINE,
@@ -142,7 +147,10 @@ function headPart(head: PlateHead): Part {
   const parts = [
     words(head.title, { size: TITLE_SIZE, bold: true, color: head.moved ? EMBER : INK, role: 'title' }),
     words(head.lead ?? '', { size: LEAD_SIZE, role: 'headline' }),
-    words((head.counted ?? []).filter((part) => part.trim() !== '').join(' · '), { color: QUIET, role: 'counted' }),
+    words((head.counted ?? []).filter((part) => part.trim() !== '').join('\u00a0· '), {
+      color: QUIET,
+      role: 'counted',
+    }),
   ];
   return stack([stack(parts, 4), ...(head.keys?.length ? [keysPart(head.keys)] : [])], 8);
 }
