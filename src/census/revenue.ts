@@ -1,7 +1,7 @@
 import { rowsOf } from '../accounts/sql.ts';
 import type { AccountTable } from '../accounts/types.ts';
 import { checkRequest } from './requestChecks.ts';
-import { currenciesSql, revenueSql } from './revenueSql.ts';
+import { amountGroupsSql, currenciesSql, revenueSql } from './revenueSql.ts';
 import { lastMaturedStart, tenurePoint } from './tenure.ts';
 import type { CensusRequest, CensusSubgroup } from './types.ts';
 
@@ -30,6 +30,8 @@ export interface RevenueCensus {
   readonly subgroups: readonly RevenueSubgroup[];
   /** currencies of the matured accounts with an amount, most first; null: none stated */
   readonly currencies: readonly { readonly currency: string | null; readonly accounts: number }[];
+  /** how uneven the amounts are: mean amount of each thousandth of the accounts, or of a sample of them */
+  readonly amounts: readonly { readonly amount: number; readonly accounts: number }[];
 }
 
 /**
@@ -42,6 +44,10 @@ export async function takeRevenue(table: AccountTable, request: CensusRequest): 
   const maturedUntil = lastMaturedStart(request.asOf, request.tenure, request.settleDays);
   const rows = await rowsOf(connection, revenueSql(table.table, request, table.report.firstStart, maturedUntil));
   const currencies = await rowsOf(connection, currenciesSql(table.table, request, maturedUntil));
+  const amounts = await rowsOf(
+    connection,
+    amountGroupsSql(table.table, request, maturedUntil, table.report.accounts),
+  );
   const subgroups = rows.map((row, at): RevenueSubgroup => {
     const number = (name: string): number => Number(row[name] ?? 0);
     const last = number('last_start');
@@ -69,5 +75,6 @@ export async function takeRevenue(table: AccountTable, request: CensusRequest): 
       currency: row.currency === null ? null : String(row.currency),
       accounts: Number(row.accounts),
     })),
+    amounts: amounts.map((row) => ({ amount: Number(row.amount), accounts: Number(row.accounts) })),
   };
 }

@@ -71,6 +71,25 @@ WITH points AS (
 SELECT subgroup, ${totals}, MIN(first_start) AS first_start, MAX(last_start) AS last_start FROM members GROUP BY subgroup ORDER BY subgroup`;
 }
 
+/** Most groups of amounts told apart, and most accounts looked at for them: enough for how uneven amounts are. */
+const GROUPS = 1_000;
+const SAMPLED_ABOVE = 100_000;
+
+/**
+ * How uneven the amounts of the matured accounts are: amount and accounts, in groups of about equal amounts, smallest first. A large table
+ * is sampled by the accounts' keys.
+ * @param accounts  in the table
+ */
+export function amountGroupsSql(table: string, request: CensusRequest, maturedUntil: Day, accounts: number): string {
+  const only = request.segment === undefined ? '' : ` AND segment = ${text(request.segment)}`;
+  const every = Math.max(1, Math.round(accounts / SAMPLED_ABOVE));
+  const sampled = every === 1 ? '' : ` AND key % ${every} = 0`;
+  return `SELECT CAST(SUM(amount) AS DOUBLE) / COUNT(*) AS amount, CAST(COUNT(*) AS INTEGER) AS accounts
+    FROM (SELECT amount, NTILE(${GROUPS}) OVER (ORDER BY amount) AS part FROM (
+      SELECT try_cast(amount AS DECIMAL(18, 4)) AS amount FROM ${table} WHERE amount >= 0 AND start_day <= ${maturedUntil}${only}${sampled}) WHERE amount IS NOT NULL)
+    GROUP BY part ORDER BY part`;
+}
+
 /** Currencies of the matured accounts that have an amount: currency and accounts, most first. */
 export function currenciesSql(table: string, request: CensusRequest, maturedUntil: Day): string {
   const only = request.segment === undefined ? '' : ` AND segment = ${text(request.segment)}`;

@@ -39,18 +39,22 @@ export type RevenueReading = Counted &
       }
   );
 
-/** Counts, charts and judges revenue churn in the subgroups that "has churn moved?" would use. */
+/**
+ * Counts, charts and judges revenue churn in the subgroups that "has churn moved?" would use.
+ * @param known  that census, when it has been taken already
+ */
 export async function readRevenue(
   table: AccountTable,
   asked: Scope,
   scope: ResolvedScope,
   resolved: ResolvedPlan,
   clock: () => number,
+  known?: Census,
 ): Promise<RevenueReading> {
   const { report } = table;
   const { plan, tenureOfAll } = resolved;
   const request = { tenure: plan.tenure, subgroupSize: plan.subgroupSize, view: 'start' as const, ...scope };
-  const census = await takeCensus(table, request);
+  const census = known ?? (await takeCensus(table, request));
   const revenue = await takeRevenue(table, request);
   const done: Counted = { census, plan, revenue, countedAt: clock() };
   const cautions = readCautions(report, scope.asOf);
@@ -61,7 +65,7 @@ export async function readRevenue(
   const points = revenue.subgroups.filter((subgroup) => subgroup.revenue > 0);
   const dates = points.map(({ firstStart, lastStart, asOf }) => ({ firstStart, lastStart, asOf }));
   const { baseline, caution } = chooseBaseline(asked, { ...census, subgroups: points });
-  const judgement = judgeRevenue(points, baseline.baselineLast);
+  const judgement = judgeRevenue(points, revenue.amounts, baseline.baselineLast);
   const amountsChange = points.some(({ contraction, expansion }) => contraction > 0 || expansion > 0);
   const context: VerdictContext & { tenure: string } = {
     tenure: tenureInWords(plan.tenure),

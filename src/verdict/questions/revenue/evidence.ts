@@ -90,7 +90,7 @@ export function trustSentences({ finding, trust, series }: RevenueJudgement, con
         ? ''
         : `, and a chart of this length reads as moved in about ${Math.max(1, Math.round(trust.falseVerdictChance * 100))} of 100 cases`;
     sentences.push(
-      `With nothing changed, this chart raises a false flag about once in ${count(trust.falseAlarmEvery)} points${chance}. That holds for points that scatter evenly around their level and do not hang together.`,
+      `With nothing changed, this chart raises a false flag about once in ${count(trust.falseAlarmEvery)} points${chance}. Both are worked out for amounts as uneven as these.`,
     );
   }
   return sentences;

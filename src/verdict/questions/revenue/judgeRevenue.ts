@@ -1,6 +1,7 @@
 import { type IndividualsChart, individualsChart } from '../../../charts/kinds/individualsChart.ts';
 import { judgeSeries, type SeriesJudgement } from '../../../charts/series/judgeSeries.ts';
-import { lostRatios } from '../../../charts/series/movingRange.ts';
+import { type AmountGroup, lostRatioShape } from '../../../charts/series/lostRatioShape.ts';
+import { lostRatios } from '../../../charts/series/lostRatios.ts';
 import { LEAST_POINTS } from '../../judgement.ts';
 import { readSignals } from '../../signals.ts';
 import type { Signal, Trust } from '../../types.ts';
@@ -39,9 +40,14 @@ const NO_TRUST: Trust = {
 /**
  * Charts the lost share of revenue of each subgroup and judges it as a series of measured ratios.
  * @param points        subgroups in time order, each with revenue > 0
+ * @param amounts       of all accounts: how uneven they are decides how the shares scatter by chance
  * @param baselineLast  last baseline point, when the asker fixed it
  */
-export function judgeRevenue(points: readonly RevenuePoint[], baselineLast?: number): RevenueJudgement {
+export function judgeRevenue(
+  points: readonly RevenuePoint[],
+  amounts: readonly AmountGroup[],
+  baselineLast?: number,
+): RevenueJudgement {
   if (points.length === 0)
     return { finding: 'too-few-points', chart: null, series: null, signals: [], trust: NO_TRUST };
   const values = points.map(({ lostRevenue, revenue, accounts, lost }) => ({
@@ -51,7 +57,7 @@ export function judgeRevenue(points: readonly RevenuePoint[], baselineLast?: num
   }));
   const fixed = baselineLast === undefined ? {} : { baselineLast };
   const series = judgeSeries({
-    family: lostRatios,
+    family: lostRatios(shapeOf(points, amounts)),
     values: values.map(({ value }) => value),
     least: LEAST_POINTS,
     ...fixed,
@@ -81,4 +87,11 @@ export function judgeRevenue(points: readonly RevenuePoint[], baselineLast?: num
       },
     },
   };
+}
+
+/** Null when nobody or everybody was lost, where there is nothing to simulate. */
+function shapeOf(points: readonly RevenuePoint[], amounts: readonly AmountGroup[]): Float64Array | null {
+  const accounts = points.reduce((sum, point) => sum + point.accounts, 0);
+  const lost = points.reduce((sum, point) => sum + point.lost, 0);
+  return lostRatioShape({ amounts, size: points[0]?.accounts ?? 1, rate: lost / accounts });
 }
