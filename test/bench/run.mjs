@@ -2,6 +2,7 @@
 import { fileURLToPath } from 'node:url';
 import { createServer } from 'vite';
 import { commandLineBench } from './commandLine.mjs';
+import { runLengthBench } from './runLength.mjs';
 
 const ms = (value) => `${Math.round(value)} ms`;
 
@@ -53,5 +54,15 @@ if (only === undefined || only === 'questions') {
   } of times)
     console.log(
       `  ${name.padEnd(18)} ${ms(small).padStart(9)} ${ms(large).padStart(9)}   ten times the accounts take ${(large / small).toFixed(1)} times as long`,
+    );
+}
+
+if (only === undefined || only === 'run-length') {
+  console.log(
+    'exact run length of tests 1, 2, 5, 6, processor time: first in a fresh process, again, and against simulating it to 1 %',
+  );
+  for (const { size, rate, mean, firstMs, worstMs, againMs, ratio } of runLengthBench())
+    console.log(
+      `  n = ${String(size).padEnd(5)} p = ${String(rate).padEnd(5)} mean ${mean.toFixed(2).padStart(7)}: first ${ms(firstMs)} (worst ${ms(worstMs)}; wanted: under 150 ms), again ${againMs.toFixed(2)} ms, simulation ${Math.round(ratio)} times as long`,
     );
 }
