@@ -44,3 +44,20 @@ export function checkTenure(tenure: Tenure): void {
     );
   }
 }
+
+/** The most days a tenure can take: 92 for three months, which may be 90. */
+export function longestDays(tenure: Tenure): number {
+  if (tenure.unit !== 'month') return tenurePoint(0, tenure);
+  // Four years hold every length there is, but for centuries without a leap day, which are shorter.
+  let longest = 0;
+  for (let start = 0; start < 1461; start++) longest = Math.max(longest, addMonths(start, tenure.count) - start);
+  return longest;
+}
+
+/** A tenure in months, calendar months as they are and days by the mean length of a month. */
+export function tenureMonthsOf(tenure: Tenure): number {
+  return tenure.unit === 'month' ? tenure.count : tenurePoint(0, tenure) / MEAN_MONTH_DAYS;
+}
+
+/** 365.25 / 12. */
+const MEAN_MONTH_DAYS = 30.4375;

@@ -1,0 +1,37 @@
+import type { GroupDepartures } from '../../census/departures.ts';
+import { kaplanMeier } from '../../charts/survival/kaplanMeier.ts';
+import { type LogRank, logRank } from '../../charts/survival/logRank.ts';
+import { riskSets } from '../../charts/survival/riskSets.ts';
+import { survivalInterval } from '../../charts/survival/survivalInterval.ts';
+import type { GroupPace } from './planFindings.ts';
+
+/**
+ * How fast each group leaves, and whether they differ by more than chance.
+ * @param days  the tenure point in days, its longest length
+ */
+export function groupPaces(
+  groups: readonly GroupDepartures[],
+  days: number,
+): { readonly groups: readonly GroupPace[]; readonly logRank: LogRank | null; readonly earlyLogRank: LogRank | null } {
+  const lists = groups.map(({ departures }) => departures);
+  const test = logRank(lists);
+  return {
+    groups: groups.map(({ segment, accounts, lost, departures }, i) => {
+      const last = kaplanMeier(riskSets(departures))
+        .filter(({ time }) => time <= days)
+        .at(-1);
+      const limits = last === undefined ? null : survivalInterval(last);
+      return {
+        segment,
+        accounts,
+        lost,
+        expected: test?.expected[i] ?? null,
+        survival: last?.survival ?? 1,
+        low: limits?.low ?? null,
+        high: limits?.high ?? null,
+      };
+    }),
+    logRank: test,
+    earlyLogRank: logRank(lists, 'early'),
+  };
+}
