@@ -54,6 +54,8 @@ describe('the manifest', () => {
       'app.shortcut': ['commands'],
       'chat.postMessage': ['chat:write'],
       'files.info': ['files:read'],
+      'users.info': ['users:read'],
+      'conversations.history': ['channels:history', 'groups:history', 'im:history'],
       'files.getUploadURLExternal': ['files:write'],
     };
     const needed = Object.entries(needs).flatMap(([call, scopes]) => (source.includes(call) ? scopes : []));

@@ -16,7 +16,7 @@ import {
 } from '../../src/channel/messages/plainMessages.ts';
 import { readingMessage, readMessage } from '../../src/channel/messages/readMessage.ts';
 import { code, inert } from '../../src/channel/messages/text.ts';
-import { verdictMessage } from '../../src/channel/messages/verdictMessage.ts';
+import { saidBy, verdictMessage } from '../../src/channel/messages/verdictMessage.ts';
 import { EbbError } from '../../src/errors.ts';
 import { checkMessageBlocks, checkView } from '../../src/practice/wire/checkBlocks.ts';
 import { LIMITS } from '../../src/practice/wire/limits.ts';
@@ -112,7 +112,7 @@ describe('messages keep within the platform’s limits and let no mark-up throug
     });
     fc.assert(
       fc.property(answer, fc.option(words), fc.boolean(), written, (one, asked, pictured, again) =>
-        isPostable(verdictMessage(one, asked, pictured ? 'F0123456789' : null, again || 'has churn moved?')),
+        isPostable(verdictMessage(saidBy(one), asked, pictured ? 'F0123456789' : null, again || 'has churn moved?')),
       ),
       { numRuns: 150 },
     );
@@ -167,7 +167,7 @@ describe('a long verdict', () => {
   const posted = (evidence: string[], cautions: string[]) => {
     const verdict = { headline: 'Churn is steady.', evidence, cautions, next: ['next 1.'] };
     const { blocks } = verdictMessage(
-      { verdict, picture: null, signals: [{ words: 'one flag' }] } as unknown as Answer,
+      { ...verdict, picture: null, signals: [{ words: 'one flag' }] },
       null,
       null,
       'has churn moved?',

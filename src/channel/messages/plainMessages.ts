@@ -7,8 +7,19 @@ import { shownLines, type UnderstoodWords } from './verdictMessage.ts';
 const EXAMPLES = [
   '“has churn moved?”',
   '“has churn moved at 6 months for the annual plan since January 2025?”',
-  '“has churn moved in subgroups of 120, baseline 30?”',
   '“what did you read?”',
+];
+/** The questions around the verdict, each with what it answers. */
+const AROUND = [
+  '“where did churn move?”: which groups, and was it only the mix',
+  '“plan”: at which age, in which size, and how long until a verdict',
+  '“early”: account by account, without waiting for a full point',
+  '“revenue”: the same for money',
+  '“reconcile 14.2 %”: which calculation gives a reported figure',
+  '“worth”: how long an account lasts, and what it brings',
+  '“target 5 %”: is a target met beyond chance',
+  '“spread”: do the points vary more than chance allows',
+  '“explain”: how the last verdict was reached, with its numbers',
 ];
 
 /** What can be asked, in a few lines. */
@@ -17,6 +28,8 @@ export function helpMessage(words?: UnderstoodWords): Message {
   const lines = [
     'The export is a CSV with an id, a start date and an end date for each account; the end is empty while it is still a customer.',
     `Ask by mentioning me or with ${COMMAND}: ${EXAMPLES.join(', ')}.`,
+    `Around it: ${AROUND.join('; ')}.`,
+    'By itself, once a week: “every Monday at 9:00”; “when do you post?”; “stop the weekly post”.',
     'The answer says whether churn really moved or only wiggled, since about when, how much, and how big a change could have been missed.',
     'An answer says that something changed, not why. For pay, forecasts, investors or auditors, your own written definitions and your finance and legal people decide.',
   ];
