@@ -72,6 +72,8 @@ export interface Chart {
   /** n when every subgroup has the same size, else null */
   readonly subgroupSize: number | null;
   readonly center: number;
+  /** ewma: weight of the newest point, and the limits in sigmas of the smoothed value */
+  readonly smoothing?: { readonly lambda: number; readonly width: number };
   /** g and t: mean gap of the baseline, where center is the median */
   readonly mean?: number;
   readonly baseline: Baseline;

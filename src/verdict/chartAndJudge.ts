@@ -1,4 +1,5 @@
 import { recommendedBaseline } from '../charts/baseline.ts';
+import { ewmaChart } from '../charts/kinds/ewmaChart.ts';
 import { pChart } from '../charts/kinds/pChart.ts';
 import { pPrimeChart } from '../charts/kinds/pPrimeChart.ts';
 import { LEAST_BEFORE } from '../charts/standing/lastBlock.ts';
@@ -24,7 +25,7 @@ export interface JudgedChart {
   readonly movedChance: number | null;
 }
 
-const KINDS = { p: pChart, 'p-prime': pPrimeChart } as const;
+const KINDS = { p: pChart, 'p-prime': pPrimeChart, ewma: ewmaChart } as const;
 
 /** The kinds that chart ready counts per subgroup and are judged with the binomial. */
 export type SubgroupKind = keyof typeof KINDS;
@@ -66,7 +67,11 @@ export function chartAndJudge(request: ChartRequest): JudgedChart {
   }
 
   function chartOf(of: SubgroupKind, baselineLast: number): Chart {
-    return KINDS[of](counts, { baselineLast: Math.min(baselineLast, counts.length), excluded });
+    const options = { baselineLast: Math.min(baselineLast, counts.length), excluded };
+    // Where the points clearly vary more than chance makes them, the smoothed share is held to that spread too.
+    return of === 'ewma'
+      ? ewmaChart(counts, { ...options, widened: isOverdispersed(pChart(counts, options)) })
+      : KINDS[of](counts, options);
   }
 }
 

@@ -100,6 +100,7 @@ export function judge(chart: Chart, options: JudgeOptions = {}): Judgement {
     baselineLast: chart.baseline.last,
     excluded: chart.baseline.excluded,
     tests,
+    ...(chart.smoothing ? { smoothing: chart.smoothing } : {}),
   };
   const newest = counts.length;
   const trial = chart.baseline.last >= newest;
@@ -140,7 +141,7 @@ export function judge(chart: Chart, options: JudgeOptions = {}): Judgement {
   // A p' chart carries the spread in its limits and its threshold. On a p chart that somebody asked for, every log likelihood ratio shrinks
   // by it (quasi-likelihood; McCullagh P and Nelder JA, Generalized Linear Models, 1989, section 4.5, section from memory).
   const excess = spread && spread.pValue < OVERDISPERSED ? Math.max(1, spread.ratio) : 1;
-  const prime = chart.kind === 'p-prime';
+  const prime = chart.kind === 'p-prime' || (chart.kind === 'ewma' && chart.sigmaZ !== 1);
   const shrink = prime ? 1 : excess;
   const design: BlockDesign = prime ? { ...binomialDesign, correlation: correlationOf(excess, used) } : binomialDesign;
 

@@ -1,9 +1,10 @@
 import type { Standing } from '../charts/standing/standing.ts';
 import { isShiftTest, nelsonTests, SHIFT_TESTS } from '../charts/tests/nelsonTests.ts';
 import { TEST_SPAN } from '../charts/tests/patterns.ts';
+import { smoothedFlags } from '../charts/tests/smoothedFlags.ts';
 import type { Chart, ShiftTest } from '../charts/types.ts';
 import type { Signal, SignalState } from './types.ts';
-import { testWords, withinLimits } from './words/testWords.ts';
+import { smoothedWords, testWords, withinLimits } from './words/testWords.ts';
 
 /** A flag is new while it was completed within the longest shift pattern's span of the newest point. */
 const NEW_WITHIN = TEST_SPAN[2];
@@ -28,7 +29,9 @@ export function readSignals(
     sigma,
     ...(edges ? { edges } : {}),
   }));
-  const raised = nelsonTests(values).filter(({ test }) => !isShiftTest(test) || tests.includes(test));
+  const raised = chart.smoothing
+    ? smoothedFlags(chart.points, chart.center, chart.smoothing.width)
+    : nelsonTests(values).filter(({ test }) => !isShiftTest(test) || tests.includes(test));
   return raised.map((episode) => {
     let state: SignalState;
     const recent = newest - episode.until < NEW_WITHIN;
@@ -40,6 +43,7 @@ export function readSignals(
       else if (moved === null && !explained && inBlock && recent) state = 'watching';
       else state = 'passed';
     }
-    return { ...episode, state, words: testWords(episode, withinLimits(chart.kind)) };
+    const words = chart.smoothing ? smoothedWords(episode) : testWords(episode, withinLimits(chart.kind));
+    return { ...episode, state, words };
   });
 }

@@ -1,5 +1,7 @@
 import { type ChartRunLength, chartRunLength, type RunDesign } from '../charts/runLength/chartRunLength.ts';
 import { estimatedRunLength } from '../charts/runLength/estimatedRunLength.ts';
+import type { SimulationSize } from '../charts/runLength/simulatedRunLength.ts';
+import { smoothedRunLength } from '../charts/runLength/smoothedRunLength.ts';
 import type { Chart, ShiftTest } from '../charts/types.ts';
 import type { Delay, Trust } from './types.ts';
 
@@ -33,18 +35,23 @@ export function runLengthTrust(
   const { baseline, center, points, sigmaZ } = chart;
   const sizes = points.map((point) => point.accounts);
   const design: RunDesign = { sizes, center, sigmaZ, correlation, tests };
-  const { method, length } = chartRunLength(design, center);
+  const { smoothing } = chart;
+  const runLength = (rate: number, simulation?: SimulationSize): ChartRunLength =>
+    smoothing
+      ? { method: 'simulated', length: smoothedRunLength(sizes, { ...design, rate }, smoothing, simulation) }
+      : chartRunLength(design, rate, simulation);
+  const { method, length } = runLength(center);
   const size = sizes.reduce((sum, n) => sum + n, 0) / sizes.length;
   const delay = (factor: number): Delay | null =>
     center * factor >= 1
       ? null
-      : delayOf(chartRunLength(design, center * factor, DELAY_RUNS), center * factor, size, accountsPerWeek);
-  const estimated = estimatedRunLength(design, center, baseline.accounts);
+      : delayOf(runLength(center * factor, DELAY_RUNS), center * factor, size, accountsPerWeek);
+  const estimated = smoothing ? null : estimatedRunLength(design, center, baseline.accounts);
   return {
     falseAlarmEvery: length?.mean ?? null,
     method,
     standardError: length?.standardError ?? null,
-    settings: { n: chart.subgroupSize, p: center, tests, sigmaZ },
+    settings: { n: chart.subgroupSize, p: center, tests: smoothing ? [1] : tests, sigmaZ },
     runLength: length && { mean: length.mean!, median: length.median, p10: length.p10, p90: length.p90 },
     delay: { rise: delay(TOLD_MOVES.rise), fall: delay(TOLD_MOVES.fall) },
     estimated: estimated && {

@@ -34,13 +34,15 @@ export interface EwmaChartOptions extends PChartOptions {
  * Source: Roberts SW, Technometrics 1:239-250, 1959 (reference from memory); Lucas and Saccucci 1990.
  */
 export function ewmaChart(counts: readonly SubgroupCount[], options: EwmaChartOptions = {}): Chart {
-  const { lambda, width } = options.smoothing ?? USUAL_SMOOTHING;
+  const smoothing = options.smoothing ?? USUAL_SMOOTHING;
+  const { lambda, width } = smoothing;
   const plain = options.widened ? pPrimeChart(counts, options) : pChart(counts, options);
   const smooth = smoother(lambda, plain.center);
   return {
     ...plain,
     kind: 'ewma',
-    points: plain.points.map((point) => {
+    smoothing,
+    points: plain.points.map(({ exactLower: _lower, exactUpper: _upper, ...point }) => {
       const { value, sigma } = smooth(point.value, point.sigma);
       return {
         ...point,

@@ -74,7 +74,8 @@ export function simulatedRunLength(
   return summary(lengths);
 }
 
-function summary(lengths: readonly number[]): RunLength {
+/** What the lengths of some simulated runs come to. */
+export function summary(lengths: readonly number[]): RunLength {
   const runs = lengths.length;
   const mean = lengths.reduce((sum, length) => sum + length, 0) / runs;
   const squares = lengths.reduce((sum, length) => sum + (length - mean) ** 2, 0);

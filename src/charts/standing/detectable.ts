@@ -72,7 +72,12 @@ export function expectedMove(rate: number, limit: 0 | 1, wanted: number): number
 }
 
 /** Smallest move from `rate` towards `limit` that is seen, looked for around `guess`; null when not even the limit is. */
-export function smallestMove(rate: number, limit: 0 | 1, guess: number, seen: (moved: number) => boolean): number | null {
+export function smallestMove(
+  rate: number,
+  limit: 0 | 1,
+  guess: number,
+  seen: (moved: number) => boolean,
+): number | null {
   const move = (size: number): number => (limit === 1 ? Math.min(1, rate + size) : Math.max(0, rate - size));
   const reach = Math.abs(limit - rate);
   let enough = Math.min(reach, 1.3 * Math.abs(guess - rate));

@@ -1,3 +1,4 @@
+import type { Smoothing } from '../kinds/ewmaChart.ts';
 import { maxLogLikelihood } from '../logLikelihood.ts';
 import type { ShiftTest } from '../types.ts';
 
@@ -26,6 +27,8 @@ export interface BlockDesign {
    * every history, real or simulated, estimates its own sigmaZ and dispersion from its baseline, as the chart does.
    */
   readonly correlation?: number;
+  /** given for an EWMA chart: flags are raised by the smoothed share, and no test counts */
+  readonly smoothing?: Smoothing;
   /** the tests whose flags count; all that speak about a shift when absent */
   readonly tests?: readonly ShiftTest[];
 }

@@ -1,7 +1,6 @@
 import { sigmaOfZ } from '../checks/sigmaOfZ.ts';
 import { SHIFT_TESTS } from '../tests/nelsonTests.ts';
-import { PatternMachine, patternMask } from '../tests/patterns.ts';
-import { moveOf, zoneOf } from '../tests/zone.ts';
+import { FLAG_ABOVE, FLAG_BELOW, patternFlags, smoothFlags } from './flagMaker.ts';
 import { type BlockDesign, type LastBlock, lastBlockFinder } from './lastBlock.ts';
 
 /** One direction's part of the question "does a flag stand?". */
@@ -31,9 +30,7 @@ const BINOMIAL = { sigmaZ: 1, dispersion: 1 } as const;
 export function standingJudge(design: BlockDesign): (lost: ArrayLike<number>) => Standing {
   const { accounts, baselineLast, excluded } = design;
   const findBlocks = lastBlockFinder(design);
-  const machine = new PatternMachine();
-  const flagsAbove = patternMask(design.tests ?? SHIFT_TESTS, 'above');
-  const flagsBelow = patternMask(design.tests ?? SHIFT_TESTS, 'below');
+  const maker = design.smoothing ? smoothFlags(design.smoothing) : patternFlags(design.tests ?? SHIFT_TESTS);
   const left = new Set(excluded);
   const count = accounts.length;
   const judgedFrom = baselineLast >= count ? 0 : baselineLast;
@@ -52,21 +49,15 @@ export function standingJudge(design: BlockDesign): (lost: ArrayLike<number>) =>
     const { sigmaZ, dispersion } =
       design.correlation === undefined ? BINOMIAL : excessSpread(lost, center, binomialSpread);
     const spread = binomialSpread * sigmaZ;
-    machine.reset();
+    maker.begin(center, spread);
     let lastAbove = 0;
     let lastBelow = 0;
-    let previous = Number.NaN;
     for (let i = 0; i < count; i++) {
       const size = accounts[i]!;
-      const value = lost[i]! / size;
-      const holds = machine.push(
-        zoneOf(value, center, spread / Math.sqrt(size)),
-        i === 0 ? 0 : moveOf(previous, value),
-      );
-      previous = value;
+      const flags = maker.push(lost[i]! / size, size);
       if (i < judgedFrom) continue;
-      if ((holds & flagsAbove) !== 0) lastAbove = i + 1;
-      if ((holds & flagsBelow) !== 0) lastBelow = i + 1;
+      if ((flags & FLAG_ABOVE) !== 0) lastAbove = i + 1;
+      if ((flags & FLAG_BELOW) !== 0) lastBelow = i + 1;
     }
     const { above, below } = findBlocks(lost);
     return {

@@ -39,6 +39,12 @@ export function testWords(
   }
 }
 
+/** A flag of an EWMA chart in words. */
+export function smoothedWords({ side, point, until }: Pick<TestEpisode, 'side' | 'point' | 'until'>): string {
+  const lasted = until > point ? `for ${numberWord(until - point + 1)} points ` : '';
+  return `the smoothed share ${lasted}${side === 'above' ? 'above' : 'below'} what chance allows`;
+}
+
 const SHIFT_IN_WORDS: Readonly<Record<ShiftTest, string>> = {
   1: 'one point beyond three sigma',
   2: 'nine in a row on one side',
