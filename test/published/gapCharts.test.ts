@@ -1,9 +1,10 @@
 import { describe, expect, it } from 'vitest';
-import { edgesByPower, fromPower, toPower } from '../../src/charts/kinds/gapsByPower.ts';
+import { backToGaps, fromPower, toPower } from '../../src/charts/kinds/gapsByPower.ts';
 import { gChart } from '../../src/charts/kinds/gChart.ts';
 import { exponentialEdges } from '../../src/charts/series/exponential.ts';
 import { geometricEdges } from '../../src/charts/series/geometric.ts';
 import { movingRangeLevel } from '../../src/charts/series/normal.ts';
+import { symmetricEdges } from '../../src/charts/tests/zoneEdges.ts';
 import { checkValue, checkValues } from './checkValues.ts';
 
 interface Geometric {
@@ -90,7 +91,7 @@ describe('t chart', () => {
       expect(level.sigma * 1.128).toBeCloseTo(valves.expected.mrbar, 5);
       expect(level.mean + 3 * level.sigma).toBeCloseTo(valves.expected.ucl, 5);
       expect(level.mean - 3 * level.sigma).toBeCloseTo(valves.expected.lcl, 5);
-      const edges = edgesByPower(valves.inputs.x, power)!;
+      const edges = backToGaps(symmetricEdges(level.mean, level.sigma), power);
       expect(edges.center).toBeCloseTo(valves.expected.center_back, 4);
       expect(edges.above[2]).toBeCloseTo(valves.expected.ucl_back, 3);
       expect(edges.below[2]).toBe(valves.expected.lcl_back);

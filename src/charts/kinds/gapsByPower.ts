@@ -1,5 +1,4 @@
-import { movingRangeLevel } from '../series/normal.ts';
-import { symmetricEdges, type ZoneEdges } from '../tests/zoneEdges.ts';
+import type { ZoneEdges } from '../tests/zoneEdges.ts';
 
 /** Exponential times through this power scatter about normally. Often written 0.2777. */
 export const NELSON_POWER = 1 / 3.6;
@@ -15,19 +14,12 @@ export function fromPower(transformed: number, power = NELSON_POWER): number {
 }
 
 /**
- * Centre line and zones of gaps from the spread they really have: an individuals chart on gap^(1/3.6), read back. For gaps that clearly
- * scatter more than the exponential or geometric distribution allows, as Laney's chart is for counts.
- * @param gaps  two or more numbers >= 0 in time order
- * @returns     null when all are equal
+ * Centre line and zones on the power scale, read back as gaps. With the level of an individuals chart on gap^(1/3.6) they come from the
+ * spread the gaps really have: for gaps that clearly scatter more than the exponential or geometric distribution allows, as Laney's chart
+ * is for counts.
  * Source: Nelson LS, A control chart for parts-per-million nonconforming items, Journal of Quality Technology 26(3):239-240, 1994 (formula
- * seen in a secondary source); sigma = average moving range / 1.128, NIST/SEMATECH e-Handbook, section 6.3.2.2.
+ * seen in a secondary source).
  */
-export function edgesByPower(gaps: readonly number[], power = NELSON_POWER): ZoneEdges | null {
-  const level = movingRangeLevel(toPower(gaps, power));
-  return level && backToGaps(symmetricEdges(level.mean, level.sigma), power);
-}
-
-/** Zone ends read back from the power scale. */
 export function backToGaps({ center, above, below }: ZoneEdges, power = NELSON_POWER): ZoneEdges {
   const back = (value: number): number => fromPower(value, power);
   return {

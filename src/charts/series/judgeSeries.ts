@@ -4,6 +4,7 @@ import { LEAST_BEFORE } from '../standing/lastBlock.ts';
 import type { Standing } from '../standing/standing.ts';
 import { LEAST_RATIO, type Threshold } from '../standing/threshold.ts';
 import type { ZoneEdges } from '../tests/zoneEdges.ts';
+import type { TestNumber } from '../types.ts';
 import { type SeriesChecks, seriesChecks } from './checks.ts';
 import { type DetectableMoves, detectableMoves } from './detectable.ts';
 import type { SeriesFamily, SeriesLevel } from './family.ts';
@@ -21,6 +22,8 @@ export interface SeriesRequest {
   /** last baseline value, when the asker fixed it */
   readonly baselineLast?: number;
   readonly excluded?: readonly number[];
+  /** the tests whose flags count; all that speak about a shift when absent */
+  readonly tests?: readonly TestNumber[];
   /** fewest values on which anything is judged */
   readonly least: number;
 }
@@ -81,11 +84,16 @@ export function judgeSeries(request: SeriesRequest): SeriesJudgement {
 }
 
 function judgeWith(request: SeriesRequest, asked: number, stepProven: boolean): SeriesJudgement {
-  const { family, values, open = 0, excluded = [], least } = request;
+  const { family, values, open = 0, excluded = [], least, tests } = request;
   const count = values.length;
   const baselineLast = Math.min(asked, count);
   const trial = baselineLast >= count;
-  const design: SeriesDesign = { family, baselineLast: trial ? Number.POSITIVE_INFINITY : baselineLast, excluded };
+  const design: SeriesDesign = {
+    family,
+    baselineLast: trial ? Number.POSITIVE_INFINITY : baselineLast,
+    excluded,
+    ...(tests ? { tests } : {}),
+  };
   const history = { values, count, open: family.openEnded ? open : 0 };
   const level = baselineLevel(design, history, new Float64Array(count));
   if (level === null) return { kind: 'no-level' };
@@ -127,7 +135,7 @@ function judgeWith(request: SeriesRequest, asked: number, stepProven: boolean): 
     standing,
     threshold,
     start: moved && !unsteady ? seriesStart(design, history, level, moved) : null,
-    falseAlarm: seriesRunLength(family, level),
+    falseAlarm: seriesRunLength(family, level, level, tests),
     wouldSee: detectableMoves(design, history, level, wouldSeeFrom, calibrated.ratio * shrink, WOULD_SEE_CHANCE),
     wouldSeeFrom,
     checks,

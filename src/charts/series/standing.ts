@@ -4,6 +4,7 @@ import { SHIFT_TESTS } from '../tests/nelsonTests.ts';
 import { PatternMachine, patternMask } from '../tests/patterns.ts';
 import { moveOf } from '../tests/zone.ts';
 import { zoneBetween } from '../tests/zoneEdges.ts';
+import type { TestNumber } from '../types.ts';
 import type { SeriesFamily, SeriesLevel } from './family.ts';
 import type { SeriesHistory } from './histories.ts';
 
@@ -14,10 +15,9 @@ export interface SeriesDesign {
   readonly baselineLast: number;
   /** values of the baseline left out by decision, numbered from 1 */
   readonly excluded: readonly number[];
+  /** the tests whose flags count; all that speak about a shift when absent */
+  readonly tests?: readonly TestNumber[];
 }
-
-const ABOVE = patternMask(SHIFT_TESTS, 'above');
-const BELOW = patternMask(SHIFT_TESTS, 'below');
 
 /**
  * An unfinished gap is a point once it is longer than the centre line: then it can only lie above. Until then it could end on either
@@ -49,6 +49,8 @@ export function baselineLevel(
 export function seriesJudge(design: SeriesDesign, most: number): (history: SeriesHistory) => Standing {
   const { family, baselineLast } = design;
   const machine = new PatternMachine();
+  const flagsAbove = patternMask(design.tests ?? SHIFT_TESTS, 'above');
+  const flagsBelow = patternMask(design.tests ?? SHIFT_TESTS, 'below');
   const scratch = new Float64Array(most);
 
   return (history) => {
@@ -68,8 +70,8 @@ export function seriesJudge(design: SeriesDesign, most: number): (history: Serie
       const holds = machine.push(zoneBetween(value, edges), i === 0 ? 0 : moveOf(previous, value));
       previous = value;
       if (i < judgedFrom) continue;
-      if ((holds & ABOVE) !== 0) lastAbove = i + 1;
-      if ((holds & BELOW) !== 0) lastBelow = i + 1;
+      if ((holds & flagsAbove) !== 0) lastAbove = i + 1;
+      if ((holds & flagsBelow) !== 0) lastBelow = i + 1;
     }
     const { above, below } = lastBlocks(design, history, level, hasOpenPoint);
     return {

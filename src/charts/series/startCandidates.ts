@@ -3,7 +3,7 @@ import { LEAST_BEFORE } from '../standing/lastBlock.ts';
 import { CALIBRATED_AT, CANDIDATE_COVERAGE, type StartCandidates } from '../standing/startCandidates.ts';
 import type { SeriesLevel } from './family.ts';
 import { type SeriesHistory, simulateSeries } from './histories.ts';
-import type { SeriesDesign } from './standing.ts';
+import { isOpenPoint, type SeriesDesign } from './standing.ts';
 import { longestLike, stretchesLike } from './stretches.ts';
 
 export interface SeriesStart extends StartCandidates {
@@ -49,7 +49,7 @@ export function seriesStart(
   };
 }
 
-/** Log likelihood ratio of a step at every start against none, both levels estimated; the open gap alone may be the moved stretch. */
+/** Log likelihood ratio of a step at every start against none, both levels estimated; the open gap alone may be the moved stretch where it is a point. */
 function profile(
   { family, baselineLast, excluded }: SeriesDesign,
   { values, count, open }: SeriesHistory,
@@ -66,6 +66,7 @@ function profile(
     allSum += values[i]!;
   }
   const whole = family.maxLogLikelihood(allCount, allSum, level);
+  const { center } = family.edges(level);
   const ratios = new Array<number>(count + 1).fill(Number.NEGATIVE_INFINITY);
   let best = Number.NEGATIVE_INFINITY;
   let first = Math.max(1, count);
@@ -73,7 +74,7 @@ function profile(
   let after = level;
   let n = 0;
   let sum = open;
-  for (let start = open > 0 ? count : count - 1; start >= earliest; start--) {
+  for (let start = isOpenPoint(open, center) ? count : count - 1; start >= earliest; start--) {
     if (start < count) {
       if (!isUsed(start)) continue;
       n++;
