@@ -31,6 +31,8 @@ export interface Columns {
 /** What the sample says about the values of one column; shares are fractions of the values that are not empty. */
 interface Content {
   readonly filled: number;
+  /** values that are there as numbers: "0" is no date, and an amount all the same */
+  readonly written: number;
   readonly rows: number;
   readonly dates: number;
   readonly numbers: number;
@@ -43,11 +45,15 @@ function contentOf(layout: Layout, column: number): Content {
   let filled = 0;
   let dates = 0;
   let numbers = 0;
+  let zeros = 0;
   const distinct = new Set<string>();
   for (const record of layout.sample) {
     const value = record.fields[column] ?? '';
     const readings: DateReadings = dateReadings(value);
-    if (readings.kind === 'empty') continue;
+    if (readings.kind === 'empty') {
+      if (NUMBER.test(value)) zeros++;
+      continue;
+    }
     filled++;
     distinct.add(value);
     if (readings.kind !== 'unreadable') dates++;
@@ -56,9 +62,10 @@ function contentOf(layout: Layout, column: number): Content {
   const rows = layout.sample.length;
   return {
     filled,
+    written: filled + zeros,
     rows,
     dates: dates / Math.max(1, filled),
-    numbers: numbers / Math.max(1, filled),
+    numbers: (numbers + zeros) / Math.max(1, filled + zeros),
     distinct: distinct.size / Math.max(1, filled),
   };
 }
@@ -79,7 +86,7 @@ const WANTED: Readonly<Record<ColumnRole | 'status' | 'flag', Wanted>> = {
     words: segmentWords,
     content: (c) => (c.filled > 0 && c.dates < 0.5 && c.numbers < 0.9 && (c.distinct <= 0.5 || c.rows < 20) ? 1 : 0),
   },
-  amount: { words: amountWords, content: (c) => (c.filled > 0 && c.numbers >= 0.8 ? 1 : 0) },
+  amount: { words: amountWords, content: (c) => (c.written > 0 && c.numbers >= 0.8 ? 1 : 0) },
   currency: {
     words: currencyWords,
     content: (c) => (c.filled > 0 && c.dates < 0.5 && c.numbers < 0.2 && (c.distinct <= 0.5 || c.rows < 20) ? 1 : 0),

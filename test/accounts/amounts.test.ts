@@ -23,6 +23,11 @@ describe('what an amount column holds is counted and said', () => {
     expect((await files.report('id,start,end\n1,2024-01-02,\n')).amounts).toBeUndefined();
   });
 
+  it('a column of zeros is one of amounts, and so is one of zeros and blanks', async () => {
+    expect((await files.report(csv(['0', '0', '0']))).amounts).toMatchObject({ zero: 3, missing: 0 });
+    expect((await files.report(csv(['0', '', '0.00']))).amounts).toMatchObject({ zero: 2, missing: 1 });
+  });
+
   it('missing, unreadable, negative and zero amounts are told apart, the first unreadable one with its line', async () => {
     const { amounts } = await files.report(
       csv([
