@@ -165,14 +165,21 @@ function hazardPeak(counts: TenureCounts): RiskyMonth | undefined {
   return risky.find(({ hazard }) => hazard >= NEARLY_AS_HIGH * highest);
 }
 
-/** One of the three sizes: the one with a lower limit above zero when it leaves 50 points, else the one that sees a halving, else five losses. */
-export function recommendSize(matured: number, sizes: CensusPlan['sizes']): { subgroupSize: number; why: string } {
+/**
+ * One of the three sizes: the one with a lower limit above zero when it leaves 50 points, else the one that sees a halving, else five losses.
+ * @param things  what a point counts, in the words of the reason
+ */
+export function recommendSize(
+  matured: number,
+  sizes: CensusPlan['sizes'],
+  things = 'accounts',
+): { subgroupSize: number; why: string } {
   const points = (size: number): number => Math.floor(matured / size);
   if (points(sizes.positiveLowerLimit) > MOST_POINTS) {
     const size = rounded(Math.ceil(matured / MOST_POINTS));
     return {
       subgroupSize: size,
-      why: `${count(size)} accounts a point: many more than needed, so that ${points(size)} points stay readable`,
+      why: `${count(size)} ${things} a point: many more than needed, so that ${points(size)} points stay readable`,
     };
   }
   const useful = [sizes.positiveLowerLimit, sizes.seesHalving].filter(
@@ -182,26 +189,28 @@ export function recommendSize(matured: number, sizes: CensusPlan['sizes']): { su
   if (size === sizes.positiveLowerLimit) {
     return {
       subgroupSize: size,
-      why: `${count(size)} accounts a point: about the size at which a single very low point begins to stand out`,
+      why: `${count(size)} ${things} a point: about the size at which a single very low point begins to stand out`,
     };
   }
   if (size === sizes.seesHalving) {
     return {
       subgroupSize: size,
-      why: `${count(size)} accounts a point: churn cut by half would show within about ${SOON_POINTS} points`,
+      why: `${count(size)} ${things} a point: churn cut by half would show within about ${SOON_POINTS} points`,
     };
   }
   const larger = `; ${count(sizes.positiveLowerLimit)} would let a single very low point stand out, but there would be too few points`;
   return {
     subgroupSize: size,
-    why: `${count(size)} accounts a point: about five losses each, the least that can be judged${larger}`,
+    why: `${count(size)} ${things} a point: about five losses each, the least that can be judged${larger}`,
   };
 }
 
 const count = (number: number): string => number.toLocaleString('en-GB');
-const oneDigit = (number: number): string => (number >= 10 ? count(Math.round(number)) : number.toFixed(1));
+/** "12", "3.4" */
+export const oneDigit = (number: number): string => (number >= 10 ? count(Math.round(number)) : number.toFixed(1));
 
-function weeks(number: number): string {
+/** A time in words: "about 5 weeks", "about 3 days". */
+export function weeks(number: number): string {
   if (number < 1) return `about ${Math.max(1, Math.round(number * 7))} days`;
   const whole = Math.round(number);
   return whole === 1 ? 'about a week' : `about ${whole} weeks`;

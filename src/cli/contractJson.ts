@@ -15,8 +15,9 @@ export function contractJson(answer: Answer): Record<string, unknown> {
     },
     chart: {
       kind: chart?.kind ?? 'p',
+      view: census?.request.view ?? 'start',
       sigmaZ: chart?.sigmaZ ?? 1,
-      subgroupSize: chart ? chart.subgroupSize : (census?.request.subgroupSize ?? null),
+      subgroupSize: chart ? chart.subgroupSize : sizeAsked(answer),
       center: chart?.center ?? null,
       baseline: chart ? chart.baseline : null,
       points: (chart?.points ?? []).map((point, i) => ({
@@ -36,7 +37,8 @@ export function contractJson(answer: Answer): Record<string, unknown> {
           waiting: census?.waiting ?? 0,
           immature: census?.immature ?? 0,
           asOf: iso(census?.request.asOf ?? report.asOf),
-          tenure: answer.tenure,
+          // A calendar month has no age to read at.
+          tenure: census?.request.view === 'calendar' ? null : answer.tenure,
           nextPointOn: iso(census?.nextPointOn),
         }
       : null,
@@ -62,11 +64,18 @@ export function readJson(report: ReadReport): Record<string, unknown> {
   };
 }
 
+/** Accounts a point before there is one; months have no size of their own. */
+function sizeAsked({ census }: Answer): number | null {
+  return census === null || census.request.view === 'calendar' ? null : census.request.subgroupSize;
+}
+
 const POINT_COLUMNS = ['index', 'accounts', 'lost', 'value', 'sigma', 'lower', 'upper'] as const;
+/** Beside the three sigma limits, where the chart has them: empty on other kinds. */
+const EXACT_COLUMNS = ['exactLower', 'exactUpper'] as const;
 
 /** The points as CSV, one line each, for a spreadsheet. */
 export function pointsCsv(answer: Answer): string {
-  const header = [...POINT_COLUMNS, 'firstStart', 'lastStart', 'asOf'].join(',');
+  const header = [...POINT_COLUMNS, 'firstStart', 'lastStart', 'asOf', ...EXACT_COLUMNS].join(',');
   const rows = (answer.chart?.points ?? []).map((point, i) => {
     const dates = answer.dates[i];
     return [
@@ -74,6 +83,7 @@ export function pointsCsv(answer: Answer): string {
       iso(dates?.firstStart) ?? '',
       iso(dates?.lastStart) ?? '',
       iso(dates?.asOf) ?? '',
+      ...EXACT_COLUMNS.map((name) => point[name] ?? ''),
     ].join(',');
   });
   return `${[header, ...rows].join('\n')}\n`;

@@ -1,4 +1,5 @@
 import type { PictureInput } from '../verdict/types.ts';
+import { viewWords } from '../verdict/words/viewWords.ts';
 import { count, countOf, heldDate } from './figures.ts';
 import { header } from './header.ts';
 import { immatureWords, notes } from './notes.ts';
@@ -44,7 +45,7 @@ export function collectionScene(input: PictureInput): Scene {
     }
   };
   const { waiting } = input;
-  if (waiting && waiting.of > 0) {
+  if (waiting && waiting.of > 0 && input.view !== 'calendar') {
     const share = Math.min(1, Math.max(0, waiting.accounts / waiting.of));
     const top = y;
     const bottom = y + 92;
@@ -71,10 +72,17 @@ export function collectionScene(input: PictureInput): Scene {
       width: 4,
     });
     y = bottom + 14;
-    say(`${count(waiting.accounts)} of ${countOf(waiting.of, 'account')} for the first point so far`, 26, 700, INK);
+    say(
+      `${count(waiting.accounts)} of ${countOf(waiting.of, viewWords(input.view).one)} for the first point so far`,
+      26,
+      700,
+      INK,
+    );
     say(
       waiting.on === null
-        ? 'Not enough accounts have started yet to fill it.'
+        ? input.view === 'renewal'
+          ? 'Not enough renewals have come up yet to fill it.'
+          : 'Not enough accounts have started yet to fill it.'
         : `The first point is due about ${heldDate(waiting.on)}.`,
       TEXT_SIZE + 2,
       400,

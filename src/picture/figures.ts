@@ -1,5 +1,7 @@
 import { type Day, dayInWords } from '../days.ts';
+import type { PictureInput } from '../verdict/types.ts';
 import * as spoken from '../verdict/words/format.ts';
+import { viewWords } from '../verdict/words/viewWords.ts';
 
 export { capitalised, count } from '../verdict/words/format.ts';
 
@@ -24,6 +26,11 @@ export function heldDate(day: Day): string {
   return dayInWords(day).replaceAll(' ', '\u00a0');
 }
 
+/** A point by its day: the date, or the month where points are months. */
+export function heldPoint({ view }: Pick<PictureInput, 'view'>, day: Day): string {
+  return viewWords(view).day(day).replaceAll(' ', '\u00a0');
+}
+
 /** "Mar" */
 export function monthShort(day: Day): string {
   return dayInWords(day).split(' ')[1]?.slice(0, 3) ?? '';
@@ -36,6 +43,11 @@ export function yearOf(day: Day): number {
 /** "12 Mar 2025" */
 export function dateShort(day: Day): string {
   return `${dayInWords(day).split(' ')[0]}\u00a0${monthShort(day)}\u00a0${yearOf(day)}`;
+}
+
+/** A point by its day, short: "12 Mar 2025", or "Mar 2025" where points are months. */
+export function shortPoint({ view }: Pick<PictureInput, 'view'>, day: Day): string {
+  return view === 'calendar' ? `${monthShort(day)}\u00a0${yearOf(day)}` : dateShort(day);
 }
 
 /** Months since year 0, for telling a new month or year apart. */

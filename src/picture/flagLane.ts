@@ -1,5 +1,6 @@
 import type { PictureInput } from '../verdict/types.ts';
-import { heldDate } from './figures.ts';
+import { viewWords } from '../verdict/words/viewWords.ts';
+import { heldPoint } from './figures.ts';
 import { EMBER, INK, MARGIN, QUIET, TEXT_SIZE, WIDTH } from './palette.ts';
 import { reach } from './plotFrame.ts';
 import { type Frame, type PlacedText, type Stroke, xAt } from './scene.ts';
@@ -31,9 +32,10 @@ export interface FlagLane {
 export function beganWords(input: PictureInput): string {
   const since = input.verdict.since;
   if (!since) return '';
+  const began = input.chart?.scale === 'days' ? '' : viewWords(input.view).began;
   return since.start === null
     ? `began about point ${since.point}`
-    : `began about ${heldDate(since.start)} – accounts starting then`;
+    : `began about ${heldPoint(input, since.start)}${began === '' ? '' : ` – ${began}`}`;
 }
 
 /** The words over a marked stretch: the state in bold, then the flag in words. */

@@ -1,8 +1,13 @@
+import type { CensusView } from '../census/types.ts';
 import type { Day } from '../days.ts';
 import type { PointDates } from './types.ts';
 
 /** What the words need to know besides the chart: whose accounts, read at which age, and what is still to come. */
 export interface VerdictContext {
+  /** how the accounts were ordered and cut; by start when absent */
+  readonly view?: CensusView;
+  /** calendar view: the month under way when the data ends, left out; null when there is none */
+  readonly withheld?: { readonly first: Day; readonly last: Day } | null;
   /** "3 months", or null for ready counts, whose meaning only their owner knows */
   readonly tenure: string | null;
   readonly dates: readonly PointDates[];

@@ -1,3 +1,4 @@
+import type { CensusView } from '../census/types.ts';
 import type { Chart, Interval, ShiftTest, Side, TestEpisode } from '../charts/types.ts';
 import type { Day } from '../days.ts';
 
@@ -18,6 +19,8 @@ export interface PooledRate {
   readonly high: number;
   readonly lost: number;
   readonly accounts: number;
+  /** Wilson's interval, or the exact one where few were lost or kept; absent where it is neither */
+  readonly interval?: 'wilson' | 'exact';
   /** given where losses are counted over days and not over accounts: rate, low and high are then losses a day */
   readonly days?: number;
 }
@@ -105,6 +108,8 @@ export interface PointDates {
 
 /** All that the picture needs: finished numbers only, nothing left to compute. */
 export interface PictureInput {
+  /** how the accounts were ordered and cut; by start when absent */
+  readonly view?: CensusView;
   readonly chart: Chart | null;
   readonly dates: readonly PointDates[];
   readonly signals: readonly Signal[];

@@ -1,5 +1,5 @@
 import { newcombeInterval } from '../charts/intervals/newcombe.ts';
-import { wilsonInterval } from '../charts/intervals/wilson.ts';
+import { rateInterval } from '../charts/intervals/rateInterval.ts';
 import type { Chart, SubgroupCount } from '../charts/types.ts';
 import type { VerdictContext } from './context.ts';
 import type { Finding, Judgement } from './judgement.ts';
@@ -57,7 +57,7 @@ export function writeVerdict(chart: Chart | null, judgement: Judgement, context:
       : []),
     ...(aboutMix ? mixSentences(judgement, shiftSignals) : watchSentences(watching, passed, context)),
     ...trustSentences(judgement, context, judgement.finding === 'steady'),
-    ...(chart ? [countSentence(chart.points.length, context)] : []),
+    ...(chart ? [countSentence(chart.points.length, context, sizesOf(chart))] : []),
     ...context.howChosen,
     ...furtherTrustSentences(judgement, context.tenure === null ? 'case' : 'account'),
   ];
@@ -79,6 +79,8 @@ export function writeVerdict(chart: Chart | null, judgement: Judgement, context:
     difference,
   };
 }
+
+const sizesOf = (chart: Chart): number[] => chart.points.map(({ accounts }) => accounts);
 
 /** The flag that covers most of the chart says most; it is told first. */
 function longestFirst(signals: readonly Signal[]): Signal[] {
@@ -120,13 +122,14 @@ function poolPoints(chart: Chart, from: number, to: number): SubgroupCount {
 }
 
 function pooledRate(count: SubgroupCount): PooledRate {
-  const { estimate, low, high } = wilsonInterval(count.lost, count.accounts);
+  const { estimate, low, high, method } = rateInterval(count.lost, count.accounts);
   return {
     rate: estimate,
     low,
     high,
     lost: count.lost,
     accounts: count.accounts,
+    interval: method,
   };
 }
 
@@ -144,7 +147,7 @@ function watchSentences(watching: readonly Signal[], passed: readonly Signal[], 
 function splitSentence(chart: Chart, after: number, context: VerdictContext): string {
   const last = chart.baseline.last;
   const pool = (from: number, to: number): PooledRate => pooledRate(poolPoints(chart, from, to));
-  return `${capitalised(stretch(1, after, context))}: ${pooled(pool(1, after))}. ${capitalised(stretch(after + 1, last, context))}: ${pooled(pool(after + 1, last))}.`;
+  return `${capitalised(stretch(1, after, context))}: ${pooled(pool(1, after), context)}. ${capitalised(stretch(after + 1, last, context))}: ${pooled(pool(after + 1, last), context)}.`;
 }
 
 function mixSentences(judgement: Judgement, flags: readonly Signal[]): string[] {

@@ -1,6 +1,7 @@
 import type { Chart } from '../../charts/types.ts';
 import { dayInWords } from '../../days.ts';
 import type { VerdictContext } from '../context.ts';
+import { exactLimitsSentence } from './exactLimits.ts';
 import type { Judgement } from '../judgement.ts';
 import { counted, listed } from './format.ts';
 import { cutAdvice } from './testWords.ts';
@@ -32,6 +33,8 @@ export function cautions(chart: Chart | null, judgement: Judgement, context: Ver
     }
     const deaf = deafDownward(chart);
     if (deaf && judgement.finding !== 'no-level' && judgement.finding !== 'too-few-points') list.push(deaf);
+    const exact = judgement.finding === 'too-few-points' ? null : exactLimitsSentence(chart);
+    if (exact) list.push(exact);
   }
   if (judgement.mix && judgement.finding === 'steady') {
     list.push(
@@ -69,7 +72,8 @@ export function cautions(chart: Chart | null, judgement: Judgement, context: Ver
 
 /** Which flags cannot be raised by a low point, because the limit would lie below zero. */
 function deafDownward(chart: Chart): string | null {
-  const sigma = Math.max(...chart.points.map((point) => point.sigma));
+  // At the newest point's size: where sizes differ, what can be flagged from here on.
+  const sigma = chart.points.at(-1)!.sigma;
   const reach = [1, 2, 3].filter((k) => chart.center - k * sigma <= 0);
   if (reach.length === 0) return null;
   const cannot =

@@ -1,8 +1,8 @@
-import { dayInWords } from '../../days.ts';
 import type { VerdictContext } from '../context.ts';
 import type { Judgement } from '../judgement.ts';
 import type { PooledRate, Signal, Verdict } from '../types.ts';
 import { capitalised, count, counted, percent, percentagePoints } from './format.ts';
+import { viewWords } from './viewWords.ts';
 
 /** "points 31 to 39 (accounts that started 12 March to 9 June 2025)". */
 export function stretch(first: number, last: number, context: VerdictContext): string {
@@ -10,16 +10,19 @@ export function stretch(first: number, last: number, context: VerdictContext): s
   const from = context.dates[first - 1]?.firstStart ?? null;
   const to = context.dates[last - 1]?.lastStart ?? null;
   if (from === null || to === null) return points;
-  return `${points}, accounts that started ${dayInWords(from)} to ${dayInWords(to)}`;
+  const { span, day } = viewWords(context.view);
+  return `${points}, ${span(day(from), day(to))}`;
 }
 
 export function signalSentence(signal: Signal, context: VerdictContext): string {
   return `${capitalised(signal.words)} (${stretch(signal.members[0], signal.until, context)}).`;
 }
 
-/** Pooled rate with its interval: "4.1 % (41 of 1,000; 3.0 % to 5.5 %)". */
-export function pooled(rate: PooledRate): string {
-  return `${percent(rate.rate)} (${count(rate.lost)} of ${counted(rate.accounts, 'account')}; 95 % interval ${percent(rate.low)} to ${percent(rate.high)})`;
+/** Pooled rate with its interval: "4.1 % (41 of 1,000 accounts; 95 % interval 3.0 % to 5.5 %)". */
+export function pooled(rate: PooledRate, context?: VerdictContext): string {
+  const interval = rate.interval === 'exact' ? 'exact 95 % interval' : '95 % interval';
+  const of = counted(rate.accounts, viewWords(context?.view).pooledOne);
+  return `${percent(rate.rate)} (${count(rate.lost)} of ${of}; ${interval} ${percent(rate.low)} to ${percent(rate.high)})`;
 }
 
 /** How big a move was, with its uncertainty and the reason to say "about". */
@@ -31,7 +34,7 @@ export function sizeSentences(
   const { before, after, difference } = verdict;
   if (!before || !after || !difference) return [];
   return [
-    `Usual level, from ${stretch(...beforePoints, context)}: ${pooled(before)}. Since then: ${pooled(after)}.`,
+    `Usual level, from ${stretch(...beforePoints, context)}: ${pooled(before, context)}. Since then: ${pooled(after, context)}.`,
     `The difference is about ${percentagePoints(difference.estimate)} percentage points (95 % interval ${percentagePoints(difference.low)} to ${percentagePoints(difference.high)}). It was noticed because it stood out, so the lasting change may be somewhat smaller.`,
   ];
 }
@@ -56,8 +59,8 @@ export function trustSentences(judgement: Judgement, context: VerdictContext, qu
   const sentences: string[] = [];
   if (quiet && trust.wouldSee) {
     const from = context.dates[judgement.wouldSeeFrom - 1]?.firstStart ?? null;
-    const since =
-      from === null ? `from point ${judgement.wouldSeeFrom} on` : `among accounts starting from ${dayInWords(from)} on`;
+    const words = viewWords(context.view);
+    const since = from === null ? `from point ${judgement.wouldSeeFrom} on` : words.from(words.day(from));
     const { rise, fall, chance } = trust.wouldSee;
     const parts = [
       rise === null ? null : `a lasting rise to ${percent(rise)} or more`,
@@ -82,15 +85,32 @@ export function trustSentences(judgement: Judgement, context: VerdictContext, qu
   return sentences;
 }
 
-/** The denominators: nobody should have to ask "of how many?". */
-export function countSentence(points: number, context: VerdictContext): string {
-  const { tenure, subgroupSize } = context;
+/**
+ * The denominators: nobody should have to ask "of how many?".
+ * @param sizes  accounts of each point, where they differ
+ */
+export function countSentence(points: number, context: VerdictContext, sizes: readonly number[] = []): string {
+  const { tenure, subgroupSize, view } = context;
   if (tenure === null) return `${counted(points, 'point')}, ${counted(context.accounts, 'case')} in all.`;
-  const size = subgroupSize === null ? '' : ` of ${counted(subgroupSize, 'account')} each`;
+  if (view === 'calendar') return monthsSentence(points, context, sizes);
+  const { one, order } = viewWords(view);
+  const size = subgroupSize === null ? '' : ` of ${counted(subgroupSize, one)} each`;
+  const young =
+    view === 'renewal'
+      ? `${counted(context.immature, one)} still to come`
+      : `${count(context.immature)} not yet customers for ${tenure} and so not counted`;
   const rest = [
     `${counted(points, 'point')}${size}`,
     context.waiting > 0 ? `${count(context.waiting)} waiting for the next point` : null,
-    context.immature > 0 ? `${count(context.immature)} not yet customers for ${tenure} and so not counted` : null,
+    context.immature > 0 ? young : null,
   ].filter((part) => part !== null);
-  return `Counted in order of start: ${rest.join('; ')}.`;
+  return `Counted ${order}: ${rest.join('; ')}.`;
+}
+
+function monthsSentence(points: number, { withheld }: VerdictContext, sizes: readonly number[]): string {
+  const { order, day } = viewWords('calendar');
+  const [least, most] = [Math.min(...sizes), Math.max(...sizes)];
+  const customers = least === most ? counted(least, 'customer') : `${count(least)} to ${counted(most, 'customer')}`;
+  const rest = withheld ? `; ${day(withheld.first)} is not over in the data and left out` : '';
+  return `Counted ${order}: ${counted(points, 'month')}, each beginning with ${customers}${rest}. A customer counts once in every month it begins.`;
 }
