@@ -94,6 +94,25 @@ export interface ReadReport {
   readonly amounts?: AmountReport;
 }
 
+/** How an export differs from the one before it, for accounts known by their ids. Counts of accounts. */
+export interface ExportChange {
+  /** accounts of the earlier export */
+  readonly before: number;
+  readonly inBoth: number;
+  /** in the earlier export and no longer in this one */
+  readonly gone: number;
+  /** not in the earlier export, though they started on or before its data-through date */
+  readonly backDated: number;
+  /** in both, with another start date */
+  readonly startMoved: number;
+  /** had left by the earlier data-through date according to this export, and not according to the earlier one */
+  readonly lateLosses: number;
+  /** had left by the earlier data-through date according to the earlier export, and not according to this one */
+  readonly takenBack: number;
+  /** the earlier export's data-through date */
+  readonly asOfBefore: Day;
+}
+
 /**
  * Accounts ready to be counted: a table in an engine.
  * Columns: key UBIGINT (stable pseudonymous hash of the id), start_day INTEGER (days since 1970-01-01), end_day INTEGER or NULL,

@@ -1,3 +1,4 @@
+import { compareExports } from '../accounts/compareExports.ts';
 import { openEngine } from '../accounts/engine.ts';
 import { loadAccounts, writeAccounts } from '../accounts/parquet.ts';
 import { readExport } from '../accounts/readExport.ts';
@@ -102,6 +103,12 @@ export function createAnswers(deps: AnswersDeps): Answers {
           ...options,
           idKey: await workspace.idKey(),
         });
+        const earlier = await workspace.currentDataset(upload.channelId);
+        // The same file read again in another way is no newer export.
+        const compared =
+          earlier && earlier.fileId !== upload.fileId
+            ? await compareExports(engine, table, await workspace.parquet(earlier.id), earlier.report)
+            : null;
         const parquet = await writeAccounts(engine, table);
         const dataset = await workspace.saveDataset(
           {
@@ -119,7 +126,12 @@ export function createAnswers(deps: AnswersDeps): Answers {
           datasetId: dataset.id,
           headers: table.report.headers,
         });
-        return { kind: 'read', dataset, upload: updated };
+        return {
+          kind: 'read',
+          dataset,
+          upload: updated,
+          change: compared && earlier ? { name: earlier.name, change: compared } : null,
+        };
       } catch (error) {
         if (!(error instanceof EbbError) || error.kind !== 'input') throw error;
         const asks = error.code === 'DATES_AMBIGUOUS';

@@ -1,4 +1,4 @@
-import type { ReadOptions, ReadReport } from '../accounts/types.ts';
+import type { ExportChange, ReadOptions, ReadReport } from '../accounts/types.ts';
 import type { Census, CensusPlan, Tenure } from '../census/types.ts';
 import type { Chart } from '../charts/types.ts';
 import type { EbbError } from '../errors.ts';
@@ -38,6 +38,8 @@ export type Ingested =
   | {
       readonly kind: 'read';
       readonly dataset: Dataset;
+      /** against the dataset the channel had before; null when there was none, or nothing to compare by */
+      readonly change: { readonly name: string; readonly change: ExportChange } | null;
       readonly upload: Upload;
     }
   /** the file is sound but a person must decide: how the dates read */

@@ -2,11 +2,13 @@ import { EbbError } from '../../errors.ts';
 import { isAnswerable } from '../../requests/answerable.ts';
 import { understand } from '../../requests/understand.ts';
 import type { Upload } from '../../store/types.ts';
+import { changeText } from '../../verdict/words/changeText.ts';
 import { withFetchedFile } from '../download/fetchFile.ts';
 import type { SharedFile } from '../download/fileInfo.ts';
 import { dateOrderMessage } from '../messages/dateOrderMessage.ts';
 import { errorMessage } from '../messages/errorMessage.ts';
 import { readingMessage, readMessage } from '../messages/readMessage.ts';
+import { shortened } from '../messages/text.ts';
 import type { Poster } from '../posting/poster.ts';
 import { answerRequest } from './answerAsk.ts';
 import { type Job, requestContext } from './context.ts';
@@ -54,11 +56,17 @@ export async function readUpload(
     await poster.replace('read', 'reading', about);
     return;
   }
-  const { dataset } = read;
+  const { dataset, change } = read;
   await poster.replace(
     'read',
     'reading',
-    readMessage(dataset.report, dataset.name, { upload: upload.id, dataset: dataset.id }, lead),
+    readMessage(
+      dataset.report,
+      dataset.name,
+      { upload: upload.id, dataset: dataset.id },
+      lead,
+      change ? changeText(change.change, shortened(change.name, 80)) : [],
+    ),
   );
   const words = asked === '' ? null : understand(asked, requestContext(deps.now(), dataset));
   const request = words?.request;

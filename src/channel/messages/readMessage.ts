@@ -7,9 +7,16 @@ import { code, inert, shortened } from './text.ts';
 
 /**
  * What was read, with the means to mend it.
- * @param lead "Read" or "Read again"
+ * @param lead   "Read" or "Read again"
+ * @param change what it changes about the export before it
  */
-export function readMessage(report: ReadReport, name: string, target: MendTarget, lead = 'Read'): Message {
+export function readMessage(
+  report: ReadReport,
+  name: string,
+  target: MendTarget,
+  lead = 'Read',
+  change: readonly string[] = [],
+): Message {
   const [first = '', ...rest] = readText(report, shortened(name, 120)).map(inert);
   const opening = first.replace(/^Read /, `${lead}: `);
   const segments = segmentLine(report);
@@ -17,13 +24,15 @@ export function readMessage(report: ReadReport, name: string, target: MendTarget
     .flatMap((entry) => entry.examples.filter((one) => one.value.trim() !== '').slice(0, 1))
     .slice(0, 3)
     .map((one) => `line ${one.line} ${code(one.value, 40)}`);
+  const changed = change.map(inert);
   const lines = [
+    ...changed,
     ...rest,
     ...(segments === undefined ? [] : [segments]),
     ...(examples.length > 0 ? [`For example ${examples.join(', ')}.`] : []),
   ];
   return message(
-    [opening, ...rest],
+    [opening, ...changed, ...rest],
     [
       section([`*${opening}*`, ...bullets(lines)]),
       { type: 'actions', elements: [button('Correct this', ACTION.mend, JSON.stringify(target))] },
