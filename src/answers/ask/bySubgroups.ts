@@ -16,17 +16,26 @@ import { emptyJudgement } from '../emptyJudgement.ts';
 import { readCautions } from '../readCautions.ts';
 import type { AskContext, Reached } from './types.ts';
 
+/** With the usual smoothing, a weight of 0.1. */
+const SMOOTHED =
+  'Each point shows the smoothed share, a tenth its own and nine tenths the smoothed share before it (an EWMA chart): small lasting moves add up, single points count little.';
+
 /** The usual way: the share lost by the tenure point in equal subgroups in order of start, on a p chart or a p' chart. */
 export async function bySubgroups(context: AskContext): Promise<Reached> {
-  const { table, question, scope, resolved } = context;
-  const { plan, tenureOfAll } = resolved;
-  const { tenure, subgroupSize } = plan;
+  const { table, scope, resolved } = context;
+  const { tenure, subgroupSize } = resolved.plan;
   const census = await takeCensus(table, { tenure, subgroupSize, view: 'start', ...scope });
-  return answerCensus(context, {
+  return answerCensus(context, inOrderOfStart(context, census));
+}
+
+/** The census in order of start, with what must be said about it. */
+export function inOrderOfStart({ question, resolved, clock }: AskContext, census: Census): Counted {
+  const { plan, tenureOfAll } = resolved;
+  return {
     census,
     plan,
-    tenure: tenureInWords(tenure),
-    countedAt: context.clock(),
+    tenure: tenureInWords(plan.tenure),
+    countedAt: clock(),
     howChosen: [
       ...(question.tenure
         ? []
@@ -37,8 +46,8 @@ export async function bySubgroups(context: AskContext): Promise<Reached> {
           ]),
       ...(question.subgroupSize ? [] : [`${capitalised(plan.sizeWhy)}.`]),
     ],
-    waiting: { accounts: census.waiting, of: subgroupSize, on: census.nextPointOn },
-  });
+    waiting: { accounts: census.waiting, of: plan.subgroupSize, on: census.nextPointOn },
+  };
 }
 
 /** What was counted in one view of the census, and what must be said about it. */
@@ -57,9 +66,8 @@ export interface Counted {
 
 /** Charts and judges the subgroups of a census and puts them into words. */
 export function answerCensus(context: AskContext, taken: Counted): Reached {
-  const { table, question, scope } = context;
+  const { question, scope } = context;
   const { census, plan, countedAt } = taken;
-  const { report } = table;
   const { view } = census.request;
   const words = viewWords(view);
 
@@ -80,7 +88,41 @@ export function answerCensus(context: AskContext, taken: Counted): Reached {
           ...(isSubgroupKind(question.chart) ? { kind: question.chart } : {}),
         })
       : { chart: null, judgement: emptyJudgement() };
-  const verdictContext: VerdictContext = {
+  const verdictContext = verdictContextOf(context, taken, dates, caution);
+  const verdict = withSince(writeVerdict(chart, judgement, verdictContext), question.since, words);
+  return {
+    verdict,
+    chart,
+    dates,
+    signals: judgement.signals,
+    trust: judgement.trust,
+    judgement,
+    census,
+    plan,
+    drawn: {
+      ...drawnFrom(judgement),
+      view,
+      waiting: taken.waiting,
+      immature: census.immature,
+      measure: `${words.measure(taken.tenure)}${chart?.smoothing ? ', smoothed' : ''}`,
+      subject: scope.segment === undefined ? context.subject : `${context.subject}, ${scope.segment}`,
+      asOf: scope.asOf,
+    },
+    countedAt,
+  };
+}
+
+/** What the words of a verdict need to know beside the chart. */
+export function verdictContextOf(
+  { table, question, scope }: AskContext,
+  taken: Counted,
+  dates: readonly PointDates[],
+  caution: readonly string[],
+): VerdictContext {
+  const { census, plan } = taken;
+  const { report } = table;
+  const { view } = census.request;
+  return {
     view,
     withheld: taken.withheld ?? null,
     tenure: taken.tenure,
@@ -99,29 +141,12 @@ export function answerCensus(context: AskContext, taken: Counted): Reached {
     segmentColumn: view === 'renewal' ? null : (report.columns.segment ?? null),
     segment: scope.segment ?? null,
     segmentValues: census.segments.map((entry) => entry.segment),
-    howChosen: [...taken.howChosen, ...(question.tests ? [chosenTests(question.tests)] : [])],
+    howChosen: [
+      ...(question.chart === 'ewma' ? [SMOOTHED] : []),
+      ...taken.howChosen,
+      ...(question.tests && question.chart !== 'ewma' ? [chosenTests(question.tests)] : []),
+    ],
     readCautions: [...caution, ...(taken.cautions ?? []), ...readCautions(report, scope.asOf)],
-  };
-  const verdict = withSince(writeVerdict(chart, judgement, verdictContext), question.since, words);
-  return {
-    verdict,
-    chart,
-    dates,
-    signals: judgement.signals,
-    trust: judgement.trust,
-    judgement,
-    census,
-    plan,
-    drawn: {
-      ...drawnFrom(judgement),
-      view,
-      waiting: taken.waiting,
-      immature: census.immature,
-      measure: words.measure(taken.tenure),
-      subject: scope.segment === undefined ? context.subject : `${context.subject}, ${scope.segment}`,
-      asOf: scope.asOf,
-    },
-    countedAt,
   };
 }
 
