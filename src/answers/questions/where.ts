@@ -1,4 +1,5 @@
 import type { AccountTable } from '../../accounts/types.ts';
+import { OTHER_SEGMENT } from '../../census/censusSql.ts';
 import { takeGroupsCensus } from '../../census/groupsCensus.ts';
 import { subgroupSizes } from '../../census/sizes.ts';
 import { tenureInWords } from '../../census/tenure.ts';
@@ -8,7 +9,6 @@ import { EbbError } from '../../errors.ts';
 import { drawPlate } from '../../picture/picture.ts';
 import { whereAltText, whereScene } from '../../picture/questions/where.ts';
 import type { SideQuestionOf } from '../../requests/types.ts';
-import { isSubgroupKind } from '../../verdict/chartAndJudge.ts';
 import { LEAST_POINTS } from '../../verdict/judgement.ts';
 import { changeOf, type Stretches, stretchesOf } from '../../verdict/questions/where/change.ts';
 import { type HowToJudge, judgeGroups } from '../../verdict/questions/where/judgeGroups.ts';
@@ -37,18 +37,19 @@ export const answerWhere: AnswerSide<'where'> = async (context, request) => {
     ...(request.subgroupSize === undefined ? {} : { subgroupSize: request.subgroupSize }),
   });
   const how: HowToJudge = {
-    ...(isSubgroupKind(request.chart) ? { kind: request.chart } : {}),
+    ...(request.chart === 'p' || request.chart === 'p-prime' ? { kind: request.chart } : {}),
+    ...(request.tests === undefined ? {} : { tests: request.tests }),
     ...(request.baseline === undefined ? {} : { baseline: request.baseline }),
     ...(request.since === undefined ? {} : { since: request.since }),
   };
-  const readings = judgeGroups(groups, how);
+  const readings = judgeGroups(groups, column, how);
   const census = overall.census?.request.view === 'start' ? overall.census : await context.census();
   const stretches = stretchesFor(overall, census);
   const words: WhereContext = {
     column,
     tenure: tenureInWords(plan.tenure),
     overall: overall.verdict.headline,
-    change: changeOf(census.segments, stretches),
+    change: changeOf(namedRest(census.segments, table), stretches),
     stretches: stretches && {
       from: census.subgroups[0]!.firstStart,
       to: census.subgroups[stretches.beforeLast - 1]!.lastStart,
@@ -112,7 +113,7 @@ function checkRequest(request: SideQuestionOf<'where'>): void {
       'Leave the view out, or ask “has churn moved?” with it.',
     );
   }
-  if (request.chart !== undefined && !isSubgroupKind(request.chart)) {
+  if (request.chart !== undefined && request.chart !== 'p' && request.chart !== 'p-prime') {
     throw new EbbError(
       'OPTION_INVALID',
       `“where” compares shares lost, and a chart of the kind ${request.chart} does not show them`,
@@ -128,6 +129,15 @@ function stretchesFor(overall: Answer, census: Census): Stretches | null {
   if (chart === null || chart.points.length !== points || chart.kind === 'g' || chart.kind === 't')
     return stretchesOf(points, points, null);
   return stretchesOf(points, chart.baseline.last, overall.judgement?.start?.first ?? null);
+}
+
+/** The census calls what it pools by a word that a group may have for a name too. */
+function namedRest(segments: Census['segments'], { report }: AccountTable): Census['segments'] {
+  return segments.map((one) =>
+    one.segment === OTHER_SEGMENT && !report.segments.some(({ value }) => value === OTHER_SEGMENT)
+      ? { ...one, segment: 'the rest' }
+      : one,
+  );
 }
 
 /** Accounts that a group at the rate of all accounts needs to be judged. */

@@ -1,6 +1,6 @@
 import { type Day, dayInWords } from '../../days.ts';
 import type { GroupReading } from '../../verdict/questions/where/types.ts';
-import { count, counted, listed, percent } from '../../verdict/words/format.ts';
+import { capitalised, count, counted, listed, percent } from '../../verdict/words/format.ts';
 import { EMBER, EMBER_TINT, INK, LEVEL, PAPER, QUIET, TEXT_SIZE, TITLE_SIZE, WATER_PALE } from '../palette.ts';
 import { type Ink, ink, placed } from '../panel/ink.ts';
 import { panel } from '../panel/panel.ts';
@@ -66,14 +66,18 @@ function titleOf(readings: readonly GroupReading[]): string {
   if (judged === 0) return 'Too early to say where';
   if (moved.length === 0)
     return judged === 1
-      ? 'The one group judged is steady'
+      ? 'The one group judged has not moved'
       : `None of ${judged < readings.length ? 'the ' : ''}${count(judged)} groups${judged < readings.length ? ' judged' : ''} has moved`;
-  if (moved.length === 1) return `${shortened(moved[0]!.name, 420, 700, TITLE_SIZE)} has ${moved[0]!.direction}`;
+  if (moved.length === 1)
+    return `${capitalisedRest(moved[0]!, shortened(moved[0]!.name, 420, 700, TITLE_SIZE))} has ${moved[0]!.direction}`;
   return `${moved.length === judged ? 'All' : count(moved.length)} of ${count(judged)} groups have moved`.replace(
     'All of',
     'All',
   );
 }
+
+/** Names are written as the data writes them; the rest has no name of its own. */
+const capitalisedRest = (one: GroupReading, name: string): string => (one.pooled ? capitalised(name) : name);
 
 interface Scales {
   readonly x: readonly [Day, Day];
@@ -174,7 +178,7 @@ function verdictOf(one: GroupReading): string {
     case 'fallen':
       return `${one.finding}, ${percent(one.before!.rate)} to ${percent(one.after!.rate)}`;
     case 'alone':
-      return `${one.direction} alone, not among all`;
+      return 'stands out only on its own';
     case 'steady':
       return `steady at ${percent(one.chart!.center)}`;
     case 'unsteady':

@@ -2,7 +2,7 @@ import type { GroupCensus } from '../../../census/groupsCensus.ts';
 import { newcombeInterval } from '../../../charts/intervals/newcombe.ts';
 import { rateInterval } from '../../../charts/intervals/rateInterval.ts';
 import { benjaminiHochberg } from '../../../charts/multiple/stepUp.ts';
-import type { Chart, SubgroupCount } from '../../../charts/types.ts';
+import type { Chart, ShiftTest, SubgroupCount } from '../../../charts/types.ts';
 import type { Day } from '../../../days.ts';
 import { chartAndJudge, type SubgroupKind } from '../../chartAndJudge.ts';
 import { type Judgement, LEAST_POINTS } from '../../judgement.ts';
@@ -15,6 +15,8 @@ export const FALSE_PART = 0.05;
 
 export interface HowToJudge {
   readonly kind?: SubgroupKind;
+  /** shift tests that decide; all of them when absent */
+  readonly tests?: readonly ShiftTest[];
   /** points that set the usual level of every group */
   readonly baseline?: number;
   /** else what started before this day sets it, where that makes enough points */
@@ -24,10 +26,11 @@ export interface HowToJudge {
 /**
  * Charts every group apart, judges each by its own calibrated threshold, and then all of them together: a group has moved when its own chart
  * reads so and its p value still counts among those of all groups that were judged, with at most 5 % of such findings expected to be false.
- * Groups with the clearest evidence first, those that could not be judged last.
+ * @param column  name of the column that groups the accounts
+ * @returns groups with the clearest evidence first, those that could not be judged last
  * Source: Benjamini Y and Hochberg Y, JRSS B 57:289-300, 1995.
  */
-export function judgeGroups(groups: readonly GroupCensus[], how: HowToJudge = {}): GroupReading[] {
+export function judgeGroups(groups: readonly GroupCensus[], column: string, how: HowToJudge = {}): GroupReading[] {
   const alone = groups.map((group) => ({ group, ...judgedAlone(group, how) }));
   const family = alone.flatMap(({ movedChance }) => (movedChance === null ? [] : [movedChance]));
   const { adjusted, rejected } = benjaminiHochberg(family, FALSE_PART);
@@ -37,7 +40,7 @@ export function judgeGroups(groups: readonly GroupCensus[], how: HowToJudge = {}
     const finding = judgement?.finding;
     const direction = finding === 'risen' || finding === 'fallen' ? finding : null;
     return {
-      name: nameOf(group),
+      name: nameOf(group, column),
       pooled: group.pooled,
       accounts: group.accounts,
       matured: group.matured,
@@ -56,10 +59,15 @@ export function judgeGroups(groups: readonly GroupCensus[], how: HowToJudge = {}
   return readings.sort(byEvidence);
 }
 
+/** Longer values are cut where they are told. */
+const LONGEST_NAME = 48;
+
 /** The pooled rest goes by what it holds. */
-function nameOf({ value, pooled }: GroupCensus): string {
-  if (value !== null) return value;
-  return pooled !== null && pooled.values > 0 ? `${count(pooled.values)} others` : 'none given';
+function nameOf({ value, pooled }: GroupCensus, column: string): string {
+  if (value !== null) return value.length > LONGEST_NAME ? `${value.slice(0, LONGEST_NAME - 1).trimEnd()}…` : value;
+  return pooled !== null && pooled.values > 0
+    ? `the rest (${count(pooled.values)} values)`
+    : `the group without “${column}”`;
 }
 
 function judgedAlone(group: GroupCensus, how: HowToJudge) {
@@ -71,6 +79,7 @@ function judgedAlone(group: GroupCensus, how: HowToJudge) {
     runLength: false,
     ...(baselineLast === undefined ? {} : { baselineLast }),
     ...(how.kind ? { kind: how.kind } : {}),
+    ...(how.tests ? { tests: how.tests } : {}),
   });
 }
 

@@ -1,6 +1,6 @@
 import { type Day, dayInWords } from '../../../days.ts';
 import { LEAST_POINTS } from '../../judgement.ts';
-import { count, counted, listed, numberWord, percent } from '../../words/format.ts';
+import { capitalised, count, counted, listed, numberWord, percent } from '../../words/format.ts';
 import type { Change } from './change.ts';
 import { changeWords } from './changeWords.ts';
 import type { GroupReading } from './types.ts';
@@ -50,10 +50,10 @@ export function whereWords(readings: readonly GroupReading[], context: WhereCont
         : []),
       `All accounts together: ${context.overall}`,
       ...togetherSentence(readings.length, judged.length, moved.length),
-      ...steady.map(steadySentence),
+      ...steadySentences(steady),
       ...of('unsteady').map(
-        ({ name }) =>
-          `${name}: the points that should set its usual level were not steady themselves, so nothing is said about it; it counts as looked at.`,
+        (one) =>
+          `${begun(one)}: the points that should set its usual level were not steady themselves, so nothing is said about it; it counts as looked at.`,
       ),
       ...of('no-level').map((one) => noLevelSentence(one, context)),
       ...tooFewSentences(of('too-few'), context),
@@ -74,7 +74,10 @@ function headline(
   const could = judged.length < all.length ? ' that could be judged' : '';
   const some = judged.length > 1 ? `${numberWord(judged.length)} groups` : 'one group';
   const groups = `${some} of “${column}”${could}`;
-  if (moved.length === 0) return `Churn has moved beyond chance in none of the ${groups}.`;
+  if (moved.length === 0)
+    return judged.length === 1
+      ? `Churn has not moved beyond chance in the ${groups}.`
+      : `Churn has moved beyond chance in none of the ${groups}.`;
   const told = moved
     .slice(0, 3)
     .map(
@@ -94,11 +97,11 @@ function movedSentence(one: GroupReading, judged: number, { tenure }: WhereConte
     judged > 1
       ? `, and still ${chanceWords(one.adjusted!)} when it counts that ${numberWord(judged)} groups were looked at`
       : '';
-  return `${one.name} has ${one.direction}: ${pooled(one.after!)} lost within ${tenure} among those who started from about ${dayInWords(one.since!.start)}, against ${pooled(one.before!)} before. With nothing changed, so much would show with a chance of ${chanceWords(one.chance!)}${allowing}.`;
+  return `${begun(one)} has ${one.direction}: ${pooled(one.after!)} lost within ${tenure} among those who started from about ${dayInWords(one.since!.start)}, against ${pooled(one.before!)} before. With nothing changed, so much would show with a chance of ${chanceWords(one.chance!)}${allowing}.`;
 }
 
 function aloneSentence(one: GroupReading, judged: number): string {
-  return `${one.name} would read as ${one.direction} if it were the only group asked about (${percent(one.before!.rate)} to about ${percent(one.after!.rate)}, from about ${dayInWords(one.since!.start)}); among ${numberWord(judged)} groups, one as far out as this is too likely by chance (${chanceWords(one.adjusted!)} after allowing for that).`;
+  return `${begun(one)} would read as ${one.direction} if it were the only group asked about (${percent(one.before!.rate)} to about ${percent(one.after!.rate)}, from about ${dayInWords(one.since!.start)}); among ${numberWord(judged)} groups, one as far out as this is too likely by chance (${chanceWords(one.adjusted!)} after allowing for that).`;
 }
 
 /** A chance as small as the simulation can show is told as a bound. */
@@ -114,10 +117,27 @@ function togetherSentence(all: number, judged: number, moved: number): string[] 
   ];
 }
 
+/** Steady groups told in a sentence each before they are put into a list. */
+const TOLD_APART = 3;
+
+function steadySentences(groups: readonly GroupReading[]): string[] {
+  if (groups.length <= TOLD_APART) return groups.map(steadySentence);
+  const each = groups.map((one) => {
+    const { rise, fall } = wouldSee(one);
+    const seen = [rise === null ? null : `${percent(rise)} or more`, fall === null ? null : `${percent(fall)} or less`];
+    const moves = seen.filter((part) => part !== null);
+    return `${one.name} at ${percent(one.chart!.center)} (${moves.length > 0 ? moves.join(', ') : 'no move at all'})`;
+  });
+  return [
+    `Steady, each with the lasting rate that its own chart alone would by now have shown with 80 % chance, so that anything nearer could have been missed: ${each.join('; ')}.`,
+  ];
+}
+
+const wouldSee = ({ judgement }: GroupReading) => judgement?.trust.wouldSee ?? { rise: null, fall: null, chance: 0.8 };
+
 function steadySentence(one: GroupReading): string {
-  const { chart, judgement } = one;
-  const { rise, fall, chance } = judgement!.trust.wouldSee ?? { rise: null, fall: null, chance: 0.8 };
-  const from = one.subgroups[judgement!.wouldSeeFrom - 1]?.firstStart;
+  const { rise, fall, chance } = wouldSee(one);
+  const from = one.subgroups[(one.judgement?.wouldSeeFrom ?? 1) - 1]?.firstStart;
   const parts = [
     rise === null ? null : `a lasting rise to ${percent(rise)} or more`,
     fall === null ? null : `a lasting fall to ${percent(fall)} or less`,
@@ -126,12 +146,15 @@ function steadySentence(one: GroupReading): string {
     parts.length === 0 || from === undefined
       ? 'any move could have been missed'
       : `on its own, ${parts.join(', or ')}, among accounts starting from ${dayInWords(from)} on, would have stood out with ${Math.round(chance * 100)} % chance, and anything smaller could have been missed`;
-  return `${one.name} is steady at ${percent(chart!.center)} (${count(one.lost)} of ${counted(one.matured, 'account')} lost in all): ${seen}.`;
+  return `${begun(one)} is steady at ${percent(one.chart!.center)} (${count(one.lost)} of ${counted(one.matured, 'account')} lost in all): ${seen}.`;
 }
+
+/** A group's name at the beginning of a sentence: names are written as the data writes them, the rest has no name. */
+const begun = (one: GroupReading): string => (one.pooled ? capitalised(one.name) : one.name);
 
 function noLevelSentence(one: GroupReading, { tenure }: WhereContext): string {
   const whom = one.chart?.center === 0 ? 'nobody' : 'everybody';
-  return `${one.name} could not be judged: ${whom} was lost within ${tenure} in the points that would set its usual level (${count(one.lost)} of its ${counted(one.matured, 'account')} in all), so there is no level to compare with.`;
+  return `${begun(one)} could not be judged: ${whom} was lost within ${tenure} in the points that would set its usual level (${count(one.lost)} of its ${counted(one.matured, 'account')} in all), so there is no level to compare with.`;
 }
 
 /** Groups without enough accounts told by name before the rest are only counted. */
@@ -141,10 +164,10 @@ function tooFewSentences(groups: readonly GroupReading[], { tenure, needed }: Wh
   if (groups.length === 0) return [];
   const told = groups
     .slice(0, NAMED)
-    .map((one) => `${one.name} (${count(one.matured)} of about ${count(accountsFor(one, needed))} that it takes)`);
+    .map((one) => `${one.name} (${count(one.matured)} of ${count(accountsFor(one, needed))})`);
   const rest = groups.length - told.length;
   return [
-    `Too few accounts to be judged, by how many have reached ${tenure}: ${listed(rest > 0 ? [...told, counted(rest, 'more group')] : told)}.`,
+    `Too few accounts to be judged, with how many have reached ${tenure}, of about how many it takes: ${listed(rest > 0 ? [...told, counted(rest, 'more group')] : told)}.`,
   ];
 }
 
@@ -167,7 +190,7 @@ function cautionsOf(readings: readonly GroupReading[], moved: boolean, context: 
     );
   } else if (rest?.pooled) {
     list.push(
-      `${counted(rest.pooled.without, 'account')} have no “${context.column}”; they are looked at as a group, “${rest.name}”.`,
+      `${counted(rest.pooled.without, 'account')} have no “${context.column}”; they are looked at as a group of their own.`,
     );
   }
   const provisional = readings.filter(({ chance, chart }) => chance !== null && chart?.baseline.provisional);
