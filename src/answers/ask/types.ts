@@ -1,6 +1,7 @@
 import type { AccountTable } from '../../accounts/types.ts';
 import type { Census, CensusPlan } from '../../census/types.ts';
 import type { Chart } from '../../charts/types.ts';
+import type { Picture } from '../../picture/picture.ts';
 import type { Question } from '../../requests/types.ts';
 import type { Judgement } from '../../verdict/judgement.ts';
 import type { PictureInput, PointDates, Signal, Trust, Verdict } from '../../verdict/types.ts';
@@ -31,6 +32,8 @@ export interface Reached {
   readonly plan: CensusPlan;
   /** all the picture needs beside the chart, its dates, its signals and the verdict */
   readonly drawn: Omit<PictureInput, 'chart' | 'dates' | 'signals' | 'verdict'>;
+  /** draws another picture than the chart's, where the chart has one of its own */
+  readonly draw?: () => Promise<Picture>;
   /** clock reading when the counting was done */
   readonly countedAt: number;
 }

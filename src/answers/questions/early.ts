@@ -6,8 +6,8 @@ import { chartAndJudge } from '../../verdict/chartAndJudge.ts';
 import type { Judgement } from '../../verdict/judgement.ts';
 import { earlyFigures, earlyWords } from '../../verdict/questions/early.ts';
 import { readCautions } from '../readCautions.ts';
+import { earlyDrawing } from '../watch/earlyDrawing.ts';
 import { earlyFindings } from '../watch/earlyFindings.ts';
-import { sumPath } from '../watch/sumPath.ts';
 import { USUAL_MOVES, type Watched, watchAccounts } from '../watch/watchAccounts.ts';
 import type { AnswerSide, Reply, SideContext } from './types.ts';
 
@@ -83,20 +83,7 @@ function movesOf(move: number | undefined): { rise: number; fall: number } {
   return move > 1 ? { ...USUAL_MOVES, rise: move } : { ...USUAL_MOVES, fall: move };
 }
 
-const DATES = 4;
-
 function draw(context: SideContext, watched: Watched, found: EarlyDrawing['found']) {
-  const { watch, losses, accounts, startOf } = watched;
-  const places = [
-    ...new Set(Array.from({ length: DATES + 1 }, (_, i) => Math.max(1, Math.round((accounts * i) / DATES)))),
-  ];
-  const drawing: EarlyDrawing = {
-    found,
-    rise: sumPath(watch.rise, losses, accounts, watched.rise),
-    fall: sumPath(watch.fall, losses, accounts, watched.fall),
-    starts: places.map((place) => ({ place, start: startOf(place) })),
-    subject: context.subject,
-    asOf: context.scope.asOf,
-  };
+  const drawing = earlyDrawing(watched, found, context.subject, context.scope.asOf);
   return drawPlate(earlyScene(drawing), earlyAltText(drawing));
 }

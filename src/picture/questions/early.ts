@@ -1,6 +1,7 @@
 import { type Day, dayInWords } from '../../days.ts';
 import { aimOf } from '../../verdict/questions/early.ts';
 import { type EarlyFindings, leading, moodOf, type WatchState } from '../../verdict/questions/earlyFindings.ts';
+import type { Verdict } from '../../verdict/types.ts';
 import { count, counted, percent } from '../../verdict/words/format.ts';
 import { dateShort } from '../figures.ts';
 import { EMBER, LEVEL, QUIET, WATER_EDGE, WATER_PALE } from '../palette.ts';
@@ -27,11 +28,13 @@ export interface EarlyDrawing {
   readonly starts: readonly { readonly place: number; readonly start: Day }[];
   readonly subject: string;
   readonly asOf: Day;
+  /** given when the picture is that of a verdict and not of the early watch */
+  readonly verdict?: Pick<Verdict, 'outcome' | 'headline'>;
 }
 
 /** Both sums of the early watch against their limits: towards a rise upwards, towards a fall downwards. */
 export function earlyScene(drawing: EarlyDrawing): Scene {
-  const { found, rise, fall, starts, subject, asOf } = drawing;
+  const { found, rise, fall, starts, subject, asOf, verdict } = drawing;
   const state = leading(found);
   const mood = moodOf(state);
   const highest = reach(rise);
@@ -43,8 +46,9 @@ export function earlyScene(drawing: EarlyDrawing): Scene {
   ];
   return plate(
     {
-      title: titleOf(state, mood),
-      moved: mood === 'alarm',
+      title: titleOf(drawing),
+      moved: verdict ? verdict.outcome === 'risen' || verdict.outcome === 'fallen' : mood === 'alarm',
+      ...(verdict ? { lead: leadOf(verdict.headline) } : {}),
       counted: [
         `lost within ${found.tenure} of starting, account by account`,
         subject,
@@ -101,12 +105,29 @@ export function earlyScene(drawing: EarlyDrawing): Scene {
           ]
         : []),
       { words: `with nothing changed an alarm comes about once in ${count(found.falseAlarmEvery.accounts)} accounts` },
-      { words: 'an early watch, not the verdict', sign: 'heed' as const },
+      ...(verdict ? [] : [{ words: 'an early watch, not the verdict', sign: 'heed' as const }]),
     ],
   );
 }
 
-function titleOf(state: WatchState, mood: ReturnType<typeof moodOf>): string {
+const OUTCOMES: Readonly<Record<Verdict['outcome'], string>> = {
+  risen: 'Churn has risen',
+  fallen: 'Churn has fallen',
+  steady: 'Churn is steady',
+  'too-early': 'Too early to say',
+  'cannot-say': 'Cannot say',
+};
+
+/** The headline without what the title says already. */
+function leadOf(headline: string): string {
+  const rest = headline.replace(/^[^:;]*: /, '');
+  return rest.slice(0, 1).toUpperCase() + rest.slice(1);
+}
+
+function titleOf({ found, verdict }: EarlyDrawing): string {
+  if (verdict) return OUTCOMES[verdict.outcome];
+  const state = leading(found);
+  const mood = moodOf(state);
   if (mood === 'alarm') return `Early watch: alarm, a ${state.direction}`;
   if (mood === 'climbing') return `Early watch: climbing, ${Math.floor(100 * state.share)} % of the way`;
   return 'Early watch: quiet';
@@ -117,8 +138,11 @@ function reach({ path }: SumPath): number {
   return Math.max(1.15, 1.06 * path.reduce((most, { share }) => Math.max(most, share), 0));
 }
 
+/** Distances of ticks, in ways to an alarm. */
+const STEPS = [0.5, 1, 2, 5, 10, 20, 50, 100, 1_000];
+
 function ticks(lowest: number, highest: number): Tick[] {
-  const every = Math.max(lowest, highest) > 8 ? 5 : Math.max(lowest, highest) > 3 ? 1 : 0.5;
+  const every = STEPS.find((step) => (lowest + highest) / step <= 9) ?? STEPS.at(-1)!;
   const values: number[] = [];
   for (let at = -Math.floor(lowest / every) * every; at <= highest; at += every) values.push(at);
   return values.map((at) => ({ at, lines: [`${Math.round(Math.abs(at) * 100)} %`] }));
@@ -166,10 +190,11 @@ function dateLines(day: Day): string[] {
 }
 
 /** What the picture shows, for those who cannot see it. */
-export function earlyAltText({ found, subject }: EarlyDrawing): string {
+export function earlyAltText(drawing: EarlyDrawing): string {
+  const { found, subject, verdict } = drawing;
   const parts = [found.rise, found.fall].map(
     (state) =>
       `towards ${aimOf(state)} the sum stands at ${Math.floor(100 * state.share)} % of the way to its alarm${state.since === null ? '' : `, rising from zero since accounts that started on ${dayInWords(state.since.start)}`}`,
   );
-  return `${titleOf(leading(found), moodOf(leading(found)))}. Two sums over ${counted(found.watched.accounts, 'account')} of ${subject}, lost within ${found.tenure}: ${parts.join('; ')}. This is an early watch, not the verdict.`;
+  return `${verdict ? verdict.headline.replace(/\.$/, '') : titleOf(drawing)}. Two sums over ${counted(found.watched.accounts, 'account')} of ${subject}, lost within ${found.tenure}: ${parts.join('; ')}.${verdict ? '' : ' This is an early watch, not the verdict.'}`;
 }
