@@ -1,10 +1,10 @@
 import type { Chart } from '../../charts/types.ts';
-import { dayInWords } from '../../days.ts';
 import type { VerdictContext } from '../context.ts';
-import { exactLimitsSentence } from './exactLimits.ts';
 import type { Judgement } from '../judgement.ts';
+import { exactLimitsSentence } from './exactLimits.ts';
 import { counted, listed } from './format.ts';
 import { cutAdvice } from './testWords.ts';
+import { asOfInferredWords, NOT_WHY, OWN_DEFINITIONS } from './usual.ts';
 
 /** The limits of the answer, most particular first, the usual caution last. */
 export function cautions(chart: Chart | null, judgement: Judgement, context: VerdictContext): string[] {
@@ -20,8 +20,8 @@ export function cautions(chart: Chart | null, judgement: Judgement, context: Ver
     if (judgement.dispersion && judgement.dispersion.pValue < 0.01 && judgement.finding !== 'unsteady-baseline') {
       const times = judgement.dispersion.ratio.toFixed(1);
       list.push(
-        chart.kind === 'p-prime'
-          ? `The points vary about ${times} times as much as chance alone would make them (overdispersion), so the limits are set by how much they really vary from one point to the next (a Laney p-prime chart).`
+        chart.kind === 'p-prime' || chart.sigmaZ !== 1
+          ? `The points vary about ${times} times as much as chance alone would make them (overdispersion), so the limits are set by how much they really vary from one point to the next (${chart.kind === 'ewma' ? 'as on a Laney p-prime chart' : 'a Laney p-prime chart'}).`
           : `The points vary about ${times} times as much as chance alone would make them (overdispersion), so flags are raised too easily; the verdict asks for that much more evidence.`,
       );
     }
@@ -57,21 +57,19 @@ export function cautions(chart: Chart | null, judgement: Judgement, context: Ver
     list.push(`About how the data is cut: ${signal.words}; ${cutAdvice(signal.test as 4 | 7 | 8)}.`);
   }
   if (context.asOf !== null && context.asOfInferred) {
-    list.push(
-      `The data is taken to be complete through ${dayInWords(context.asOf)}, worked out from the file; correct it if it is not, since a wrong date makes young accounts look settled.`,
-    );
+    list.push(asOfInferredWords(context.asOf));
   }
   if (judgement.finding === 'risen' || judgement.finding === 'fallen') {
-    list.push('This says that something changed, not why; a before and after is no proof that any one action did it.');
+    list.push(NOT_WHY);
   }
-  list.push(
-    'For pay, forecasts, investors or auditors, your company’s own written definitions and its finance and legal people decide.',
-  );
+  list.push(OWN_DEFINITIONS);
   return list;
 }
 
 /** Which flags cannot be raised by a low point, because the limit would lie below zero. */
 function deafDownward(chart: Chart): string | null {
+  // A smoothed share goes below its limit when several points together are low, which is what it is for; a sum looks for falls by itself.
+  if (chart.kind === 'ewma' || chart.kind === 'cusum') return null;
   // At the newest point's size: where sizes differ, what can be flagged from here on.
   const sigma = chart.points.at(-1)!.sigma;
   const reach = [1, 2, 3].filter((k) => chart.center - k * sigma <= 0);
