@@ -94,10 +94,8 @@ const pooled = ({ rate, lost, accounts, low, high }: NonNullable<GroupReading['a
 
 function movedSentence(one: GroupReading, judged: number, { tenure }: WhereContext): string {
   const allowing =
-    judged > 1
-      ? `, and still ${chanceWords(one.adjusted!)} when it counts that ${numberWord(judged)} groups were looked at`
-      : '';
-  return `${begun(one)} has ${one.direction}: ${pooled(one.after!)} lost within ${tenure} among those who started from about ${dayInWords(one.since!.start)}, against ${pooled(one.before!)} before. With nothing changed, so much would show with a chance of ${chanceWords(one.chance!)}${allowing}.`;
+    judged > 1 ? `; allowing for the ${numberWord(judged)} groups looked at, ${chanceWords(one.adjusted!)}` : '';
+  return `${begun(one)} has ${one.direction}: ${pooled(one.after!)} lost within ${tenure} among those who started from about ${dayInWords(one.since!.start)}, against ${pooled(one.before!)} before. With nothing changed, a group would show so much with a chance of ${chanceWords(one.chance!)}${allowing}.`;
 }
 
 function aloneSentence(one: GroupReading, judged: number): string {
