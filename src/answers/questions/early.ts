@@ -1,7 +1,7 @@
 import { tenureInWords } from '../../census/tenure.ts';
 import { EbbError } from '../../errors.ts';
 import { drawPlate } from '../../picture/picture.ts';
-import { type EarlyDrawing, earlyAltText, earlyScene } from '../../picture/questions/early.ts';
+import { type EarlyDrawing, earlyAltText, earlyScene, noWatchScene } from '../../picture/questions/early.ts';
 import { chartAndJudge } from '../../verdict/chartAndJudge.ts';
 import type { Judgement } from '../../verdict/judgement.ts';
 import { earlyFigures, earlyWords } from '../../verdict/questions/early.ts';
@@ -28,9 +28,10 @@ export const answerEarly: AnswerSide<'early'> = async (context, request) => {
     byRate || census.subgroups.length === 0
       ? asked
       : chartAndJudge({ counts: census.subgroups, segments: census.segments, runLength: false });
-  if (chart === null || judgement === null || NO_LEVEL.has(judgement.finding)) return withoutLevel(asked.verdict);
+  if (chart === null || judgement === null || NO_LEVEL.has(judgement.finding))
+    return withoutLevel(context, asked.verdict);
   const watched = await watchAccounts(context.table, census, chart, judgement, moves);
-  if (watched.accounts === 0) return withoutLevel(asked.verdict);
+  if (watched.accounts === 0) return withoutLevel(context, asked.verdict);
   const found = earlyFindings(watched, census, {
     tenure: tenureInWords(census.request.tenure),
     segment: context.scope.segment ?? null,
@@ -57,15 +58,16 @@ export const answerEarly: AnswerSide<'early'> = async (context, request) => {
 /** Findings that leave no level to watch against. */
 const NO_LEVEL: ReadonlySet<Judgement['finding']> = new Set(['too-few-points', 'no-level', 'unsteady-baseline']);
 
-function withoutLevel({ headline, cautions, next }: SideVerdict): Reply {
+async function withoutLevel(context: SideContext, { headline, cautions, next }: SideVerdict): Promise<Reply> {
+  const told = `No early watch is possible: it needs a usual level to watch against. ${headline}`;
   return {
     kind: 'early',
-    headline: `No early watch is possible: it needs a usual level to watch against. ${headline}`,
+    headline: told,
     evidence: [],
     cautions,
     next,
     figures: { state: null, direction: null, rise: null, fall: null, falseAlarmEvery: null },
-    picture: null,
+    picture: context.picture ? await drawPlate(noWatchScene(told, context.subject, context.scope.asOf), told) : null,
   };
 }
 

@@ -110,6 +110,18 @@ export function earlyScene(drawing: EarlyDrawing): Scene {
   );
 }
 
+/** Without a usual level there is nothing to draw but the reason. */
+export function noWatchScene(headline: string, subject: string, asOf: Day): Scene {
+  return plate(
+    {
+      title: 'Early watch: not possible yet',
+      lead: headline,
+      counted: [subject, `data to ${dayInWords(asOf)}`],
+    },
+    [],
+  );
+}
+
 const OUTCOMES: Readonly<Record<Verdict['outcome'], string>> = {
   risen: 'Churn has risen',
   fallen: 'Churn has fallen',
