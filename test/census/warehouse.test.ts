@@ -4,6 +4,7 @@ import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { rowsOf } from '../../src/accounts/sql.ts';
 import { calendarSql } from '../../src/census/calendarSql.ts';
 import { censusSql } from '../../src/census/censusSql.ts';
+import { groupsCensusSql, groupTotalsSql } from '../../src/census/groupsSql.ts';
 import { renewalDaysSql, renewalSql } from '../../src/census/renewalSql.ts';
 import { lastMaturedStart } from '../../src/census/tenure.ts';
 import type { CensusRequest, Tenure } from '../../src/census/types.ts';
@@ -96,6 +97,21 @@ describe.skipIf(missing)(`the census on a Postgres server${missing ? ` (skipped:
   it.each(requests)('start view, %s: the same counts', async (_, request) => {
     const until = lastMaturedStart(AS_OF, request.tenure, request.settleDays);
     const [here, there] = await both(censusSql('accounts', request, FIRST, until, segmentsOf(request)));
+    expect(there).toEqual(here);
+    expect(here.length).toBeGreaterThan(0);
+  });
+
+  it.each(requests)('every group by itself, %s: the same counts', async (_, { tenure, settleDays, subgroupSize }) => {
+    const until = lastMaturedStart(AS_OF, tenure, settleDays);
+    const values = ['Windowsill', "Wren's own"];
+    const [totals, sameTotals] = await both(groupTotalsSql('accounts', values, tenure, FIRST, until));
+    expect(sameTotals).toEqual(totals);
+    expect(totals).toHaveLength(3);
+    const sizes = new Map([
+      [0, subgroupSize],
+      [2, 3 * subgroupSize],
+    ]);
+    const [here, there] = await both(groupsCensusSql('accounts', values, sizes, tenure, FIRST, until));
     expect(there).toEqual(here);
     expect(here.length).toBeGreaterThan(0);
   });

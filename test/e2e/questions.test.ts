@@ -4,7 +4,9 @@ import { type Bot, heard, imageOf, SAMPLE, startBot } from './support.ts';
 const VERDICT = /^Churn has fallen|^Churn is|^Cannot say|^Too early/;
 
 /** Every question around the verdict, as typed, and how its headline must begin. */
-const QUESTIONS: readonly (readonly [string, RegExp])[] = [];
+const QUESTIONS: readonly (readonly [string, RegExp])[] = [
+  ['where did churn move?', /^Churn has moved in all three groups of “plan”: /],
+];
 
 describe('the questions around the verdict, in the channel', () => {
   let bot: Bot;
