@@ -49,11 +49,6 @@ export async function takeRenewals(table: AccountTable, request: CensusRequest):
   if (matured + immature === 0 && request.segment !== undefined) throw segmentUnknown(table, request.segment);
   const waiting = matured % request.subgroupSize;
   const finished = waiting === 0 ? all : all.slice(0, -1);
-  const recent = sum(days.filter(({ due }) => due <= range.until && due > range.until - QUARTER_DAYS));
-  const since = Math.max(
-    range.until - QUARTER_DAYS + 1,
-    Math.min(tenurePoint(range.firstStart, request.tenure), range.until),
-  );
   const maturing = coming.map(({ due, accounts }) => ({ day: due + request.settleDays, accounts }));
   return {
     request,
@@ -72,7 +67,7 @@ export async function takeRenewals(table: AccountTable, request: CensusRequest):
     immature,
     nextPointOn: dayOf(maturing, request.subgroupSize - waiting),
     maturing,
-    inflowPerWeek: (recent * 7) / (range.until - since + 1),
+    inflowPerWeek: pace(days, range, request.tenure),
     segments: byNumber(finished),
   };
 }
@@ -86,8 +81,7 @@ export async function countRenewals(
   const range = renewalRange(table, whole);
   const days = await renewalDays(table, whole, range, range.firstStart);
   const matured = days.filter(({ due }) => due <= range.until);
-  const recent = matured.filter(({ due }) => due > range.until - QUARTER_DAYS);
-  return { accounts: sum(matured), lost: sum(matured, 'lost'), perWeek: (sum(recent) * 7) / QUARTER_DAYS };
+  return { accounts: sum(matured), lost: sum(matured, 'lost'), perWeek: pace(days, range, request.tenure) };
 }
 
 interface Building {
@@ -104,6 +98,12 @@ interface RenewalDay {
 
 function sum(days: readonly RenewalDay[], what: 'accounts' | 'lost' = 'accounts'): number {
   return days.reduce((all, day) => all + day[what], 0);
+}
+
+/** Matured renewals a week over the last quarter of a year, or since the first could come up. */
+function pace(days: readonly RenewalDay[], { firstStart, until }: RenewalRange, tenure: Tenure): number {
+  const from = Math.max(until - QUARTER_DAYS + 1, Math.min(tenurePoint(firstStart, tenure), until));
+  return (sum(days.filter(({ due }) => due >= from && due <= until)) * 7) / (until - from + 1);
 }
 
 function checkPoints(renewals: number, size: number): void {

@@ -18,7 +18,10 @@ export function contractJson(answer: Answer): Record<string, unknown> {
       view: census?.request.view ?? 'start',
       sigmaZ: chart?.sigmaZ ?? 1,
       subgroupSize: chart ? chart.subgroupSize : sizeAsked(answer),
+      // What `value`, `center` and the limits are: fractions, accounts, days, or numbers of the asker's own.
+      scale: chart?.scale ?? 'rate',
       center: chart?.center ?? null,
+      ...(chart?.mean === undefined ? {} : { mean: chart.mean }),
       baseline: chart ? chart.baseline : null,
       points: (chart?.points ?? []).map((point, i) => ({
         ...point,
@@ -42,7 +45,8 @@ export function contractJson(answer: Answer): Record<string, unknown> {
           nextPointOn: iso(census?.nextPointOn),
         }
       : null,
-    plan: answer.plan,
+    // What was recommended for a size and an age plays no part in calendar months.
+    plan: census?.request.view === 'calendar' ? null : answer.plan,
     timing,
   };
 }

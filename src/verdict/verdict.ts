@@ -10,6 +10,7 @@ import { capitalised, counted, percentagePoints } from './words/format.ts';
 import { headline } from './words/headline.ts';
 import { nextSteps } from './words/next.ts';
 import { furtherTrustSentences } from './words/trust.ts';
+import { viewWords } from './words/viewWords.ts';
 
 const OUTCOME: Readonly<Record<Finding, Outcome>> = {
   risen: 'risen',
@@ -59,7 +60,7 @@ export function writeVerdict(chart: Chart | null, judgement: Judgement, context:
     ...trustSentences(judgement, context, judgement.finding === 'steady'),
     ...(chart ? [countSentence(chart.points.length, context, sizesOf(chart))] : []),
     ...context.howChosen,
-    ...furtherTrustSentences(judgement, context.tenure === null ? 'case' : 'account'),
+    ...furtherTrustSentences(judgement, context.tenure === null ? 'case' : viewWords(context.view).pooledOne),
   ];
 
   return {

@@ -1,7 +1,7 @@
 import { takeRenewals } from '../../census/renewalCensus.ts';
 import { planRenewals } from '../../census/renewalPlan.ts';
 import { tenureInWords } from '../../census/tenure.ts';
-import { capitalised } from '../../verdict/words/format.ts';
+import { capitalised, counted } from '../../verdict/words/format.ts';
 import { renewalCautions } from '../../verdict/words/viewCautions.ts';
 import { answerCensus } from './bySubgroups.ts';
 import type { AskContext, Reached } from './types.ts';
@@ -24,6 +24,9 @@ export async function byRenewal(context: AskContext): Promise<Reached> {
     tenure: words,
     countedAt: context.clock(),
     howChosen: [
+      ...(census.matured > 0 && plan.rate === 0
+        ? [`None of the ${counted(census.matured, 'renewal')} so far was lost.`]
+        : []),
       ...(question.tenure ? [] : [`A renewal every ${words.replace(/^1 /, '')}: ${plan.tenureWhy}.`]),
       ...(question.subgroupSize ? [] : [`${capitalised(plan.sizeWhy)}.`]),
     ],

@@ -112,5 +112,5 @@ function monthsSentence(points: number, { withheld }: VerdictContext, sizes: rea
   const [least, most] = [Math.min(...sizes), Math.max(...sizes)];
   const customers = least === most ? counted(least, 'customer') : `${count(least)} to ${counted(most, 'customer')}`;
   const rest = withheld ? `; ${day(withheld.first)} is not over in the data and left out` : '';
-  return `Counted ${order}: ${counted(points, 'month')}, each beginning with ${customers}${rest}. A customer counts once in every month it begins.`;
+  return `Counted ${order}: ${counted(points, 'month')}, ${points === 1 ? '' : 'each '}beginning with ${customers}${rest}. A customer counts once in every month it begins.`;
 }

@@ -29,8 +29,8 @@ export function exactLimitsSentence(chart: Chart): string | null {
   const expected = Math.min(chart.center, 1 - chart.center) * last.accounts;
   if (expected >= FEW && drawn.length + exact.length === 0) return null;
 
-  const what =
-    expected < FEW ? `With about ${expected.toFixed(1)} to be expected a point, three sigma limits are rough. ` : '';
+  const few = `${expected < 0.05 ? 'hardly any' : `about ${expected.toFixed(1)}`} ${chart.center > 0.5 ? 'kept' : 'lost'} a point`;
+  const what = expected < FEW ? `With ${few} to be expected, three sigma limits are rough. ` : '';
   const differ = [
     drawn.length > 0
       ? `${named(drawn)} beyond the drawn limits and within the exact ones: no flag by ${drawn.length === 1 ? 'itself' : 'themselves'}`
@@ -53,7 +53,11 @@ function allowed(point: Exact): string {
 }
 
 const range = (lowest: number, highest: number): string =>
-  lowest > 0 ? `${count(lowest)} to ${count(highest)}` : `up to ${count(highest)}`;
+  lowest === highest
+    ? `only ${count(highest)}`
+    : lowest > 0
+      ? `${count(lowest)} to ${count(highest)}`
+      : `up to ${count(highest)}`;
 
 function named(points: readonly ChartPoint[]): string {
   const numbers = points.slice(0, TOLD).map(({ index }) => String(index));

@@ -42,7 +42,9 @@ export function renewalCautions(facts: {
   const each = tenure.replace(/^1 /, '');
   const cautions = [
     `The export holds no renewals: one is taken to come every ${each} after an account’s start, and whoever leaves in between counts at the next.${
-      given ? '' : ' Name the interval if yours is another: “by renewal at 12 months”.'
+      given
+        ? ''
+        : ` Name the interval if yours is another: “by renewal at ${tenure === '12 months' ? '1 month' : '12 months'}”.`
     }`,
   ];
   if (firstShare !== null) {
