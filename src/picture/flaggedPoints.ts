@@ -1,4 +1,5 @@
 import { zoneOf } from '../charts/tests/zone.ts';
+import { zoneBetween } from '../charts/tests/zoneEdges.ts';
 import type { Chart, ChartPoint } from '../charts/types.ts';
 import type { PictureInput, Signal, SignalState } from '../verdict/types.ts';
 
@@ -9,7 +10,9 @@ const RANK: readonly SignalState[] = ['passed', 'watching', 'standing'];
  * level there may lie one above it, which belongs to the stretch but is no member. When churn moved, the marks of the flags behind that
  * begin where the bracket begins.
  */
-export function flaggedPoints(input: PictureInput): ReadonlyMap<number, SignalState> {
+export function flaggedPoints(
+  input: Pick<PictureInput, 'chart' | 'signals' | 'verdict'>,
+): ReadonlyMap<number, SignalState> {
   const marked = new Map<number, SignalState>();
   const { chart, signals, verdict } = input;
   if (!chart) return marked;
@@ -32,6 +35,6 @@ const LEAST_ZONE: Record<number, number> = { 1: 4, 2: 1, 5: 3, 6: 2 };
 function isMember(signal: Signal, point: ChartPoint, chart: Chart): boolean {
   const least = LEAST_ZONE[signal.test];
   if (least === undefined) return true;
-  const zone = zoneOf(point.value, chart.center, point.sigma);
+  const zone = point.edges ? zoneBetween(point.value, point.edges) : zoneOf(point.value, chart.center, point.sigma);
   return signal.side === 'below' ? zone <= -least : signal.side === 'above' ? zone >= least : Math.abs(zone) >= least;
 }

@@ -6,6 +6,7 @@ type Loaders = { readonly [K in SideKind]?: () => Promise<AnswerSide<K>> };
 
 /** Every question by its kind, loaded when first asked: a verdict need not wait for the code of all the others. */
 const QUESTIONS: Loaders = {
+  explain: async () => (await import('./explain.ts')).answerExplain,
   reconcile: async () => (await import('./reconcile.ts')).answerReconcile,
   spread: async () => (await import('./spread.ts')).answerSpread,
   revenue: async () => (await import('./revenue.ts')).answerRevenue,

@@ -101,7 +101,7 @@ function chartPart({ reading, chart, dates }: TargetPictureInput): Part {
     const inside = (index: number): boolean => index >= stretch.from && index <= stretch.to;
     return {
       ink: ink(
-        ground(plot, end, slots + 0.6, '#f3f2ec'),
+        ground(plot, end, end + AHEAD, '#f3f2ec'),
         ...(target < 1 && target > 0 ? [level(plot, target, { color: SAND_INK, width: 3, dash: [10, 6] })] : []),
         band(
           plot,
@@ -110,7 +110,7 @@ function chartPart({ reading, chart, dates }: TargetPictureInput): Part {
         ),
         band(
           plot,
-          [end, slots + 0.6].map((x) => ({ x, ...nextRange })),
+          [end, end + AHEAD].map((x) => ({ x, ...nextRange })),
           { color: WATER_PALE, opacity: 0.7 },
         ),
         line(
@@ -119,7 +119,7 @@ function chartPart({ reading, chart, dates }: TargetPictureInput): Part {
           { color: '#7d888d', width: 1.4 },
         ),
         level(plot, interval.estimate, { from: first, to: end, color: LEVEL, width: 3.5 }),
-        level(plot, interval.estimate, { from: end, to: slots + 0.6, color: LEVEL, width: 2, dash: [5, 5] }),
+        level(plot, interval.estimate, { from: end, to: end + AHEAD, color: LEVEL, width: 2, dash: [5, 5] }),
         ranges(
           plot,
           Array.from({ length: AHEAD }, (_, i) => ({ x: shown.length + 1 + i, ...nextRange })),

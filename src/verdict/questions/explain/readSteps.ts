@@ -1,0 +1,56 @@
+import { dayInWords, isoDay } from '../../../days.ts';
+import { capitalised, count, counted, listed } from '../../words/format.ts';
+import type { Explained, Step } from './steps.ts';
+
+/** From the rows of the file to the points. */
+export function readSteps(from: Explained): Step[] {
+  return [rowsRead(from), matured(from), points(from)].filter((step) => step !== null);
+}
+
+function rowsRead({ report }: Explained): Step | null {
+  if (!report) return null;
+  const { rows, accounts, mergedRows, rejected } = report;
+  const left = rejected.reduce((sum, entry) => sum + entry.rows, 0);
+  const reasons = rejected.map((entry) => `${count(entry.rows)} because ${entry.reason}`);
+  return {
+    title: 'Rows read',
+    sentences: [
+      `${capitalised(counted(rows, 'row'))} read, ${count(left)} left out by rule${left > 0 ? ` (${listed(reasons)})` : ''}, ${count(mergedRows)} joined to another row of the same account: ${counted(accounts, 'account')}.`,
+    ],
+    figures: { rows, leftOut: left, mergedRows, accounts },
+  };
+}
+
+function matured({ census, tenure }: Explained): Step | null {
+  if (!census || tenure === null) return null;
+  const { matured: old, immature, request } = census;
+  const settle = request.settleDays > 0 ? ` and ${counted(request.settleDays, 'day')} for late bookings` : '';
+  const whose = request.segment === undefined ? '' : ` of ${request.segment}`;
+  return {
+    title: 'Old enough',
+    sentences: [
+      `An account${whose} is counted, lost or not, once it has had ${tenure}${settle} by ${dayInWords(request.asOf)}: ${count(old)} have, ${count(immature)} are too young (${count(old)} + ${count(immature)} = ${count(old + immature)}).`,
+    ],
+    figures: { asOf: isoDay(request.asOf), matured: old, immature },
+  };
+}
+
+function points({ census, chart, bySubgroups }: Explained): Step | null {
+  if (!census || !chart || !bySubgroups) return null;
+  const { matured: old, waiting, request } = census;
+  const found = chart.points.length;
+  const sizes = chart.points.map(({ accounts }) => accounts);
+  const charted = sizes.reduce((sum, n) => sum + n, 0);
+  const sum =
+    chart.subgroupSize === null
+      ? `${counted(found, 'point')} of ${count(Math.min(...sizes))} to ${counted(Math.max(...sizes), 'account')}`
+      : `${counted(found, 'point')} of ${counted(chart.subgroupSize, 'account')}`;
+  const order = { start: 'start', renewal: 'renewal', calendar: 'month' }[request.view];
+  return {
+    title: 'Points',
+    sentences: [
+      `In order of ${order} they are cut into ${sum}${request.view === 'start' && chart.subgroupSize !== null ? `, and ${count(waiting)} wait for the next one (${count(found)} × ${count(chart.subgroupSize)} + ${count(waiting)} = ${count(charted + waiting)})` : ''}. A point’s value is its lost over its accounts.`,
+    ],
+    figures: { points: found, subgroupSize: chart.subgroupSize, charted, waiting, matured: old },
+  };
+}
