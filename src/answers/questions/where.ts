@@ -125,6 +125,8 @@ function checkRequest(request: SideQuestionOf<'where'>): void {
 /** The stretches of all accounts that are told apart: those of the verdict's own before and after, when it has them. */
 function stretchesFor(overall: Answer, census: Census): Stretches | null {
   const points = census.subgroups.length;
+  // Fewer points say as little about parts as about the whole.
+  if (points < LEAST_POINTS) return null;
   const { chart } = overall;
   if (chart === null || chart.points.length !== points || chart.kind === 'g' || chart.kind === 't')
     return stretchesOf(points, points, null);

@@ -156,6 +156,9 @@ describe('where did churn move', () => {
     expect(reply.headline).toContain('none could be judged');
     expect(text(reply)).not.toMatch(/NaN|Infinity|undefined|null/);
     expect(figures(reply).judged).toBe(0);
+    expect(text(reply)).toContain('2 groups were looked at, and none could be judged.');
+    // Of so few points not even the change is told apart.
+    expect(figures(reply).change).toBeNull();
   });
 
   test('a day that was asked about splits every group there', async () => {

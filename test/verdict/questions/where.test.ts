@@ -238,7 +238,7 @@ describe('the change of all accounts, told apart', () => {
         [2, 2, 0.5, 0.5].map((d) => d * 1),
       ),
     ];
-    const change = changeOf(segments, stretchesOf(4, 2, null))!;
+    const change = changeOf(segments, stretchesOf(4, 4, 3))!;
     expect(change.ratePart).toBeCloseTo(0, 12);
     expect(change.mixPart).toBeCloseTo(0.045, 12);
     const [whole, share] = changeWords(change, { before: 'before', after: 'since' });
@@ -246,6 +246,14 @@ describe('the change of all accounts, told apart', () => {
     expect(whole).toContain('Rates within the groups make 0.00 of it');
     expect(whole).toContain('+4.50.');
     expect(share).toMatch(/^The group whose share mattered most is /);
+  });
+
+  test('where nothing moved the parts are told as a description, and no group is singled out', () => {
+    const segments = [counts('A', [50, 50], [2, 9]), counts('B', [50, 50], [9, 2])];
+    const told = changeWords(changeOf(segments, stretchesOf(2, 2, null))!, { before: 'before', after: 'since' });
+    expect(told).toHaveLength(2);
+    expect(told[0]).toMatch(/^All accounts together show no move to compare before and after, so the first half/);
+    expect(told[1]).toContain('no news');
   });
 
   test('the figures told add up as they are printed, whatever the counts', () => {

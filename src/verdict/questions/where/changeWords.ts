@@ -15,6 +15,12 @@ export function changeWords(change: Change, when: { readonly before: string; rea
   const sentences = [
     `${LEAD[change.basis]}from ${exactly(change.before)} (${when.before}) to ${exactly(change.after)} (${when.after}): ${points(total)} percentage points. Rates within the groups make ${points(rates)} of it (95 % interval ${points(hundredths(change.ratePartLow))} to ${points(hundredths(change.ratePartHigh))}), and the mix, how the accounts spread over the groups, ${points(total - rates)}.`,
   ];
+  if (change.basis !== 'move') {
+    sentences.push(
+      'No move was found in that, so the parts are a description and no news: some difference between two stretches there always is.',
+    );
+    return sentences;
+  }
   const largest = (part: 'ratePart' | 'mixPart'): number =>
     change.groups.reduce(
       (best, group, i) => (Math.abs(group[part]) > Math.abs(change.groups[best]![part]) ? i : best),

@@ -108,7 +108,8 @@ function chanceWords(chance: number): string {
 }
 
 function togetherSentence(all: number, judged: number, moved: number): string[] {
-  const looked = `${counted(all, 'group was', 'groups were')} looked at, and ${judged === all ? 'all' : count(judged)} could be judged, each by its own chart.`;
+  const some = judged === 0 ? 'none' : judged === all ? 'all' : count(judged);
+  const looked = `${counted(all, 'group was', 'groups were')} looked at, and ${some} could be judged${judged === 0 ? '' : ', each by its own chart'}.`;
   if (judged < 2) return [looked];
   return [
     `${looked} As each has its own chance of a false alarm, a group must stand out more than it would have to alone: of groups called moved in this way, about 5 in 100 at most are expected to be false alarms (Benjamini-Hochberg)${moved === 0 ? ', and none got that far' : ''}.`,
@@ -225,6 +226,10 @@ function nextOf(
   if (first)
     steps.push(
       `${asked(first)}, and look for what changed for accounts starting around ${dayInWords(first.since!.start)}: price, offer, channel, product, or how the export is made.`,
+    );
+  else if (moved.length > 0)
+    steps.push(
+      'What moved is many groups taken together: name a column with fewer values to see which of them it was.',
     );
   const close = alone.find((one) => one.pooled === null);
   if (close) steps.push(`${asked(close)}; its next points will settle whether it lasts. Do nothing yet.`);
