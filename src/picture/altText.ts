@@ -1,9 +1,12 @@
-import type { PictureInput } from '../verdict/types.ts';
+import type { Day } from '../days.ts';
+import type { PictureInput, PooledRate } from '../verdict/types.ts';
 import { withinLimits } from '../verdict/words/testWords.ts';
-import { capitalised, count, countOf, heldDate, limitPercent, percent, percentRange } from './figures.ts';
+import { viewWords } from '../verdict/words/viewWords.ts';
+import { capitalised, count, countOf, heldDate, heldPoint } from './figures.ts';
 import { candidateWords, immatureWords, waitingWords } from './notes.ts';
 import { moreFlags, stretches } from './stretches.ts';
 import { shortTitle, titleAndRest, wouldSeeWords } from './title.ts';
+import { type ValueScale, valueScale } from './valueScale.ts';
 
 /** Longest alternative text, in characters. */
 const MOST = 1000;
@@ -27,6 +30,7 @@ export function altText(input: PictureInput): string {
 
 function sentences(input: PictureInput): string[] {
   const { chart, verdict, dates } = input;
+  const scale = valueScale(chart);
   const first = finding(input);
   const said: string[] = [first.length < LONGEST_FINDING ? first : shortTitle(input), wouldSeeWords(input)];
   said.push(
@@ -35,14 +39,13 @@ function sentences(input: PictureInput): string[] {
   if (chart && chart.points.length > 0) {
     const begin = dates[0]?.firstStart ?? null;
     const last = dates[chart.points.length - 1]?.firstStart ?? null;
-    const span =
-      begin === null || last === null ? '' : `, for accounts that started from ${heldDate(begin)} to ${heldDate(last)}`;
+    const span = begin === null || last === null ? '' : `, ${spanWords(input, begin, last)}`;
     const { baseline } = chart;
     said.push(`The chart shows ${countOf(chart.points.length, 'point')}${span}`);
     const end = chart.points.at(-1);
-    const band = end ? chanceWords(withinLimits(chart.kind), end.lower, end.upper) : '';
+    const band = end ? chanceWords(withinLimits(chart.kind), end.lower, end.upper, scale) : '';
     said.push(
-      `The usual level is ${percent(chart.center)}, set from points ${baseline.first} to ${baseline.last}${baseline.provisional ? ', provisional' : ''}${band}`,
+      `The usual ${scale.of === 'gaps' ? 'gap' : 'level'} is ${scale.words(chart.center)}, set from points ${baseline.first} to ${baseline.last}${baseline.provisional ? ', provisional' : ''}${band}`,
     );
   } else said.push('There is no point to draw yet');
   const marked = stretches(input.signals);
@@ -62,18 +65,31 @@ function sentences(input: PictureInput): string[] {
     said.push(`Not one level: the points change about between point ${input.split.after} and ${input.split.after + 1}`);
   said.push(capitalised(candidateWords(input)));
   if (verdict.after && verdict.before && verdict.since)
-    said.push(
-      `Before: ${count(verdict.before.lost)} of ${countOf(verdict.before.accounts, 'account')} lost; since then: ${count(verdict.after.lost)} of ${countOf(verdict.after.accounts, 'account')}`,
-    );
+    said.push(`Before: ${lostOf(verdict.before, input)} lost; since then: ${lostOf(verdict.after, input)}`);
   said.push(capitalised(waitingWords(input)), immatureWords(input));
   return said;
 }
 
-function chanceWords(within: string, lower: number, upper: number): string {
+/** From the first point's first day to the last point's. */
+function spanWords(input: PictureInput, from: Day, to: Day): string {
+  if (input.chart?.scale === 'days') return `from ${heldDate(from)} to ${heldDate(to)}`;
+  return input.view === undefined || input.view === 'start'
+    ? `for accounts that started from ${heldDate(from)} to ${heldDate(to)}`
+    : `for ${viewWords(input.view).span(heldPoint(input, from), heldPoint(input, to))}`;
+}
+
+/** "25 of 3,100 accounts", "25 accounts in 420 days" */
+function lostOf({ lost, accounts, days }: PooledRate, { view }: PictureInput): string {
+  return days === undefined
+    ? `${count(lost)} of ${countOf(accounts, viewWords(view).pooledOne)}`
+    : `${countOf(lost, 'account')} in ${countOf(days, 'day')}`;
+}
+
+function chanceWords(within: string, lower: number, upper: number, scale: ValueScale): string {
   if (upper <= lower) return '';
   return lower > 0
-    ? `; ${within} keeps points between ${limitPercent(lower, upper)} and ${percent(upper)}`
-    : `; ${within} keeps points below ${percent(upper)}`;
+    ? `; ${within} keeps points between ${scale.limitWords(lower, upper)} and ${scale.words(upper)}`
+    : `; ${within} keeps points below ${scale.words(upper)}`;
 }
 
 function finding(input: PictureInput): string {
@@ -84,9 +100,14 @@ function finding(input: PictureInput): string {
   const from = since
     ? since.start === null
       ? `from about point ${since.point}`
-      : `for accounts starting from about ${heldDate(since.start)}`
+      : input.chart?.scale === 'days'
+        ? `from about ${heldDate(since.start)}`
+        : input.view === undefined || input.view === 'start'
+          ? `for accounts starting from about ${heldDate(since.start)}`
+          : viewWords(input.view).since(heldPoint(input, since.start))
     : '';
-  return `${title} ${from}: about ${percent(after.rate)} (${percentRange(after.low, after.high)}), against ${percent(before.rate)} (${percentRange(before.low, before.high)}) before`;
+  const { levelWords } = valueScale(input.chart);
+  return `${title} ${from}: about ${levelWords(after)}, against ${levelWords(before)} before`;
 }
 
 function tidy(text: string): string {

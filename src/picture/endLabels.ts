@@ -1,9 +1,9 @@
 import type { PictureInput } from '../verdict/types.ts';
 import { withinLimits } from '../verdict/words/testWords.ts';
-import { limitPercent, percent } from './figures.ts';
 import { EMBER, INK, LEVEL, TEXT_SIZE, WATER_EDGE } from './palette.ts';
 import { type Frame, type PlacedText, type Stroke, xAt, yAt } from './scene.ts';
 import { textWidth } from './textWidth.ts';
+import { plottedLevels, valueScale } from './valueScale.ts';
 
 interface EndLabel {
   readonly lines: readonly string[];
@@ -24,34 +24,36 @@ export function endLabels(input: PictureInput): EndLabel[] {
   const labels: EndLabel[] = [];
   const spread = last.upper > last.lower;
   const within = withinLimits(chart.kind);
-  if (spread && last.upper < 1)
+  const scale = valueScale(chart);
+  if (spread && (last.upper < 1 || scale.of !== 'rates'))
     labels.push({
-      lines: [within, 'stays below', limitPercent(last.upper, last.lower)],
-      value: last.upper,
+      lines: [within, 'stays below', scale.limitWords(last.upper, last.lower)],
+      value: scale.place(last.upper),
       color: INK,
       line: WATER_EDGE,
       role: 'limit',
     });
   labels.push({
-    lines: ['usual level', percent(chart.center)],
-    value: chart.center,
+    lines: scale.usualWords(chart.center),
+    value: scale.place(chart.center),
     color: LEVEL,
     line: LEVEL,
     role: 'center',
   });
-  if (spread && last.lower > 0)
+  if (spread && (last.lower > 0 || scale.of === 'numbers'))
     labels.push({
-      lines: [within, 'stays above', limitPercent(last.lower, last.upper)],
-      value: last.lower,
+      lines: [within, 'stays above', scale.limitWords(last.lower, last.upper)],
+      value: scale.place(last.lower),
       color: INK,
       line: WATER_EDGE,
       role: 'limit',
     });
-  const { after, outcome } = input.verdict;
-  if (after && (outcome === 'risen' || outcome === 'fallen'))
+  const { outcome } = input.verdict;
+  const { after } = plottedLevels(input);
+  if (after !== null && (outcome === 'risen' || outcome === 'fallen'))
     labels.push({
-      lines: ['since then', `about ${percent(after.rate)}`],
-      value: after.rate,
+      lines: scale.sinceWords(after),
+      value: scale.place(after),
       color: EMBER,
       line: EMBER,
       role: 'after',

@@ -1,20 +1,25 @@
 import type { PictureInput } from '../verdict/types.ts';
-import { capitalised, count, countOf, heldDate, percent, percentRange } from './figures.ts';
+import { viewWords } from '../verdict/words/viewWords.ts';
+import { capitalised, count, countOf, heldDate } from './figures.ts';
 import { EMBER, INK, LEAD_SIZE, LEVEL, LINE, MARGIN, QUIET, TEXT_SIZE, TITLE_SIZE, WIDTH } from './palette.ts';
 import type { PlacedText, Stroke } from './scene.ts';
 import { drawable, textWidth } from './textWidth.ts';
 import { titleAndRest, wouldSeeWords } from './title.ts';
+import { valueScale } from './valueScale.ts';
 import { wrapEvenly } from './wrapText.ts';
 
 /** What is counted, in the order a reader asks: what, of whom, how many a point, up to when. */
 export function countedLine(input: PictureInput): string {
   const parts = [capitalised(input.measure), input.subject];
   if (input.chart) {
-    const sizes = input.chart.points.map((point) => point.accounts);
+    const { of } = valueScale(input.chart);
+    if (of === 'gaps') parts.push('each point: one loss');
+    const sizes = of === 'rates' ? input.chart.points.map((point) => point.accounts) : [];
     const smallest = Math.min(...sizes);
     const largest = Math.max(...sizes);
-    if (smallest === largest) parts.push(`each point: ${countOf(smallest, 'account')}`);
-    else if (sizes.length > 0) parts.push(`each point: ${count(smallest)} to ${countOf(largest, 'account')}`);
+    const { one } = viewWords(input.view);
+    if (sizes.length > 0 && smallest === largest) parts.push(`each point: ${countOf(smallest, one)}`);
+    else if (sizes.length > 0) parts.push(`each point: ${count(smallest)} to ${countOf(largest, one)}`);
   }
   if (input.asOf !== null) parts.push(`data to ${heldDate(input.asOf)}`);
   return parts.filter((part) => part.trim() !== '').join(' · ');
@@ -59,9 +64,10 @@ export function header(input: PictureInput): {
     block(wouldSee, TEXT_SIZE, 400, INK, 'headline');
   }
   y += 6;
-  block(countedLine(input), TEXT_SIZE, 400, QUIET, 'counted');
+  // A dot stays with what it follows, so that no line begins with one.
+  block(countedLine(input).replaceAll(' · ', '\u00a0· '), TEXT_SIZE, 400, QUIET, 'counted');
   for (const [i, text] of texts.entries())
-    if (text.role === 'counted') texts[i] = { ...text, text: text.text.replace(/ ·$/, '') };
+    if (text.role === 'counted') texts[i] = { ...text, text: text.text.replace(/\u00a0·$/, '') };
   const { before, after } = input.verdict;
   if (moved && before && after) {
     y += 12 + TEXT_SIZE * LINE;
@@ -70,7 +76,7 @@ export function header(input: PictureInput): {
       ['before', before, LEVEL],
       ['since then about', after, EMBER],
     ] as const) {
-      const text = `${word} ${percent(level.rate)} (${percentRange(level.low, level.high)})`;
+      const text = `${word} ${valueScale(input.chart).levelWords(level)}`;
       const width = 40 + textWidth(text, TEXT_SIZE, 700);
       if (x > MARGIN && x + width > WIDTH - MARGIN) {
         x = MARGIN;

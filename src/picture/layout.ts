@@ -14,6 +14,7 @@ import { pointMarks } from './pointMarks.ts';
 import { type Frame, type LevelLine, type PlacedText, type Scene, type Stroke, yAt } from './scene.ts';
 import { type Stretch, stretches } from './stretches.ts';
 import { textWidth } from './textWidth.ts';
+import { placedChart, plottedLevels, type ValueScale, valueScale } from './valueScale.ts';
 
 /** Places everything the picture shows. Draws what it is given: no limit, level or verdict is computed here. */
 export function layout(input: PictureInput): Scene {
@@ -22,7 +23,9 @@ export function layout(input: PictureInput): Scene {
   const head = header(input);
   const ends = endLabels(input);
   const range = domains(input);
-  const tickWords = tickLabels(range.ticks);
+  const scale = valueScale(chart);
+  const placed = placedChart(chart, scale);
+  const tickWords = scale.of === 'rates' ? tickLabels(range.ticks) : range.ticks.map(scale.tickWords);
   const across = {
     left: MARGIN + Math.max(...tickWords.map((words) => textWidth(words, TEXT_SIZE, 400))) + 12,
     right: WIDTH - MARGIN - endLabelsWidth(ends) - 24,
@@ -40,7 +43,12 @@ export function layout(input: PictureInput): Scene {
   };
 
   const axis = dateAxis(chart.points.length, input.dates, frame);
-  const below = notes(input, lane.unlabelled, axis.bottom + 12, (range.ticks[0] ?? 0) > 0 ? (tickWords[0] ?? '') : '');
+  const below = notes(
+    input,
+    lane.unlabelled,
+    axis.bottom + 12,
+    scale.of === 'rates' && (range.ticks[0] ?? 0) > 0 ? (tickWords[0] ?? '') : '',
+  );
   const flags = placeFlagLane(lane, marked, frame);
   const limits = placeEndLabels(ends, chart.points.length, frame);
   const ground = baselineGround(chart, frame);
@@ -53,7 +61,7 @@ export function layout(input: PictureInput): Scene {
     (text, i): PlacedText => ({
       text,
       x: frame.left - 10,
-      y: yAt(frame, range.ticks[i] ?? 0) + 7,
+      y: yAt(frame, scale.place(range.ticks[i] ?? 0)) + 7,
       size: TEXT_SIZE,
       weight: 400,
       color: QUIET,
@@ -62,7 +70,7 @@ export function layout(input: PictureInput): Scene {
     }),
   );
   const gridlines = range.ticks.map((tick): Stroke => {
-    const y = yAt(frame, tick);
+    const y = yAt(frame, scale.place(tick));
     return {
       x: frame.left,
       y,
@@ -87,9 +95,9 @@ export function layout(input: PictureInput): Scene {
     slabs: ground.slabs,
     veils: start.slabs,
     under: [...gridlines, ...ground.strokes],
-    band: bandRows(chart),
-    levels: levelLines(input, chart),
-    points: pointMarks(chart, flaggedPoints(input), slotPx),
+    band: bandRows(placed),
+    levels: levelLines(input, placed, scale),
+    points: pointMarks(placed, flaggedPoints(input), slotPx),
     line: slotPx < 3 ? { width: 0.8, opacity: 0.42 } : { width: 1.6, opacity: 0.55 },
     over: [
       floor,
@@ -142,7 +150,7 @@ function bandRows(chart: Chart): Scene['band'] {
   return rows;
 }
 
-function levelLines(input: PictureInput, chart: Chart): LevelLine[] {
+function levelLines(input: PictureInput, chart: Chart, scale: ValueScale): LevelLine[] {
   const { baseline, center, points } = chart;
   const end = points.length + 0.5;
   const lines: LevelLine[] = [
@@ -164,22 +172,23 @@ function levelLines(input: PictureInput, chart: Chart): LevelLine[] {
       width: 2.4,
       dash: [9, 5],
     });
-  const { before, after, since, outcome } = input.verdict;
+  const { since, outcome } = input.verdict;
+  const { before, after } = plottedLevels(input);
   if (since && (outcome === 'risen' || outcome === 'fallen')) {
-    if (before)
+    if (before !== null)
       lines.push({
         x: 0.5,
         x2: since.point - 0.5,
-        value: before.rate,
+        value: scale.place(before),
         color: LEVEL,
         width: 4.5,
         dash: [],
       });
-    if (after)
+    if (after !== null)
       lines.push({
         x: since.point - 0.5,
         x2: end,
-        value: after.rate,
+        value: scale.place(after),
         color: EMBER,
         width: 4.5,
         dash: [],

@@ -1,11 +1,13 @@
 import type { Day } from '../days.ts';
 import type { PictureInput } from '../verdict/types.ts';
-import { count, countOf, dateShort, heldDate } from './figures.ts';
+import { viewWords } from '../verdict/words/viewWords.ts';
+import { count, countOf, heldDate, heldPoint, shortPoint } from './figures.ts';
 import { EMBER, INK, LINE, MARGIN, QUIET, TEXT_SIZE, WIDTH } from './palette.ts';
 import { EXCLUDED_MARK, GHOST_MARK, PASSED_MARK, WATCHING_MARK } from './pointMarks.ts';
 import type { MarkStyle, PlacedMark, PlacedText, Stroke } from './scene.ts';
 import type { Stretch } from './stretches.ts';
 import { drawable } from './textWidth.ts';
+import { valueScale } from './valueScale.ts';
 import { wrapText } from './wrapText.ts';
 
 interface Note {
@@ -23,12 +25,21 @@ const GENERAL = /taken to be complete through|finance and legal/i;
 export function waitingWords(input: PictureInput): string {
   const waiting = input.waiting;
   if (!waiting) return '';
-  const due = waiting.on === null ? 'due when enough accounts have started' : `due about ${heldDate(waiting.on)}`;
-  return `next point: ${count(waiting.accounts)} of ${countOf(waiting.of, 'account')} so far, ${due}`;
+  if (input.view === 'calendar')
+    return waiting.on === null ? '' : `${heldPoint(input, waiting.on)} is not over in the data and left out`;
+  const due =
+    waiting.on === null
+      ? input.view === 'renewal'
+        ? 'due when enough renewals have come up'
+        : 'due when enough accounts have started'
+      : `due about ${heldDate(waiting.on)}`;
+  return `next point: ${count(waiting.accounts)} of ${countOf(waiting.of, viewWords(input.view).one)} so far, ${due}`;
 }
 
 export function immatureWords(input: PictureInput): string {
   if (input.immature <= 0) return '';
+  if (input.view === 'renewal')
+    return `${countOf(input.immature, 'renewal')} ${input.immature === 1 ? 'is' : 'are'} still to come`;
   return `${countOf(input.immature, 'account')} ${input.immature === 1 ? 'is' : 'are'} too young to be counted`;
 }
 
@@ -37,15 +48,15 @@ export function candidateWords(input: PictureInput): string {
   const since = input.verdict.since;
   if (!since) return '';
   const [from, to] = since.candidates;
-  const first = whereWords(input.dates[from - 1]?.firstStart, from);
-  const last = whereWords(input.dates[to - 1]?.lastStart, to);
+  const first = whereWords(input, input.dates[from - 1]?.firstStart, from);
+  const last = whereWords(input, input.dates[to - 1]?.lastStart, to);
   return first === last
     ? `the start can only lie at ${first}`
     : `the start could lie anywhere from ${first} to ${last}`;
 }
 
-function whereWords(day: Day | null | undefined, point: number): string {
-  return day === null || day === undefined ? `point\u00a0${point}` : dateShort(day);
+function whereWords(input: PictureInput, day: Day | null | undefined, point: number): string {
+  return day === null || day === undefined ? `point\u00a0${point}` : shortPoint(input, day);
 }
 
 function planNotes(input: PictureInput, unlabelled: readonly Stretch[], floor: string): Note[] {
@@ -54,7 +65,7 @@ function planNotes(input: PictureInput, unlabelled: readonly Stretch[], floor: s
   if (input.chart && candidates) notes.push({ text: candidates, color: EMBER, mark: 'bar' });
   for (const stretch of unlabelled.slice(0, MOST_STRETCHES)) {
     const when = input.dates[stretch.said[0] - 1]?.firstStart ?? null;
-    const where = when === null ? `point\u00a0${stretch.said[0]}` : dateShort(when);
+    const where = when === null ? `point\u00a0${stretch.said[0]}` : shortPoint(input, when);
     const state =
       stretch.state === 'passed'
         ? (input.flagsExplained ?? 'did not last')
@@ -86,6 +97,11 @@ function planNotes(input: PictureInput, unlabelled: readonly Stretch[], floor: s
   if (floor)
     notes.push({
       text: `the scale starts at ${floor}, not at zero`,
+      color: QUIET,
+    });
+  if (valueScale(input.chart).of === 'gaps')
+    notes.push({
+      text: 'higher is better: a longer gap is fewer losses. The scale is drawn out at the bottom, where most gaps lie',
       color: QUIET,
     });
   const cuts = input.signals.filter((signal) => signal.speaks === 'cut' && signal.state !== 'passed');

@@ -1,5 +1,6 @@
 import type { PictureInput } from '../verdict/types.ts';
 import type { Frame } from './scene.ts';
+import { placedChart, plottedLevels, type ValueScale, valueScale } from './valueScale.ts';
 
 /** Height of the plot, and of the strip at its top that is kept free for the words about the baseline. */
 export const PLOT_HEIGHT = 330;
@@ -7,19 +8,23 @@ export const HEADROOM = 36;
 
 /**
  * The ranges shown: from zero unless that would waste half of the height, up to the highest thing drawn, headroom added.
- * @returns domains for both axes, and tick values for the y axis (fractions)
+ * @returns domains for both axes, in places of the drawing, and tick values for the y axis (fractions, accounts or days)
  */
 export function domains(input: PictureInput): {
   x: [number, number];
   y: [number, number];
   ticks: number[];
 } {
-  const points = input.chart?.points ?? [];
+  const scale = valueScale(input.chart);
+  const points = input.chart ? placedChart(input.chart, scale).points : [];
   const slots = Math.max(points.length + (input.waiting ? 1 : 0), 6);
   const values = points.flatMap((point) => [point.value, point.upper]);
   const lows = points.flatMap((point) => [point.value, point.lower]);
-  for (const level of [input.verdict.before, input.verdict.after]) if (level) values.push(level.rate);
+  const { before, after } = plottedLevels(input);
+  for (const level of [before, after]) if (level !== null) values.push(scale.place(level));
+  if (scale.of === 'numbers') return numberDomains(slots, [...values, ...lows]);
   const top = values.reduce((a, b) => Math.max(a, b), 0.004);
+  if (scale.of === 'gaps') return stretchedDomains(slots, top, scale);
   const low = lows.reduce((a, b) => Math.min(a, b), top);
   const aloft = low > top / 2;
   const step = niceStep((aloft ? Math.max(top - low, top / 5) : top) / 4);
@@ -33,6 +38,53 @@ export function domains(input: PictureInput): {
     y: [base, base + (floor + span - base) / (1 - HEADROOM / PLOT_HEIGHT)],
     ticks,
   };
+}
+
+/** Steps worth naming on a stretched axis. */
+const ROUND = [
+  0, 1, 2, 5, 10, 20, 50, 100, 200, 500, 1_000, 2_000, 5_000, 10_000, 20_000, 50_000, 100_000, 200_000, 500_000,
+];
+/** Least room between two ticks, in px. */
+const TICK_ROOM = 34;
+
+/** The ranges of a stretched scale: from zero, with round values as far apart as their words need. */
+function stretchedDomains(
+  slots: number,
+  top: number,
+  scale: ValueScale,
+): { x: [number, number]; y: [number, number]; ticks: number[] } {
+  const span = top * 1.05;
+  const base = -span * 0.03;
+  const height = PLOT_HEIGHT - HEADROOM;
+  const ticks: number[] = [];
+  let last = Number.NEGATIVE_INFINITY;
+  for (const value of ROUND) {
+    const at = (scale.place(value) / span) * height;
+    if (at > height || at - last < TICK_ROOM) continue;
+    ticks.push(value);
+    last = at;
+  }
+  return { x: [0.4, slots + 0.6], y: [base, base + (span - base) / (1 - HEADROOM / PLOT_HEIGHT)], ticks };
+}
+
+/** The ranges of numbers of any size and sign: from zero where that wastes less than half of the height. */
+function numberDomains(
+  slots: number,
+  values: readonly number[],
+): { x: [number, number]; y: [number, number]; ticks: number[] } {
+  const highest = values.reduce((a, b) => Math.max(a, b), Number.NEGATIVE_INFINITY);
+  const lowest = values.reduce((a, b) => Math.min(a, b), Number.POSITIVE_INFINITY);
+  const low = lowest > 0 && lowest < highest / 2 ? 0 : lowest;
+  // Values that are all equal still need a height to be drawn in.
+  const span = highest - low || Math.abs(highest) || 1;
+  const power = 10 ** Math.floor(Math.log10(span / 4));
+  const step = power * ([1, 2, 2.5, 5, 10].find((one) => one * power >= (span / 4) * 0.999) ?? 10);
+  const ticks: number[] = [];
+  for (let i = Math.ceil(low / step - 1e-9); i * step <= highest + span * 0.05; i++)
+    ticks.push(Number((i * step).toPrecision(12)));
+  const base = low - span * 0.06;
+  const top = highest + span * 0.05;
+  return { x: [0.4, slots + 0.6], y: [base, base + (top - base) / (1 - HEADROOM / PLOT_HEIGHT)], ticks };
 }
 
 /** Words for the ticks, with as many decimals as the step needs. */

@@ -1,5 +1,6 @@
 import type { PictureInput } from '../verdict/types.ts';
-import { capitalised, percent } from './figures.ts';
+import { capitalised } from './figures.ts';
+import { valueScale } from './valueScale.ts';
 
 /** Longest lead that makes a title: two lines. */
 const LONGEST_TITLE = 60;
@@ -40,10 +41,10 @@ export function wouldSeeWords(input: PictureInput): string {
   const wouldSee = input.wouldSee;
   if (input.verdict.outcome !== 'steady' || !wouldSee) return '';
   const { rise, fall, chance } = wouldSee;
-  const moves = [
-    rise === null ? '' : `a rise to ${percent(rise)} or more`,
-    fall === null ? '' : `a fall to ${percent(fall)} or less`,
-  ].filter((move) => move !== '');
+  const scale = valueScale(input.chart);
+  const moves = [rise === null ? '' : scale.riseTo(rise), fall === null ? '' : scale.fallTo(fall)].filter(
+    (move) => move !== '',
+  );
   if (moves.length === 0) return 'At this size, even a large move could have been missed so far.';
   const odds = `${Math.round(chance * 100)}\u00a0%`;
   return `${capitalised(moves.join(', or '))}, would by now have shown with ${odds} chance; anything smaller could be there unseen.`;

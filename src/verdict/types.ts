@@ -132,6 +132,8 @@ export interface PictureInput {
   readonly wouldSee?: Trust['wouldSee'];
   /** why flags that do not stand were raised, when it is known: replaces "did not last" on the picture */
   readonly flagsExplained?: string;
+  /** the levels before and since a move as they are plotted, where the chart does not plot rates; null where there is none to plot */
+  readonly levels?: { readonly before: number | null; readonly after: number | null };
   /** where the points that should set the usual level fall apart into two levels: after this point */
   readonly split?: { readonly after: number } | null;
 }

@@ -44,7 +44,7 @@ export function gapCautions({ judgement, context }: GapFacts): string[] {
 
 /** By how many of the lower zone ends nothing can be below. */
 const DEAF = [
-  'even two losses in a row happen by chance, so one short gap alone can never flag a rise, only several together',
-  'even two losses in a row are nothing unusual, so a rise shows only in runs of short gaps, never in one or two of them',
+  'even two losses in immediate succession happen by chance, so one short gap alone can never flag a rise, only several together',
+  'even two losses in immediate succession are nothing unusual, so a rise shows only in runs of short gaps, never in one or two of them',
   'losses are not rare enough here for a short gap to say anything: only nine short ones in a row, or six each shorter than the last, can flag a rise',
 ];

@@ -92,8 +92,12 @@ function trust({ judgement, context }: GapFacts): string[] {
           ? `among accounts starting from ${dayInWords(from)} on`
           : `from ${dayInWords(from)} on`;
     const parts = [
-      wouldSee.rise === null ? null : `a lasting rise to ${level(wouldSee.rise)} or more`,
-      wouldSee.fall === null ? null : `a lasting fall to ${level(wouldSee.fall)} or less`,
+      wouldSee.rise === null
+        ? null
+        : `a lasting rise to ${level(wouldSee.rise)} or more${context.kind === 't' ? ' often' : ''}`,
+      wouldSee.fall === null
+        ? null
+        : `a lasting fall to ${level(wouldSee.fall)} or ${context.kind === 't' ? 'more rarely' : 'less'}`,
     ].filter((part) => part !== null);
     sentences.push(
       parts.length > 0
@@ -120,9 +124,9 @@ function trust({ judgement, context }: GapFacts): string[] {
 
 function counts({ judgement, context }: GapFacts): string[] {
   const { kind, losses, accounts, watched, immature, open, tenure } = context;
-  const { usual, chart } = judgement;
+  const { usual, chart, finding } = judgement;
   const sentences: string[] = [];
-  if (accounts !== null) {
+  if (accounts !== null && accounts > 0) {
     const rest = immature > 0 ? ` ${count(immature)} not yet customers for ${tenure} and so not counted.` : '';
     sentences.push(
       `Counted in order of start: ${counted(losses, 'loss', 'losses')} among ${counted(accounts, 'account')} that have had ${tenure} to leave or stay, ${count(open)} of them since the last loss.${rest}`,
@@ -131,11 +135,11 @@ function counts({ judgement, context }: GapFacts): string[] {
     sentences.push(
       `Counted by the day of leaving: ${counted(losses, 'loss', 'losses')} within ${tenure} of starting, from ${dayInWords(watched.from)} to ${dayInWords(watched.to)}; ${gapLength(kind, open)} since the last one.`,
     );
-  else sentences.push(`${counted(losses, 'gap')} between losses.`);
+  else if (accounts === null) sentences.push(`${counted(losses, 'gap')} between losses.`);
   const frame = chart?.points[0];
   if (frame && usual && chart.baseline.lost > 1)
     sentences.push(
-      `The usual level is ${levelWords(usual)}; half of all gaps are then longer than ${gapLength(kind, Math.round(chart.center))}, and hardly any is longer than ${gapLength(kind, Math.round(frame.upper))}.`,
+      `${finding === 'risen' || finding === 'fallen' ? 'At the usual level' : `The usual level is ${levelWords(usual)};`} half of all gaps are${finding === 'risen' || finding === 'fallen' ? '' : ' then'} longer than ${gapLength(kind, Math.round(chart.center))}, and hardly any is longer than ${gapLength(kind, Math.round(frame.upper))}.`,
     );
   return sentences;
 }

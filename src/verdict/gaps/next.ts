@@ -60,7 +60,8 @@ function candidates({ since, context }: GapFacts): string {
 function sinceLastLoss({ judgement, context }: GapFacts): string[] {
   const { chart, byPower } = judgement;
   const upper = chart?.points[0]?.upper;
-  if (upper === undefined || byPower || context.open > upper) return [];
+  // Of ready gaps nobody knows how long it has been since the last loss.
+  if (upper === undefined || byPower || context.open > upper || context.tenure === null) return [];
   const kept = context.kind === 'g' ? `${counted(context.open, 'account')} kept` : gapLength('t', context.open);
   return [
     `Since the last loss: ${kept}. From ${gapLength(context.kind, Math.floor(upper) + 1)} without a loss on, that alone would stand out as a fall.`,
