@@ -2,7 +2,7 @@ import { rowsOf } from '../accounts/sql.ts';
 import type { AccountTable } from '../accounts/types.ts';
 import type { Day } from '../days.ts';
 import { groupsCensusSql, groupTotalsSql } from './groupsSql.ts';
-import { recommendSize } from './plan.ts';
+import { assumedRate, recommendSize } from './plan.ts';
 import { subgroupSizes } from './sizes.ts';
 import { checkTenure, lastMaturedStart, tenurePoint } from './tenure.ts';
 import type { CensusSubgroup, Tenure } from './types.ts';
@@ -94,7 +94,6 @@ interface Counts {
 /** The size that fits a group. One that lost nobody, or everybody, says nothing about its rate: then the rate of all accounts is taken. */
 export function sizeFor(group: Counts, all: Counts): number {
   const telling = group.lost > 0 && group.lost < group.matured ? group : all;
-  const rate = telling.matured === 0 ? 0.05 : telling.lost / telling.matured;
-  const least = 1 / (telling.matured + 2);
-  return recommendSize(group.matured, subgroupSizes(Math.min(Math.max(rate, least), 1 - least))).subgroupSize;
+  const rate = assumedRate(telling.matured === 0 ? 0 : telling.lost / telling.matured, telling.matured);
+  return recommendSize(group.matured, subgroupSizes(rate)).subgroupSize;
 }

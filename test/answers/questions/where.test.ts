@@ -1,6 +1,7 @@
 import { readFileSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
 import { describe, expect, test } from 'vitest';
+import { answerQuestion } from '../../../src/answers/answerQuestion.ts';
 import { answerSide } from '../../../src/answers/questions/answerSide.ts';
 import type { Reply } from '../../../src/answers/questions/types.ts';
 import { binomialSampler } from '../../../src/charts/random/binomialSampler.ts';
@@ -176,6 +177,33 @@ describe('where did churn move', () => {
     };
     for (const { baseline, points } of groups)
       expect(baseline.last).toBe(points.filter(({ lastStart }) => lastStart < isoDay(since)).length);
+  });
+
+  test('a group looks the same as when it is asked about alone: size, points, centre and what its own chart reads', async () => {
+    await files.with(sample('marrowby-recipe-cards.csv'), {}, async (table) => {
+      const { groups } = (await ask(table)).figures as unknown as {
+        groups: readonly {
+          group: string;
+          direction: string | null;
+          subgroupSize: number;
+          center: number;
+          since: { point: number } | null;
+          points: readonly { lost: number }[];
+        }[];
+      };
+      for (const { group, direction, subgroupSize, center, since, points } of groups) {
+        const alone = await answerQuestion(
+          table,
+          { kind: 'ask', segment: { value: group } },
+          { subject: 'Marrowby Seed Club', picture: false, clock: () => 0, readMs: 0 },
+        );
+        expect(alone.plan!.subgroupSize).toBe(subgroupSize);
+        expect(alone.chart!.points.map(({ lost }) => lost)).toEqual(points.map(({ lost }) => lost));
+        expect(alone.chart!.center).toBe(center);
+        expect(alone.verdict.outcome).toBe(direction ?? 'steady');
+        expect(alone.verdict.since?.point).toBe(since?.point);
+      }
+    });
   });
 
   test('the order of rows changes nothing', async () => {
