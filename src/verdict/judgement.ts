@@ -167,7 +167,14 @@ export function judge(chart: Chart, options: JudgeOptions = {}): Judgement {
         ? NO_TRUST
         : runLengthTrust(chart, design.correlation ?? 0, tests, options.accountsPerWeek ?? 0)),
       falseVerdictChance: threshold.falseVerdictChance,
-      wouldSee: smallestDetectable(design, chart.center, wouldSeeFrom, calibrated.ratio * shrink, WOULD_SEE_CHANCE),
+      wouldSee: smallestDetectable(
+        design,
+        lost,
+        chart.center,
+        wouldSeeFrom,
+        calibrated.ratio * shrink,
+        WOULD_SEE_CHANCE,
+      ),
     },
     steadiness: split,
     dispersion: spread,

@@ -1,3 +1,4 @@
+import * as fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { smallestDetectable } from '../../src/charts/standing/detectable.ts';
 import { historyCount, type RateFrom, simulateHistories } from '../../src/charts/standing/histories.ts';
@@ -5,6 +6,8 @@ import type { BlockDesign } from '../../src/charts/standing/lastBlock.ts';
 import { standingJudge } from '../../src/charts/standing/standing.ts';
 import { CANDIDATE_COVERAGE, startCandidates } from '../../src/charts/standing/startCandidates.ts';
 import { AIMED_FALSE_VERDICTS, standingThreshold } from '../../src/charts/standing/threshold.ts';
+import { nelsonTests } from '../../src/charts/tests/nelsonTests.ts';
+import type { ShiftTest } from '../../src/charts/types.ts';
 
 /* Every figure is simulated again here with seeds of its own: a calibration must hold on histories it has not seen. */
 
@@ -13,6 +16,10 @@ const equal = (size: number, points: number, baselineLast: number): BlockDesign 
   baselineLast,
   excluded: Object.freeze([]),
 });
+
+/** Counts that average so many a point, as evenly as whole numbers can. */
+const calmLosses = (each: number, points: number): Int32Array =>
+  Int32Array.from({ length: points }, (_, i) => Math.floor((i + 1) * each) - Math.floor(i * each));
 
 /** Share of histories in which `holds`. */
 function share(
@@ -183,17 +190,55 @@ describe('start candidates', () => {
   });
 });
 
+test('a flag stands in a block where the tests on the whole chart say that one of them holds', () => {
+  const size = fc.constantFrom(30, 85);
+  const chart = fc.record({
+    size,
+    last: fc.integer({ min: 5, max: 30 }),
+    tests: fc.subarray<ShiftTest>([1, 2, 3, 5, 6], { minLength: 1 }),
+    lost: fc.array(fc.oneof(fc.integer({ min: 0, max: 12 }), fc.integer({ min: 3, max: 7 })), {
+      minLength: 30,
+      maxLength: 45,
+    }),
+  });
+  fc.assert(
+    fc.property(chart, ({ size: n, last, tests, lost }) => {
+      const design = { ...equal(n, lost.length, last), tests };
+      const used = lost.slice(0, last);
+      const center = used.reduce((sum, d) => sum + d, 0) / (n * last);
+      fc.pre(center > 0);
+      const sigma = Math.sqrt((center * (1 - center)) / n);
+      const from = last >= lost.length ? 1 : last + 1;
+      const standing = standingJudge(design)(lost);
+      const episodes = nelsonTests(lost.map((d) => ({ value: d / n, center, sigma })));
+      for (const side of ['above', 'below'] as const) {
+        const { block, score } = standing[side];
+        const flagged = episodes.some(
+          (one) =>
+            (tests as readonly number[]).includes(one.test) &&
+            one.side === side &&
+            one.until >= Math.max(from, block.first),
+        );
+        expect(score > 0).toBe(flagged && block.ratio > 0);
+      }
+    }),
+    { numRuns: 500, seed: 46 },
+  );
+});
+
 describe('the smallest move that would have been seen', () => {
   test.each([
     ['n = 85, 57 points', equal(85, 57, 25), 26],
     ['n = 120, 40 points', equal(120, 40, 25), 26],
     ['trial limits on 28 points', equal(100, 28, 28), 19],
   ] as const)(
-    'is seen in about 80 of 100 fresh histories, and one half as large in far fewer: %s',
+    'is seen in about 80 of 100 fresh continuations of the chart, and one half as large in far fewer: %s',
     (_, design, from) => {
       const rate = 0.06;
       const { ratio } = standingThreshold(design, rate);
-      const found = smallestDetectable(design, rate, from, ratio, 0.8);
+      // A chart whose points so far have given just this level.
+      const before = calmLosses(design.accounts[0]! * rate, from - 1);
+      const found = smallestDetectable(design, before, rate, from, ratio, 0.8);
       expect(found.chance).toBe(0.8);
       const judge = standingJudge(design);
       for (const [moved, side] of [
@@ -209,9 +254,12 @@ describe('the smallest move that would have been seen', () => {
             ],
             4_000,
             271,
-            (lost) => judge(lost)[side].score > ratio,
+            (lost) => {
+              lost.set(before.slice(0, from - 1));
+              return judge(lost)[side].score > ratio;
+            },
           );
-        expect(Math.abs(seen(moved) - 0.8)).toBeLessThan(0.05);
+        expect(Math.abs(seen(moved) - 0.8)).toBeLessThan(0.04);
         expect(seen((moved + rate) / 2)).toBeLessThan(0.6);
       }
     },
@@ -220,6 +268,10 @@ describe('the smallest move that would have been seen', () => {
   test('is none where even the greatest move would not be seen', () => {
     // One judged point of two accounts cannot be far from anything.
     const design = { accounts: [...Array.from({ length: 25 }, () => 20), 2], baselineLast: 25, excluded: [] };
-    expect(smallestDetectable(design, 0.5, 26, 6, 0.8)).toEqual({ rise: null, fall: null, chance: 0.8 });
+    expect(smallestDetectable(design, calmLosses(10, 25), 0.5, 26, 6, 0.8)).toEqual({
+      rise: null,
+      fall: null,
+      chance: 0.8,
+    });
   });
 });

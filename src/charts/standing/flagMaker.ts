@@ -1,6 +1,6 @@
 import type { Smoothing } from '../kinds/ewmaChart.ts';
 import { smoother } from '../kinds/smoothed.ts';
-import { PatternMachine, patternMask } from '../tests/patterns.ts';
+import { PatternMachine, patternMask, TEST_SPAN } from '../tests/patterns.ts';
 import { beyondLimits } from '../tests/smoothedFlags.ts';
 import { moveOf, zoneOf } from '../tests/zone.ts';
 import type { ShiftTest } from '../types.ts';
@@ -11,6 +11,8 @@ export const FLAG_BELOW = 2;
 
 /** Raises the flags of a chart point by point; the same for the real chart and for every simulated history. */
 export interface FlagMaker {
+  /** how many points a flag can span: earlier ones need not be pushed */
+  readonly span: number;
   /** starts a chart with this center and this sigma of a single account */
   begin(center: number, spread: number): void;
   /** takes the next point's lost share and size; returns its flags */
@@ -26,6 +28,7 @@ export function patternFlags(tests: readonly ShiftTest[]): FlagMaker {
   let spread = 0;
   let previous = Number.NaN;
   return {
+    span: Math.max(...tests.map((test) => TEST_SPAN[test])),
     begin(atCenter, withSpread) {
       center = atCenter;
       spread = withSpread;
@@ -47,6 +50,7 @@ export function smoothFlags({ lambda, width }: Smoothing): FlagMaker {
   let spread = 0;
   let smooth = smoother(lambda, 0);
   return {
+    span: Number.POSITIVE_INFINITY,
     begin(atCenter, withSpread) {
       center = atCenter;
       spread = withSpread;

@@ -34,6 +34,7 @@ export function standingJudge(design: BlockDesign): (lost: ArrayLike<number>) =>
   const left = new Set(excluded);
   const count = accounts.length;
   const judgedFrom = baselineLast >= count ? 0 : baselineLast;
+  const firstSeen = Math.max(0, judgedFrom - maker.span + 1);
   const z = new Float64Array(baselineLast);
 
   return (lost) => {
@@ -52,7 +53,7 @@ export function standingJudge(design: BlockDesign): (lost: ArrayLike<number>) =>
     maker.begin(center, spread);
     let lastAbove = 0;
     let lastBelow = 0;
-    for (let i = 0; i < count; i++) {
+    for (let i = firstSeen; i < count; i++) {
       const size = accounts[i]!;
       const flags = maker.push(lost[i]! / size, size);
       if (i < judgedFrom) continue;
