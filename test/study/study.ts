@@ -2,11 +2,13 @@ import { mkdtemp, rm, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { toCsv } from '../../fixtures/generate/csv.ts';
-import { simulateHistory } from '../../fixtures/generate/history.ts';
+import { type Account, simulateHistory } from '../../fixtures/generate/history.ts';
 import type { ScenarioName } from '../../fixtures/generate/scenarios.ts';
 import { openEngine } from '../../src/accounts/engine.ts';
 import { readExport } from '../../src/accounts/readExport.ts';
 import { answerQuestion } from '../../src/answers/answerQuestion.ts';
+import type { Answer } from '../../src/answers/types.ts';
+import type { Scope } from '../../src/requests/types.ts';
 import type { Outcome } from '../../src/verdict/types.ts';
 
 /** What one simulated export was read as, against its truth. */
@@ -46,34 +48,43 @@ export async function runStudy(each: number, firstSeed: number, scenarios = STUD
 
 async function runOne(scenario: ScenarioName, seed: number, folder: string): Promise<StudyCase> {
   const accounts = simulateHistory(scenario, seed);
-  const path = join(folder, `${scenario}-${seed}.csv`);
+  const { verdict, dates, chart } = await answerOf(accounts, seed, folder);
+  const changed = accounts.find((account) => account.shifted);
+  let startInCandidates: boolean | null = null;
+  if (changed && verdict.since) {
+    // As a reader would check it: the day of the change against the two days that the reply prints.
+    const [first, last] = verdict.since.candidates;
+    const from = dates[first - 1]?.firstStart ?? Number.POSITIVE_INFINITY;
+    const to = dates[last - 1]?.lastStart ?? Number.NEGATIVE_INFINITY;
+    startInCandidates = from <= changed.start && changed.start <= to;
+  }
+  return {
+    scenario,
+    seed,
+    outcome: verdict.outcome,
+    points: dates.length,
+    subgroupSize: chart?.subgroupSize ?? null,
+    startInCandidates,
+  };
+}
+
+/** Hands an export in as a file and asks about it. */
+export async function answerOf(
+  accounts: readonly Account[],
+  seed: number,
+  folder: string,
+  scope: Scope = {},
+): Promise<Answer> {
+  const path = join(folder, `${seed}.csv`);
   await writeFile(path, toCsv(accounts, undefined, seed).bytes);
   const engine = await openEngine();
   try {
     const table = await readExport(engine, path, {});
-    const answer = await answerQuestion(
+    return await answerQuestion(
       table,
-      { kind: 'ask' },
-      { subject: scenario, picture: false, clock: () => 0, readMs: 0 },
+      { kind: 'ask', ...scope },
+      { subject: 'study', picture: false, clock: () => 0, readMs: 0 },
     );
-    const { verdict, dates } = answer;
-    const changed = accounts.find((account) => account.shifted);
-    let startInCandidates: boolean | null = null;
-    if (changed && verdict.since) {
-      // As a reader would check it: the day of the change against the two days that the reply prints.
-      const [first, last] = verdict.since.candidates;
-      const from = dates[first - 1]?.firstStart ?? Number.POSITIVE_INFINITY;
-      const to = dates[last - 1]?.lastStart ?? Number.NEGATIVE_INFINITY;
-      startInCandidates = from <= changed.start && changed.start <= to;
-    }
-    return {
-      scenario,
-      seed,
-      outcome: verdict.outcome,
-      points: dates.length,
-      subgroupSize: answer.chart?.subgroupSize ?? null,
-      startInCandidates,
-    };
   } finally {
     await engine.close();
     await rm(path, { force: true });

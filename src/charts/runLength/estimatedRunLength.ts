@@ -1,9 +1,10 @@
 import { betaBinomialSampler } from '../random/betaBinomialSampler.ts';
-import { chartRunLength, type RunDesign } from './chartRunLength.ts';
+import { chartRunLength, isExact, type RunDesign } from './chartRunLength.ts';
 import type { RunLength } from './types.ts';
 
-/** Levels that the baseline may as well have given, equally likely ones. */
-const NODES = 15;
+/** Levels that the baseline may as well have given, equally likely ones; fewer where each must be simulated. */
+const EXACT_NODES = 31;
+const SIMULATED_NODES = 15;
 /** Points simulated for each of them, where the chain does not answer. */
 const NODE_BUDGET = 8_000;
 
@@ -25,7 +26,7 @@ export interface EstimatedRunLength {
  * @param baselineAccounts  accounts in the points that set the level
  * @returns null when every level that might be estimated is 0 or 1, or none of them ever flags
  * Method: the pooled baseline count is binomial (for a p' chart beta-binomial with the variance of the pooled points); its distribution is
- * stood for by 15 equally likely quantiles, and the chart with each as its centre line has its run length found at the true rate: exactly
+ * stood for by 31 (simulated: 15) equally likely quantiles, and the chart with each as its centre line has its run length found at the true rate: exactly
  * where the chain answers, else simulated with common random numbers. sigmaZ of a p' chart is taken as known.
  * Background: limits from few points give run lengths that differ from chart to chart; Chakraborti S, Human SW, Parameter estimation and
  * performance of the p-chart for attributes data, IEEE Transactions on Reliability 55(3):559-566, 2006 (reference from memory).
@@ -41,8 +42,9 @@ export function estimatedRunLength(
   const level = betaBinomialSampler(baselineAccounts, rate, pooled);
   const known = new Map<number, ReturnType<typeof chartRunLength>>();
   const found = [];
-  for (let node = 0; node < NODES; node++) {
-    const lost = level.quantile((node + 0.5) / NODES);
+  const nodes = isExact(design) ? EXACT_NODES : SIMULATED_NODES;
+  for (let node = 0; node < nodes; node++) {
+    const lost = level.quantile((node + 0.5) / nodes);
     if (lost === 0 || lost === baselineAccounts) continue;
     let length = known.get(lost);
     if (!length) {
