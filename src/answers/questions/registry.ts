@@ -7,12 +7,13 @@ type Loaders = { readonly [K in SideKind]?: () => Promise<AnswerSide<K>> };
 /** Every question by its kind, loaded when first asked: a verdict need not wait for the code of all the others. */
 const QUESTIONS: Loaders = {
   explain: async () => (await import('./explain.ts')).answerExplain,
-  reconcile: async () => (await import('./reconcile.ts')).answerReconcile,
   spread: async () => (await import('./spread.ts')).answerSpread,
+  reconcile: async () => (await import('./reconcile.ts')).answerReconcile,
   revenue: async () => (await import('./revenue.ts')).answerRevenue,
   target: async () => (await import('./target.ts')).answerTarget,
   early: async () => (await import('./early.ts')).answerEarly,
   where: async () => (await import('./where.ts')).answerWhere,
+  worth: async () => (await import('./worth.ts')).answerWorth,
   plan: async () => (await import('./plan.ts')).answerPlan,
 };
 

@@ -2,8 +2,15 @@ import { Z_95 } from '../intervals/wilson.ts';
 import type { RiskSet } from '../survival/types.ts';
 import type { Interval } from '../types.ts';
 
-/** Periods at the end of the measured ones whose pooled hazard is taken to go on. Our choice, no source. */
-export const TAIL_PERIODS = 6;
+/** Periods at the end of the measured ones whose pooled hazard is taken to go on: a year of months, which holds one yearly renewal. */
+const TAIL_PERIODS = 12;
+/** Fewest periods before the tail's: accounts leave in their first months as they never do again. */
+const LEAST_BEFORE_TAIL = 4;
+
+/** Periods pooled for the tail: the last 12, or the later half where so many would reach into the first months. Our choice, no source. */
+export function tailPeriods(horizon: number): number {
+  return horizon >= TAIL_PERIODS + LEAST_BEFORE_TAIL ? TAIL_PERIODS : Math.min(TAIL_PERIODS, Math.ceil(horizon / 2));
+}
 
 /** What comes after the last well-measured period, if the hazard stays as it was there. */
 export interface LifetimeTail {
@@ -33,7 +40,7 @@ export interface MeasuredLifetime {
 
 /**
  * Mean lifetime in periods begun, from a measured hazard per period: the restricted mean up to the last period given, and beyond it a tail
- * at the pooled hazard of the last TAIL_PERIODS.
+ * at the pooled hazard of the last `tailPeriods`.
  * @param sets  period 1, 2, … in order without gaps, each with atRisk >= 1; at least one
  * Method: S(k) = product of (1 - h_j); restricted mean = sum of S(k) over k = 0 … m-1 (present at the start of each period); tail = S(m)/h.
  * Errors by the delta method from independent binomial hazards, of which tail and restricted mean are both functions; limits on the log
@@ -48,7 +55,7 @@ export function measuredLifetime(sets: readonly RiskSet[], z = Z_95): MeasuredLi
   const restricted = survival.slice(0, horizon).reduce((sum, share) => sum + share, 0);
   const left = survival[horizon]!;
 
-  const last = sets.slice(-TAIL_PERIODS);
+  const last = sets.slice(-tailPeriods(horizon));
   const lost = last.reduce((sum, set) => sum + set.lost, 0);
   const atRisk = last.reduce((sum, set) => sum + set.atRisk, 0);
   const hazard = lost / atRisk;

@@ -3,8 +3,9 @@ import { describe, expect, it } from 'vitest';
 import { compounded } from '../../../src/charts/lifetimes/compounding.ts';
 import { constantLifetime } from '../../../src/charts/lifetimes/constantLifetime.ts';
 import { geometricLifetime, geometricRestrictedMean } from '../../../src/charts/lifetimes/geometricLifetime.ts';
+import { intervalDifference } from '../../../src/charts/lifetimes/intervalDifference.ts';
 import { lifetimeValue } from '../../../src/charts/lifetimes/lifetimeValue.ts';
-import { measuredLifetime, TAIL_PERIODS } from '../../../src/charts/lifetimes/measuredLifetime.ts';
+import { measuredLifetime, tailPeriods } from '../../../src/charts/lifetimes/measuredLifetime.ts';
 import { binomialSampler } from '../../../src/charts/random/binomialSampler.ts';
 import { seededUniform } from '../../../src/charts/random/uniform.ts';
 
@@ -64,15 +65,19 @@ describe('measuredLifetime', () => {
     expect(total!.estimate).toBeCloseTo(1.6, 12);
   });
 
+  it('the tail pools the last year, or the later half of what was measured when a year would reach into the first months', () => {
+    expect([1, 2, 7, 15, 16, 48].map(tailPeriods)).toEqual([1, 1, 4, 8, 12, 12]);
+  });
+
   it('nobody lost lately: the restricted mean alone, no total', () => {
     const sets = [
       { time: 1, atRisk: 100, lost: 5 },
-      ...Array.from({ length: TAIL_PERIODS }, (_, i) => ({ time: i + 2, atRisk: 90, lost: 0 })),
+      ...[2, 3, 4, 5, 6, 7, 8].map((time) => ({ time, atRisk: 90, lost: 0 })),
     ];
     const { total, tail, restricted } = measuredLifetime(sets);
     expect(total).toBeNull();
     expect(tail).toBeNull();
-    expect(restricted.estimate).toBeCloseTo(1 + 0.95 * TAIL_PERIODS, 12);
+    expect(restricted.estimate).toBeCloseTo(1 + 0.95 * 7, 12);
   });
 
   it.each([
@@ -89,6 +94,18 @@ describe('measuredLifetime', () => {
     // 2,000 draws give a limit to about a tenth of the half width.
     expect(Math.abs(drawn[49]! - low)).toBeLessThan(0.15 * (estimate - low));
     expect(Math.abs(drawn[1949]! - high)).toBeLessThan(0.15 * (high - estimate));
+  });
+});
+
+describe('intervalDifference', () => {
+  it('of equal widths is that of two normal intervals', () => {
+    const { estimate, low, high } = intervalDifference(
+      { estimate: 14, low: 13, high: 15 },
+      { estimate: 12, low: 11, high: 13 },
+    );
+    expect(estimate).toBe(2);
+    expect(low).toBeCloseTo(2 - Math.SQRT2, 12);
+    expect(high).toBeCloseTo(2 + Math.SQRT2, 12);
   });
 });
 
