@@ -22,6 +22,8 @@ export interface SumPath {
 
 export interface EarlyDrawing {
   readonly found: EarlyFindings;
+  /** the place after which the drawn stretch begins; 0 for all watched accounts */
+  readonly from: number;
   readonly rise: SumPath;
   readonly fall: SumPath;
   /** start days of the accounts at some places, in order */
@@ -34,7 +36,7 @@ export interface EarlyDrawing {
 
 /** Both sums of the early watch against their limits: towards a rise upwards, towards a fall downwards. */
 export function earlyScene(drawing: EarlyDrawing): Scene {
-  const { found, rise, fall, starts, subject, asOf, verdict } = drawing;
+  const { found, from, rise, fall, starts, subject, asOf, verdict } = drawing;
   const state = leading(found);
   const mood = moodOf(state);
   const highest = reach(rise);
@@ -68,9 +70,9 @@ export function earlyScene(drawing: EarlyDrawing): Scene {
           height: 380,
           rightRoom: endLabelsRoom(ends),
           x: {
-            domain: [0, found.watched.accounts],
+            domain: [from, found.watched.accounts],
             ticks: starts.map(({ place, start }): Tick => ({ at: place, lines: dateLines(start) })),
-            title: `${counted(found.watched.accounts, 'account')} in order of start; dates are starts`,
+            title: `${accountsDrawn(drawing)} in order of start; dates are starts`,
           },
           y: {
             domain: [-lowest, highest],
@@ -145,6 +147,12 @@ function titleOf({ found, verdict }: EarlyDrawing): string {
   return 'Early watch: quiet';
 }
 
+/** "3,350 accounts", "the newest 6,700 of 785,982 accounts" */
+function accountsDrawn({ found, from }: EarlyDrawing): string {
+  const all = counted(found.watched.accounts, 'account');
+  return from === 0 ? all : `the newest ${count(found.watched.accounts - from)} of ${all}`;
+}
+
 /** How far the axis goes on one side. */
 function reach({ path }: SumPath): number {
   return Math.max(1.15, 1.06 * path.reduce((most, { share }) => Math.max(most, share), 0));
@@ -208,5 +216,5 @@ export function earlyAltText(drawing: EarlyDrawing): string {
     (state) =>
       `towards ${aimOf(state)} the sum stands at ${Math.floor(100 * state.share)} % of the way to its alarm${state.since === null ? '' : `, rising from zero since accounts that started on ${dayInWords(state.since.start)}`}`,
   );
-  return `${verdict ? verdict.headline.replace(/\.$/, '') : titleOf(drawing)}. Two sums over ${counted(found.watched.accounts, 'account')} of ${subject}, lost within ${found.tenure}: ${parts.join('; ')}.${verdict ? '' : ' This is an early watch, not the verdict.'}`;
+  return `${verdict ? verdict.headline.replace(/\.$/, '') : titleOf(drawing)}. Two sums over ${accountsDrawn(drawing)} of ${subject}, lost within ${found.tenure}: ${parts.join('; ')}.${verdict ? '' : ' This is an early watch, not the verdict.'}`;
 }
