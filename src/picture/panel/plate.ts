@@ -1,3 +1,4 @@
+import { capitalised } from '../figures.ts';
 import { EMBER, INK, LEAD_SIZE, LINE, MARGIN, QUIET, TEXT_SIZE, TITLE_SIZE, WIDTH } from '../palette.ts';
 import { type Box, EMPTY_SCENE, type MarkStyle, type Scene } from '../scene.ts';
 import { drawable, textWidth } from '../textWidth.ts';
@@ -147,7 +148,7 @@ function headPart(head: PlateHead): Part {
   const parts = [
     words(head.title, { size: TITLE_SIZE, bold: true, color: head.moved ? EMBER : INK, role: 'title' }),
     words(head.lead ?? '', { size: LEAD_SIZE, role: 'headline' }),
-    words((head.counted ?? []).filter((part) => part.trim() !== '').join('\u00a0· '), {
+    words(capitalised((head.counted ?? []).filter((part) => part.trim() !== '').join('\u00a0· ')), {
       color: QUIET,
       role: 'counted',
     }),
