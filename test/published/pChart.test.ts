@@ -7,6 +7,7 @@ import { countZones } from '../../src/charts/runLength/zoneChances.ts';
 import { nelsonTests } from '../../src/charts/tests/nelsonTests.ts';
 import { zoneOf } from '../../src/charts/tests/zone.ts';
 import type { Chart, SubgroupCount } from '../../src/charts/types.ts';
+import { calendarCautions } from '../../src/verdict/words/viewCautions.ts';
 import { checkValue, checkValues } from './checkValues.ts';
 
 interface EqualSizes {
@@ -125,6 +126,19 @@ describe('p chart with unequal sizes', () => {
     const byAverage = own.points.filter(({ value }) => Math.abs(zoneOf(value, own.center, sigma)) === 4);
     expect(byAverage).toEqual(average.expected.out);
     expect(outside(own)).toEqual([11]);
+  });
+});
+
+describe('sizes that differ too much for one pair of limits', () => {
+  const { expected, cited } = checkValue<unknown, { threshold: number }>('p-avg-n-rule');
+  test(`months of a calendar call for a word once one is more than 25 % from their mean: ${cited}`, () => {
+    const off = (part: number): number[] => [1_000 * (1 + part), 1_000 * (1 - part)];
+    const told = (sizes: readonly number[]): boolean =>
+      calendarCautions({ sizes, passed: 0 }).some((caution) => caution.includes('from their mean'));
+    expect(told(off(expected.threshold))).toBe(false);
+    expect(told(off(expected.threshold + 0.001))).toBe(true);
+    // Every size of the purchase orders is within it, and still limits on the average size hide point 11 (above).
+    expect(told(checkValue<UnequalSizes, Limits>('p-purchase-order').inputs.n)).toBe(false);
   });
 });
 
