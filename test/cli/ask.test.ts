@@ -152,7 +152,8 @@ it('--tests chooses what decides: without the trend test the false-alarm figure 
 
 describe('ebb ask on the Marrowby exports', () => {
   for (const entry of truth.exports) {
-    if (!('outcomes' in entry.expected)) continue;
+    // Losses too rare for this chart are another matter: see test/answers/gaps.test.ts.
+    if (!('outcomes' in entry.expected) || entry.file === 'marrowby-heirloom-seeds.csv') continue;
     const { outcomes } = entry.expected;
     it(`${entry.file} is read as ${outcomes.join(' or ')}`, async () => {
       const answer = await ask(entry.file);
