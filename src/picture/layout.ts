@@ -3,6 +3,7 @@ import type { PictureInput } from '../verdict/types.ts';
 import { collectionScene } from './collection.ts';
 import { dateAxis } from './dateAxis.ts';
 import { endLabels, endLabelsWidth, placeEndLabels } from './endLabels.ts';
+import { exactLimitStrokes } from './exactLimits.ts';
 import { flaggedPoints } from './flaggedPoints.ts';
 import { placeFlagLane, planFlagLane } from './flagLane.ts';
 import { baselineGround, ghostMark, splitMark, startMark } from './grounds.ts';
@@ -101,6 +102,7 @@ export function layout(input: PictureInput): Scene {
     line: slotPx < 3 ? { width: 0.8, opacity: 0.42 } : { width: 1.6, opacity: 0.55 },
     over: [
       floor,
+      ...exactLimitStrokes(chart, frame),
       ...ghost.strokes,
       ...axis.strokes,
       ...start.strokes,

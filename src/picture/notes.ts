@@ -1,6 +1,7 @@
 import type { Day } from '../days.ts';
 import type { PictureInput } from '../verdict/types.ts';
 import { viewWords } from '../verdict/words/viewWords.ts';
+import { exactLimitsNote } from './exactLimits.ts';
 import { count, countOf, heldDate, heldPoint, shortPoint } from './figures.ts';
 import { EMBER, INK, LINE, MARGIN, QUIET, TEXT_SIZE, WIDTH } from './palette.ts';
 import { EXCLUDED_MARK, GHOST_MARK, PASSED_MARK, WATCHING_MARK } from './pointMarks.ts';
@@ -85,6 +86,8 @@ function planNotes(input: PictureInput, unlabelled: readonly Stretch[], floor: s
       text: `and ${countOf(more, 'more marked stretch', 'more marked stretches')}`,
       color: QUIET,
     });
+  const exact = input.chart ? exactLimitsNote(input.chart) : '';
+  if (exact !== '') notes.push({ text: exact, color: QUIET });
   const excluded = input.chart?.baseline.excluded.length ?? 0;
   if (excluded > 0)
     notes.push({

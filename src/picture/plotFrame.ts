@@ -1,4 +1,5 @@
 import type { PictureInput } from '../verdict/types.ts';
+import { shownExactLimits } from './exactLimits.ts';
 import type { Frame } from './scene.ts';
 import { placedChart, plottedLevels, type ValueScale, valueScale } from './valueScale.ts';
 
@@ -21,6 +22,7 @@ export function domains(input: PictureInput): {
   const values = points.flatMap((point) => [point.value, point.upper]);
   const lows = points.flatMap((point) => [point.value, point.lower]);
   const { before, after } = plottedLevels(input);
+  if (input.chart) values.push(...shownExactLimits(input.chart));
   for (const level of [before, after]) if (level !== null) values.push(scale.place(level));
   if (scale.of === 'numbers') return numberDomains(slots, [...values, ...lows]);
   const top = values.reduce((a, b) => Math.max(a, b), 0.004);
