@@ -1,6 +1,6 @@
 import type { Day } from '../days.ts';
 import { dateAt } from './dates.ts';
-import { movePhrase, withinPhrase } from './movePhrase.ts';
+import { movedTo, movePhrase, withinPhrase } from './movePhrase.ts';
 import { SEGMENT_WORDS } from './noise.ts';
 import { percentAt } from './percentPhrase.ts';
 import type { Token } from './tokens.ts';
@@ -10,7 +10,7 @@ import type { SideKind } from './types.ts';
 export type Asked =
   | { readonly kind: 'where' | 'revenue' | 'worth' | 'spread' | 'explain' }
   | { readonly kind: 'plan'; readonly move?: number; readonly within?: number }
-  | { readonly kind: 'early'; readonly move?: number }
+  | { readonly kind: 'early'; readonly move?: number; readonly to?: number }
   | { readonly kind: 'reconcile'; readonly rate: number; readonly decimals: number; readonly month?: Day }
   | { readonly kind: 'target'; readonly rate: number };
 
@@ -49,7 +49,8 @@ export function kindPhrase(
   if (kind.name === 'early') {
     use(list, kind.at);
     const move = movePhrase(sentence, list);
-    return { kind: 'early', ...(move === undefined ? {} : { move }) };
+    const to = move === undefined ? movedTo(sentence, list) : undefined;
+    return { kind: 'early', ...(move === undefined ? {} : { move }), ...(to === undefined ? {} : { to }) };
   }
   if (kind.name === 'target' || kind.name === 'reconcile') {
     const percent = percentAt(sentence, list);
@@ -75,6 +76,9 @@ export function kindPhrase(
   use(list, kind.at);
   return { kind: kind.name };
 }
+
+/** What may follow "early" when it opens a sentence: else it is only a time. */
+const WATCHED = new Set('for in at on with to news a an rise rising fall falling doubling halving move'.split(' '));
 
 /** Words that go with a question and add nothing to it. */
 const PASSED: Partial<Record<SideKind, string>> = {
@@ -134,8 +138,7 @@ function kindOf(list: readonly Token[], column: string | undefined, sentence: st
 
   const warning = phrase('early', 'warning|watch|sign|signs|alarm');
   if (warning >= 0) return { name: 'early', at: run(warning, 2) };
-  if (opener === 'early' && (next === '' || ['for', 'in', 'at', 'on', 'with', 'to', 'news'].includes(next)))
-    return { name: 'early', at: [first] };
+  if (opener === 'early' && (next === '' || WATCHED.has(next))) return { name: 'early', at: [first] };
   if (opener === 'anything' && next === 'early') return { name: 'early', at: run(first, 2) };
 
   if (opener === 'plan' && (next === '' || PLANNING.has(next)) && list[first + 1]?.segment === undefined)

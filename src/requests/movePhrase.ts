@@ -33,6 +33,29 @@ export function movePhrase(sentence: string, list: Token[]): number | undefined 
   return undefined;
 }
 
+const MOVES = new Set([...UP, ...DOWN, 'move', 'change']);
+
+/** "a rise to 9 %": the rate it leads to, a fraction. Its words are used up. */
+export function movedTo(sentence: string, list: Token[]): number | undefined {
+  for (const [i, token] of list.entries()) {
+    if (token.used || token.segment !== undefined || !MOVES.has(token.text) || list[i + 1]?.text !== 'to') continue;
+    const value = numberOf(list[i + 2]);
+    if (value === undefined || !(value > 0 && value < 100)) continue;
+    const named = /^(percent|pct)$/.test(list[i + 3]?.text ?? '') ? 1 : 0;
+    if (
+      named === 0 &&
+      !sentence
+        .slice(list[i + 2]!.to)
+        .trimStart()
+        .startsWith('%')
+    )
+      continue;
+    consume(list, i, i + 3 + named);
+    return Number((value / 100).toPrecision(12));
+  }
+  return undefined;
+}
+
 const WHOLE: Readonly<Record<string, number>> = { halving: 0.5, halved: 0.5, doubling: 2, doubled: 2, tripling: 3 };
 
 /** A factor in words that are understood again: 1.3 is "a rise by 30 %". */

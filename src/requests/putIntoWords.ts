@@ -46,7 +46,9 @@ function opening(request: Question | SideQuestion): string {
       return `how should we count churn${age}${seen}${request.within === undefined ? '' : `, within ${request.within} points`}`;
     }
     case 'early':
-      return `early watch${age}${request.move === undefined ? '' : `, for ${moveInWords(request.move)}`}`;
+      return `early watch${age}${request.move === undefined ? '' : `, for ${moveInWords(request.move)}`}${
+        request.to === undefined ? '' : `, for a move to ${percentInWords(request.to)}`
+      }`;
     case 'reconcile':
       return `reconcile ${percentInWords(request.rate, request.decimals)}${
         request.month === undefined ? '' : ` for ${monthInWords(request.month)}`

@@ -36,8 +36,8 @@ export type SideQuestion = Scope &
     | { readonly kind: 'explain' }
     /** `move`: the change that should be seen, as a factor on the rate (0.5 a halving); `within`: points it should take */
     | { readonly kind: 'plan'; readonly move?: number; readonly within?: number }
-    /** `move`: the change the watch is designed for, as a factor on the rate; both directions by half when absent */
-    | { readonly kind: 'early'; readonly move?: number }
+    /** `move`: the change the watch is designed for, as a factor on the rate, or `to`: the rate it leads to; by half in both directions when absent */
+    | { readonly kind: 'early'; readonly move?: number; readonly to?: number }
     /** `rate`: the figure somebody reported; `decimals`: of the percentage as it was given; `month`: first day of the month it is about */
     | { readonly kind: 'reconcile'; readonly rate: number; readonly decimals: number; readonly month?: Day }
     | { readonly kind: 'target'; readonly rate: number }

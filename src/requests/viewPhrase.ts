@@ -49,6 +49,7 @@ const NAMES: readonly (readonly [readonly string[], ChartKind])[] = [
   [['ewma'], 'ewma'],
   [['smoothed'], 'ewma'],
   [['cusum'], 'cusum'],
+  [['account', 'by', 'account'], 'cusum'],
 ];
 
 /** "with a g chart", "as an EWMA chart", "p prime chart": the kind of chart insisted on. Its words are used up. */
@@ -58,7 +59,7 @@ export function chartPhrase(list: Token[]): ChartKind | undefined {
       if (!words.every((wanted, k) => list[i + k]?.text === wanted && list[i + k]?.segment === undefined)) continue;
       const to = i + words.length;
       const charted = list[to]?.text === 'chart';
-      if (!charted && !['ewma', 'cusum', 'xmr', 'laney'].includes(words[0]!)) continue;
+      if (!charted && !['ewma', 'cusum', 'account', 'xmr', 'laney'].includes(words[0]!)) continue;
       let from = i;
       while (from > 0 && ['a', 'an', 'the', 'with', 'as', 'on', 'in', 'using'].includes(list[from - 1]!.text)) from--;
       consume(list, from, charted ? to + 1 : to);

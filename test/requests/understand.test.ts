@@ -111,6 +111,8 @@ describe('the questions around the verdict', () => {
     ['early', { kind: 'early' }],
     ['early warning for Allotment', { kind: 'early', segment: { value: 'Allotment' } }],
     ['early for a doubling', { kind: 'early', move: 2 }],
+    ['early, rise to 9 %', { kind: 'early', to: 0.09 }],
+    ['early watch for a fall to 2.5 percent', { kind: 'early', to: 0.025 }],
     ['revenue', { kind: 'revenue' }],
     ['has revenue churn moved for Orchard?', { kind: 'revenue', segment: { value: 'Orchard' } }],
     ['reconcile 14.2%', { kind: 'reconcile', rate: 0.142, decimals: 1 }],
@@ -144,6 +146,7 @@ describe('the questions around the verdict', () => {
     ['has churn moved with a g chart', { chart: 'g' }],
     ['churn as an EWMA chart', { chart: 'ewma' }],
     ['has churn moved, cusum', { chart: 'cusum' }],
+    ['has churn moved, account by account', { chart: 'cusum' }],
     ['has churn moved by calendar month', { view: 'calendar' }],
     ['monthly churn', { view: 'calendar' }],
     ['has churn moved by renewal date', { view: 'renewal' }],
@@ -251,6 +254,7 @@ describe('put back into words', () => {
       { requiredKeys: ['kind'] },
     ),
     fc.record({ kind: fc.constant('early' as const), move: moves }, { requiredKeys: ['kind'] }),
+    fc.record({ kind: fc.constant('early' as const), to: percents.map((n) => Number((n / 100).toPrecision(12))) }),
     fc.record({ kind: fc.constant('target' as const), rate: percents.map((n) => Number((n / 100).toPrecision(12))) }),
     fc.record(
       {

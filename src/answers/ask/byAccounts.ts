@@ -74,7 +74,6 @@ export async function byAccounts(context: AskContext): Promise<Reached> {
         segment: scope.segment ?? null,
         overdispersed: false,
         mixMoved: false,
-        named: null,
         verdict: verdict.headline,
       });
       const drawing = { ...earlyDrawing(watched, found, subject, scope.asOf), verdict };

@@ -8,7 +8,7 @@ import { earlyFigures, earlyWords } from '../../verdict/questions/early.ts';
 import { readCautions } from '../readCautions.ts';
 import { earlyDrawing } from '../watch/earlyDrawing.ts';
 import { earlyFindings } from '../watch/earlyFindings.ts';
-import { USUAL_MOVES, type Watched, watchAccounts } from '../watch/watchAccounts.ts';
+import { type Moves, USUAL_MOVES, type Watched, watchAccounts } from '../watch/watchAccounts.ts';
 import type { AnswerSide, Reply, SideContext } from './types.ts';
 
 /** A move smaller than this cannot be told from none account by account within years. Our choice, no source. */
@@ -20,7 +20,8 @@ const LARGEST_MOVE = 20;
  * Accounts that have not reached the tenure point are not counted, also when they are lost already: that would be the classic bias.
  */
 export const answerEarly: AnswerSide<'early'> = async (context, request) => {
-  const moves = movesOf(request.move);
+  // A move that cannot be watched for is refused before anything is counted.
+  if (request.move !== undefined) movesOf(request.move);
   const asked = await context.ask();
   const census = asked.census?.request.view === 'start' ? asked.census : await context.census();
   const byRate = asked.judgement !== null && asked.chart !== null && (asked.chart.scale ?? 'rate') === 'rate';
@@ -30,14 +31,15 @@ export const answerEarly: AnswerSide<'early'> = async (context, request) => {
       : chartAndJudge({ counts: census.subgroups, segments: census.segments, runLength: false });
   if (chart === null || judgement === null || NO_LEVEL.has(judgement.finding))
     return withoutLevel(context, asked.verdict);
-  const watched = await watchAccounts(context.table, census, chart, judgement, moves);
+  const watched = await watchAccounts(context.table, census, chart, judgement, (usual) =>
+    movesOf(request.to === undefined ? request.move : request.to / usual),
+  );
   if (watched.accounts === 0) return withoutLevel(context, asked.verdict);
   const found = earlyFindings(watched, census, {
     tenure: tenureInWords(census.request.tenure),
     segment: context.scope.segment ?? null,
     overdispersed: judgement.dispersion !== null && judgement.dispersion.pValue < 0.01,
     mixMoved: judgement.mix !== null && judgement.mix.explains !== 'none',
-    named: request.move === undefined ? null : request.move > 1 ? 'rise' : 'fall',
     verdict: asked.verdict.headline,
   });
   const words = earlyWords(found);
@@ -74,12 +76,12 @@ async function withoutLevel(context: SideContext, { headline, cautions, next }: 
 type SideVerdict = Pick<Awaited<ReturnType<SideContext['ask']>>['verdict'], 'headline' | 'cautions' | 'next'>;
 
 /** The move somebody named, on its own side; the other side keeps the usual one. */
-function movesOf(move: number | undefined): { rise: number; fall: number } {
+function movesOf(move: number | undefined): Moves {
   if (move === undefined) return USUAL_MOVES;
   if (!(Math.abs(move - 1) >= LEAST_MOVE - 1e-9) || move > LARGEST_MOVE || move <= 0)
     throw new EbbError(
       'OPTION_INVALID',
-      `a change by a factor of ${Number(move.toPrecision(4))} cannot be watched for account by account`,
+      `a change of the usual rate by a factor of ${Number(move.toPrecision(3))} cannot be watched for account by account`,
       'Name a rise or a fall by 10 % or more, such as “early, for a doubling” or “early, a fall by 30 %”.',
     );
   return move > 1 ? { ...USUAL_MOVES, rise: move } : { ...USUAL_MOVES, fall: move };

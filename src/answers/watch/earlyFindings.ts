@@ -9,7 +9,7 @@ import type { EarlyFindings, WatchState } from '../../verdict/questions/earlyFin
 import type { PooledRate } from '../../verdict/types.ts';
 import type { Watched } from './watchAccounts.ts';
 
-export type AboutWatch = Pick<EarlyFindings, 'tenure' | 'segment' | 'overdispersed' | 'mixMoved' | 'named' | 'verdict'>;
+export type AboutWatch = Pick<EarlyFindings, 'tenure' | 'segment' | 'overdispersed' | 'mixMoved' | 'verdict'>;
 
 /** Where the watch stands, from the sums over its accounts. */
 export function earlyFindings(watched: Watched, census: Census, about: AboutWatch): EarlyFindings {

@@ -15,7 +15,15 @@ const LEAST_LOSSES = 100;
 const WEEKS_A_YEAR = 52.18;
 
 /** The moves a watch looks for when nobody names one: a rise by half and a fall by half. */
-export const USUAL_MOVES = { rise: 1.5, fall: 0.5 } as const;
+export const USUAL_MOVES: Moves = { rise: 1.5, fall: 0.5 };
+
+/** Factors on the rate. */
+export interface Moves {
+  /** above 1 */
+  readonly rise: number;
+  /** between 0 and 1 */
+  readonly fall: number;
+}
 
 /** The accounts after those that set the usual level, watched one by one. Places are numbered from 1 at the first of them. */
 export interface Watched {
@@ -38,13 +46,14 @@ export interface Watched {
  * counted, also when they are lost already: they would only ever add losses (the classic bias).
  * @param judgement  of the chart: where it dates a move inside its trial limits, the level is taken from before it
  * @param chart      with a center strictly between 0 and 1
+ * @param movesFrom  what to look for, from the usual rate
  */
 export async function watchAccounts(
   table: AccountTable,
   census: Census,
   chart: Chart,
   judgement: Judgement,
-  moves: { readonly rise: number; readonly fall: number } = USUAL_MOVES,
+  movesFrom: (usual: number) => Moves = () => USUAL_MOVES,
 ): Promise<Watched> {
   const baselinePoints = levelPoints(chart, judgement);
   const points = census.subgroups
@@ -57,7 +66,7 @@ export async function watchAccounts(
   const usual = insideOf(baseline);
   const perYear = census.inflowPerWeek * WEEKS_A_YEAR;
   const every = Math.max(FALSE_ALARM_YEARS * perYear, LEAST_LOSSES / Math.min(usual, 1 - usual));
-  const watch = buildWatch(usual, moves, every);
+  const watch = buildWatch(usual, movesFrom(usual), every);
   const from = baselinePoints * census.request.subgroupSize;
   const found = await lossPlaces(table, census.request, from);
   return follow(watch, found, from, { baselinePoints, baseline });

@@ -38,8 +38,6 @@ export interface EarlyFindings {
   readonly unfinished: number;
   readonly rise: WatchState;
   readonly fall: WatchState;
-  /** a move somebody named, by its direction */
-  readonly named: 'rise' | 'fall' | null;
   readonly falseAlarmEvery: JointRunLength;
   /** the same if the usual level were really at the ends of its interval */
   readonly falseAlarmBetween: readonly [number, number];

@@ -42,7 +42,6 @@ export function earlyExample(watched: Watched, inflowPerWeek = 21): EarlyDrawing
     segment: null,
     overdispersed: false,
     mixMoved: false,
-    named: null,
     verdict: 'Churn is steady: the usual 6.0 % are lost within 3 months.',
   });
   return earlyDrawing(watched, found, 'Marrowby Seed Club export', dayFromIso('2026-06-30')!);
