@@ -106,11 +106,10 @@ export async function makeAccounts(
       ? `CREATE VIEW kept AS SELECT rowid AS n, ${key} AS key, start_day, ${TRUE_END_SQL} AS end_day, segment, amount, currency FROM ${data}`
       : `CREATE TABLE kept AS SELECT * EXCLUDE (reason) FROM judged WHERE reason IS NULL AND start_day <= ${asOf}`,
   );
-  const { duplicates, merged, severalAtOnce } = await mergeSpells(
-    connection,
-    options.bridgeDays ?? BRIDGE_DAYS,
-    columns.id !== undefined,
-  );
+  const { duplicates, merged, severalAtOnce } = await mergeSpells(connection, options.bridgeDays ?? BRIDGE_DAYS, {
+    ids: columns.id !== undefined,
+    currencies,
+  });
   if (duplicates > 0)
     leftOut.push(...(await countLeftOut(connection, 'several', "CASE WHEN again THEN 'duplicate' END")));
 

@@ -86,12 +86,12 @@ export async function readRaw(
     `CASE WHEN ${name} >= DATE '1900-01-01' AND ${name} <= DATE '9999-12-31' THEN (${name} - DATE '1970-01-01')::INTEGER END`;
   const amount = columns.amount === undefined ? undefined : column(columns.amount);
   // "nan" and "inf" are numbers to the engine, and no amounts to anybody.
-  const number = `try_cast(${amount} AS DOUBLE)`;
-  const amountText = amount === undefined ? 'NULL::VARCHAR' : `CASE WHEN amount IS NULL THEN ${amount} END`;
+  const noAmount = 'NOT coalesce(isfinite(amount), false)';
+  const amountText = amount === undefined ? 'NULL::VARCHAR' : `CASE WHEN ${noAmount} THEN ${amount} END`;
   const odd = [
     '(start_day IS NULL AND start_source IS NOT NULL)',
     '(end_day IS NULL AND end_source IS NOT NULL)',
-    ...(amount === undefined ? [] : [`(amount IS NULL AND ${amount} IS NOT NULL)`]),
+    ...(amount === undefined ? [] : [`(${noAmount} AND ${amount} IS NOT NULL)`]),
   ];
   const texts = options.texts
     ? `${dateTextSql('start_source', 'start_day')} AS start_text, ${dateTextSql('end_source', 'end_day')} AS end_text, ${amountText} AS amount_text`
@@ -104,7 +104,7 @@ export async function readRaw(
       `FROM (SELECT *, ${day('start_date')} AS start_day, ${day('end_date')} AS end_day FROM (SELECT *, ${text(columns.id)} AS id, ` +
       `${column(columns.start)} AS start_source, ${dateSql(column(columns.start))} AS start_date, ` +
       `${column(columns.end)} AS end_source, ${dateSql(column(columns.end))} AS end_date, ` +
-      `${text(columns.segment)} AS segment, ${amount === undefined ? 'NULL::DOUBLE' : `CASE WHEN isfinite(${number}) THEN ${number} END`} AS amount, ${text(columns.currency)} AS currency, ` +
+      `${text(columns.segment)} AS segment, ${amount === undefined ? 'NULL::DOUBLE' : `try_cast(${amount} AS DOUBLE)`} AS amount, ${text(columns.currency)} AS currency, ` +
       `${ruled.map((role) => `${text(columns[role])} AS ${role}, `).join('')}` +
       `${columns.id === undefined ? '0::UTINYINT' : idKindSql(column(columns.id))} AS id_kind FROM ${source}))`,
   );

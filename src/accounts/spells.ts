@@ -13,16 +13,17 @@ export const ACCOUNT_TYPES = `key UBIGINT, start_day INTEGER, end_day INTEGER, s
  * Rows of one account that overlap, touch, or lie no more than bridgeDays apart are one spell; the account starts with its first spell
  * and ends with it. Segment and amount are those of its first row; later rows of the first spell give the amounts from their start on.
  * Two rows that run at once are not added up: an export seldom says whether the second replaced the first or came on top of it. Such
- * accounts are marked (several_at_once), to be counted and told. Method: method of gaps and islands, with the latest end so far.
+ * accounts are marked (several_at_once), to be counted and told. Amounts are put in order after they are listed, which takes a fifth of the
+ * time of listing them in order; of two that begin on one day the larger counts as the later. Method: method of gaps and islands, with the latest end so far.
  */
-export function spellsSql(source: string, bridgeDays: number): string {
+export function spellsSql(source: string, bridgeDays: number, currencies: boolean): string {
   // An open row never ends: nothing after it can be a second spell. 2^30 lies beyond every calendar day.
   const open = 1 << 30;
   return `
     SELECT key, min(start_day) AS start_day, CASE WHEN max(until) FILTER (WHERE spell = 0) < ${open} THEN max(until) FILTER (WHERE spell = 0) END AS end_day,
       arg_min(segment, place) AS segment, arg_min(amount, place) AS amount, max(spell) > 0 AS returned,
-      string_agg(DISTINCT currency, ' and ' ORDER BY currency) AS currency,
-      list({'day': start_day, 'amount': amount} ORDER BY place) FILTER (WHERE spell = 0 AND amount <> amount_before) AS later_amounts,
+      ${currencies ? "string_agg(DISTINCT currency, ' and ' ORDER BY currency)" : 'NULL::VARCHAR'} AS currency,
+      list_sort(list({'day': start_day, 'amount': amount}) FILTER (WHERE spell = 0 AND amount <> amount_before)) AS later_amounts,
       coalesce(bool_or(spell = 0 AND amount <> amount_before AND start_day < reached), false) AS several_at_once
     FROM (
       SELECT *, sum(CASE WHEN start_day > reached + ${bridgeDays} THEN 1 ELSE 0 END) OVER (PARTITION BY key ORDER BY place) AS spell
@@ -39,16 +40,17 @@ const OF_ONE_ROW = `key, start_day, end_day, segment, amount, false AS returned,
 
 /**
  * Puts the accounts of table `kept` into `accounts`. Only the accounts with several rows are merged; the others pass.
- * @param hasIds  false: every row is an account of its own
+ * @param has.ids         false: every row is an account of its own
+ * @param has.currencies  some row may state one
  * @returns the number of rows that repeat another one exactly and were left out, and of accounts with two amounts at once
  */
 export async function mergeSpells(
   connection: DuckDBConnection,
   bridgeDays: number,
-  hasIds: boolean,
+  has: { readonly ids: boolean; readonly currencies: boolean },
 ): Promise<{ duplicates: number; merged: boolean; severalAtOnce: number }> {
   // Counting distinct keys takes little more than half of what looking for the repeated ones takes.
-  const { several } = hasIds
+  const { several } = has.ids
     ? await firstRow(
         connection,
         'SELECT (SELECT count(*) FROM kept) > (SELECT count(*) FROM (SELECT DISTINCT key FROM kept)) AS several',
@@ -63,7 +65,7 @@ export async function mergeSpells(
     FROM kept WHERE key IN (SELECT key FROM kept GROUP BY key HAVING count(*) > 1))`);
   const { duplicates } = await firstRow(connection, 'SELECT count(*)::INTEGER AS duplicates FROM several WHERE again');
   await connection.run(
-    `CREATE TABLE joined AS ${spellsSql('(SELECT * FROM several WHERE NOT again)', bridgeDays)};
+    `CREATE TABLE joined AS ${spellsSql('(SELECT * FROM several WHERE NOT again)', bridgeDays, has.currencies)};
      CREATE TABLE accounts AS SELECT ${OF_ONE_ROW} FROM kept WHERE key NOT IN (SELECT key FROM several) UNION ALL SELECT ${ACCOUNT_COLUMNS} FROM joined`,
   );
   const { at_once } = await firstRow(

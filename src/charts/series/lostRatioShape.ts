@@ -1,3 +1,4 @@
+import { binomialSampler } from '../random/binomialSampler.ts';
 import { seededUniform } from '../random/uniform.ts';
 
 /** Amounts of accounts, in groups of about equal ones: their mean amount, and how many there are. */
@@ -46,16 +47,10 @@ export function lostRatioShape({ amounts, size, rate }: LostRatioModel, seed = 1
     for (let i = 0; i < count; i++) sum += amounts[indexOf(cumulative, uniform())]!.amount;
     return sum;
   };
-  const lostCount = (): number => {
-    if (size * rate * (1 - rate) > MANY)
-      return Math.round(size * rate + Math.sqrt(size * rate * (1 - rate)) * normal());
-    let count = 0;
-    for (let i = 0; i < size; i++) if (uniform() < rate) count++;
-    return count;
-  };
+  const losses = binomialSampler(size, rate);
   const ratios = new Float64Array(RATIOS);
   for (let i = 0; i < RATIOS; i++) {
-    const lost = Math.min(size, Math.max(0, lostCount()));
+    const lost = losses.draw(uniform);
     const [gone, kept] = [sumOf(lost), sumOf(size - lost)];
     ratios[i] = gone + kept > 0 ? gone / (gone + kept) : 0;
   }

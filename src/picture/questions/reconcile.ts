@@ -140,7 +140,7 @@ export function reconcileScene(
 /** Up to where figures are drawn: far enough for the reported one, the census and most others, without squeezing them for a few. */
 function axisEnd({ candidates, census, reported }: ReconcileFindings): number {
   const wanted = Math.max(reported.rate * 1.25, (census?.value ?? 0) * 1.25, 0.002);
-  const room = 3 * Math.max(reported.rate, census?.value ?? 0, 0.002);
+  const room = 2 * Math.max(reported.rate, census?.value ?? 0, 0.002);
   const most = Math.max(0, ...candidates.map(({ value }) => value).filter((value) => value <= room));
   return Math.max(wanted, most * 1.06);
 }
