@@ -16,6 +16,8 @@ function loaded(): { whole: ReadonlySet<string>; beginnings: readonly string[] }
     for (const [, literal] of text.matchAll(/['"`]([A-Za-z0-9][\w.,+-]*)['"`]/g)) whole.add(literal!);
     for (const [, literal] of text.matchAll(/checkValues(?:<[^(]*>)?\(\s*['"`]([^'"`]+)['"`]/g))
       beginnings.push(literal!);
+    // A template counts for what stands before its first place for a value.
+    for (const [, literal] of text.matchAll(/checkValue(?:<[^(]*>)?\(\s*`([^`$]{3,})\$\{/g)) beginnings.push(literal!);
   }
   return { whole, beginnings: [...beginnings, ...[...whole].filter((one) => one.length > 3 && one.endsWith('-'))] };
 }
