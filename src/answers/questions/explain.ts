@@ -3,6 +3,7 @@ import { blockProfile } from '../../charts/standing/blockProfile.ts';
 import { drawPlate } from '../../picture/picture.ts';
 import { type ExplainPictureInput, explainAltText, explainScene } from '../../picture/questions/explain.ts';
 import { explainSteps } from '../../verdict/questions/explain/steps.ts';
+import { viewWords } from '../../verdict/words/viewWords.ts';
 import type { Answer } from '../types.ts';
 import type { AnswerSide, Reply } from './types.ts';
 
@@ -67,7 +68,7 @@ function blocksOf({ chart, judgement }: Answer): ExplainPictureInput['blocks'] {
   return profile.length > 0 ? { profile, reading } : null;
 }
 
-function measureOf({ chart }: Answer, tenure: string | null): string {
+function measureOf({ chart, census }: Answer, tenure: string | null): string {
   switch (chart?.kind) {
     case 'g':
       return 'accounts from one loss to the next';
@@ -75,9 +76,11 @@ function measureOf({ chart }: Answer, tenure: string | null): string {
       return 'days from one loss to the next';
     case 'individuals':
       return 'share of revenue lost';
+    case 'cusum':
+      return 'sum of the evidence, account by account';
     case 'ewma':
       return `smoothed share lost within ${tenure ?? 'the age'} of starting`;
     default:
-      return `lost within ${tenure ?? 'the age'} of starting`;
+      return viewWords(census?.request.view).measure(tenure ?? 'the age');
   }
 }

@@ -4,6 +4,7 @@ import type { Chart } from '../../charts/types.ts';
 import { chartAndJudge, isSubgroupKind } from '../../verdict/chartAndJudge.ts';
 import type { Judgement } from '../../verdict/judgement.ts';
 import type { PointDates } from '../../verdict/types.ts';
+import { type ViewWords, viewWords } from '../../verdict/words/viewWords.ts';
 import { readCautions } from '../readCautions.ts';
 import type { SideContext } from './types.ts';
 
@@ -19,6 +20,8 @@ export interface JudgedPoints {
   /** " for Orchard" or nothing */
   readonly whose: string;
   readonly readCautions: readonly string[];
+  /** how the census is spoken of: accounts by start, renewals, or calendar months */
+  readonly view: ViewWords;
 }
 
 /**
@@ -39,7 +42,17 @@ export async function judgedPoints(
   const cautions = readCautions(table.report, scope.asOf);
   if (answer.chart && answer.judgement && answer.census && isSubgroupKind(answer.chart.kind)) {
     const { chart, judgement, dates, census } = answer;
-    return { chart, judgement, dates, census, plan, tenure, whose, readCautions: cautions };
+    return {
+      chart,
+      judgement,
+      dates,
+      census,
+      plan,
+      tenure,
+      whose,
+      readCautions: cautions,
+      view: viewWords(census.request.view),
+    };
   }
   const census = await context.census();
   if (census.subgroups.length === 0) return { chart: null, census, tenure: tenureInWords(plan.tenure), whose };
@@ -51,5 +64,6 @@ export async function judgedPoints(
     tenure: tenureInWords(plan.tenure),
     whose,
     readCautions: cautions,
+    view: viewWords(census.request.view),
   };
 }

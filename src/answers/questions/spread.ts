@@ -11,10 +11,11 @@ import type { AnswerSide, Reply } from './types.ts';
 export const answerSpread: AnswerSide<'spread'> = async (context): Promise<Reply> => {
   const points = await judgedPoints(context);
   if (points.chart === null) return noPoints('spread', 'how much the points vary', points);
-  const { chart, judgement, dates, tenure, whose, readCautions } = points;
+  const { chart, judgement, dates, tenure, whose, readCautions, view } = points;
   const reading = readSpread(chart, judgement);
   const words = spreadWords(reading, {
     tenure,
+    view,
     dates,
     whose,
     readCautions,
@@ -24,7 +25,8 @@ export const answerSpread: AnswerSide<'spread'> = async (context): Promise<Reply
   const drawn: SpreadPictureInput = {
     reading,
     headline: words.headline,
-    measure: `lost within ${tenure} of starting`,
+    measure: view.measure(tenure),
+    one: view.one,
     subject: context.subject,
     asOf: context.scope.asOf,
   };

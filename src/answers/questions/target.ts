@@ -15,10 +15,11 @@ export const answerTarget: AnswerSide<'target'> = async (context, request): Prom
   if (!(target >= 0 && target <= 1)) return impossible(target);
   const points = await judgedPoints(context);
   if (points.chart === null) return noPoints('target', `whether a target of ${targetPercent(target)} is met`, points);
-  const { chart, judgement, dates, census, tenure, whose } = points;
+  const { chart, judgement, dates, census, tenure, whose, view } = points;
   const reading = readTarget(chart, judgement, target, chart.subgroupSize ?? meanSize(chart));
   const words = targetWords(reading, {
     tenure,
+    view,
     dates,
     whose,
     points: chart.points.length,
@@ -32,7 +33,7 @@ export const answerTarget: AnswerSide<'target'> = async (context, request): Prom
     chart,
     dates,
     headline: words.headline,
-    measure: `lost within ${tenure} of starting`,
+    measure: view.measure(tenure),
     subject: context.subject,
     asOf: context.scope.asOf,
   };

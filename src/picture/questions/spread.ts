@@ -15,6 +15,8 @@ export interface SpreadPictureInput {
   /** "lost within 3 months of starting" */
   readonly measure: string;
   readonly subject: string;
+  /** what a point counts: "account" */
+  readonly one: string;
   readonly asOf: number;
 }
 
@@ -51,7 +53,7 @@ export function spreadScene(input: SpreadPictureInput): Scene | null {
         { words: `predicted from chance alone at ${percent(reading.rate)}`, sign: { line: LEVEL, width: 4 } },
       ],
     },
-    [histogramPart(reading)],
+    [histogramPart(reading, input.one)],
     [
       ...(dispersion && sigmaZ !== null
         ? [
@@ -72,7 +74,7 @@ export function spreadScene(input: SpreadPictureInput): Scene | null {
       ...(far
         ? [
             {
-              words: `furthest out: point ${far.index}, ${count(far.lost)} of ${countOf(far.accounts, 'account')} lost`,
+              words: `furthest out: point ${far.index}, ${count(far.lost)} of ${countOf(far.accounts, input.one)} lost`,
             },
           ]
         : []),
@@ -86,7 +88,7 @@ export function spreadScene(input: SpreadPictureInput): Scene | null {
   );
 }
 
-function histogramPart(reading: SpreadReading): Part {
+function histogramPart(reading: SpreadReading, one: string): Part {
   const { of, bins } = reading.histogram!;
   const half = of === 'lost' ? 0.5 : 0;
   const [first, last] = [bins[0]!, bins.at(-1)!];
@@ -102,7 +104,7 @@ function histogramPart(reading: SpreadReading): Part {
         figures: of === 'lost' ? 'count' : 'number',
         title:
           of === 'lost'
-            ? `accounts lost, of ${count(sizes[0]!.accounts)} in a point`
+            ? `${one}s lost, of ${count(sizes[0]!.accounts)} in a point`
             : 'distance from the usual level, in standard deviations',
         ...(of === 'lost' && first.to > first.from ? { ticks: binTicks(bins) } : {}),
       },

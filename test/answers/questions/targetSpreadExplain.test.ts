@@ -102,6 +102,21 @@ describe('target', () => {
     expect(early.json.target.outcome).toBe('too-early');
   });
 
+  it.each([
+    ['calendar', /of customers are lost in a month/, /customer-months lost/],
+    ['renewal', /of renewals are lost/, /renewals lost/],
+  ])('by %s it speaks of what was counted', async (view, headline, evidence) => {
+    const told = await cli.ask(exports('nothing-changed'), 'target', '2%', '--by', view);
+    expectSound(told);
+    expect(told.json.answer.headline).toMatch(headline);
+    expect(told.json.answer.evidence[0]).toMatch(evidence);
+    for (const command of ['spread', 'explain']) {
+      const other = await cli.ask(exports('nothing-changed'), command, '--by', view);
+      expectSound(other);
+      expect(JSON.stringify(other.json.answer.evidence)).not.toMatch(/within 3 months/);
+    }
+  });
+
   it('points that vary more than chance widen the interval', async () => {
     const uneven = (point: number): number => [2, 10, 3, 12, 1, 9, 2, 11][point % 8]!;
     const told = await cli.ask(cli.file(made(24, uneven)), 'target', '10%', ...AT.slice(0, 4));
@@ -203,7 +218,7 @@ describe('explain', () => {
     );
   });
 
-  it.each(['p-prime', 'g', 't', 'ewma'])('a chart of the kind %s is explained too', async (kind) => {
+  it.each(['p-prime', 'g', 't', 'ewma', 'cusum'])('a chart of the kind %s is explained too', async (kind) => {
     const told = await cli.ask(exports('nothing-changed'), 'explain', '--chart', kind);
     expectSound(told);
     expect(told.json.explain.chartKind).toBe(kind);

@@ -19,6 +19,7 @@ import { normalised } from '../normalised.ts';
 const about = {
   measure: 'lost within 3 months of starting',
   subject: 'Marrowby Seed Club export, all plans',
+  one: 'account',
   asOf: day('2026-06-30'),
 };
 

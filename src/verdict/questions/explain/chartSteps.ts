@@ -13,7 +13,7 @@ export function valueWords(chart: Chart, value: number): string {
     case 'days':
       return counted(value, 'day');
     case 'score':
-      return value.toFixed(2);
+      return value.toFixed(2).replace('-', '−');
   }
 }
 
@@ -37,9 +37,10 @@ function usualLevel(chart: Chart, bySubgroups: boolean): Step {
     baseline.last >= chart.points.length
       ? `all ${counted(baseline.last, 'point')}`
       : `points ${baseline.first} to ${baseline.last}, the first ones, and later points are judged against it`;
-  const sum = bySubgroups
-    ? `lost / accounts = ${count(baseline.lost)} / ${count(baseline.accounts)} = ${percent(center)}`
-    : `${valueWords(chart, center)}${chart.mean === undefined ? '' : ` (the median; mean ${valueWords(chart, chart.mean)})`}`;
+  const sum =
+    bySubgroups || chart.kind === 'cusum'
+      ? `lost / accounts = ${count(baseline.lost)} / ${count(baseline.accounts)} = ${percent(chart.kind === 'cusum' ? baseline.lost / baseline.accounts : center)}`
+      : `${valueWords(chart, center)}${chart.mean === undefined ? '' : ` (the median; mean ${valueWords(chart, chart.mean)})`}`;
   return {
     title: 'Usual level',
     sentences: [
@@ -103,7 +104,8 @@ function limitsInGeneral(chart: Chart): Step | null {
     t: 'from the exponential distribution, at the tail areas of three sigma',
     individuals: 'from how much neighbouring points differ (mean moving range): level ± 2.66 times it',
     ewma: `from the sigma of a smoothed share${chart.smoothing ? `, each share weighing ${chart.smoothing.lambda} and what came before ${(1 - chart.smoothing.lambda).toFixed(2)}` : ''}`,
-    cusum: 'from the sum at which a stated change would be flagged',
+    cusum:
+      'from what the sum of the evidence reaches by chance: each lost account adds to it, each kept one takes a little away',
   };
   return {
     title: 'Limits',

@@ -15,7 +15,7 @@ const FLAGS_TOLD = 4;
 const VALUES_TOLD = 10;
 
 function flags({ chart, signals }: Explained): Step | null {
-  if (!chart) return null;
+  if (!chart || chart.kind === 'cusum') return null;
   const shifts = signals.filter((signal) => signal.speaks === 'shift');
   const standing = ['standing', 'watching', 'passed'];
   const told = [...shifts].sort((a, b) => standing.indexOf(a.state) - standing.indexOf(b.state) || b.until - a.until);
@@ -108,9 +108,10 @@ function ratioSentence({ points, baseline, center }: Chart, { first, ratio }: La
 }
 
 const OUTCOMES = {
-  risen: 'a flag stands and the block is above the usual level, so churn has risen',
-  fallen: 'a flag stands and the block is below the usual level, so churn has fallen',
-  steady: 'no flag stands, so churn is called steady, with what could have been missed told beside it',
+  risen: 'what stands out says more losses than usual, beyond what is needed, so churn has risen',
+  fallen: 'what stands out says fewer losses than usual, beyond what is needed, so churn has fallen',
+  steady:
+    'nothing stands out beyond what is needed, so churn is called steady, with what could have been missed told beside it',
   'too-early': 'there are too few points to judge, so it is too early to tell',
   'cannot-say': 'the data does not carry an answer',
 } as const;

@@ -1,5 +1,6 @@
 import { dayInWords, isoDay } from '../../../days.ts';
 import { capitalised, count, counted, listed } from '../../words/format.ts';
+import { viewWords } from '../../words/viewWords.ts';
 import type { Explained, Step } from './steps.ts';
 
 /** From the rows of the file to the points. */
@@ -22,9 +23,18 @@ function rowsRead({ report }: Explained): Step | null {
 }
 
 function matured({ census, tenure }: Explained): Step | null {
-  if (!census || tenure === null) return null;
+  // A month begins with whoever is a customer then, however young.
+  if (!census || tenure === null || census.request.view === 'calendar') return null;
   const { matured: old, immature, request } = census;
   const settle = request.settleDays > 0 ? ` and ${counted(request.settleDays, 'day')} for late bookings` : '';
+  if (request.view === 'renewal')
+    return {
+      title: 'Come due',
+      sentences: [
+        `${capitalised(counted(old, 'renewal'))} had come due by ${dayInWords(request.asOf)}, ${count(immature)} are still to come.`,
+      ],
+      figures: { asOf: isoDay(request.asOf), due: old, toCome: immature },
+    };
   const whose = request.segment === undefined ? '' : ` of ${request.segment}`;
   return {
     title: 'Old enough',
@@ -41,15 +51,15 @@ function points({ census, chart, bySubgroups }: Explained): Step | null {
   const found = chart.points.length;
   const sizes = chart.points.map(({ accounts }) => accounts);
   const charted = sizes.reduce((sum, n) => sum + n, 0);
+  const view = viewWords(request.view);
   const sum =
     chart.subgroupSize === null
-      ? `${counted(found, 'point')} of ${count(Math.min(...sizes))} to ${counted(Math.max(...sizes), 'account')}`
-      : `${counted(found, 'point')} of ${counted(chart.subgroupSize, 'account')}`;
-  const order = { start: 'start', renewal: 'renewal', calendar: 'month' }[request.view];
+      ? `${counted(found, 'point')} of ${count(Math.min(...sizes))} to ${counted(Math.max(...sizes), view.one)}`
+      : `${counted(found, 'point')} of ${counted(chart.subgroupSize, view.one)}`;
   return {
     title: 'Points',
     sentences: [
-      `In order of ${order} they are cut into ${sum}${request.view === 'start' && chart.subgroupSize !== null ? `, and ${count(waiting)} wait for the next one (${count(found)} × ${count(chart.subgroupSize)} + ${count(waiting)} = ${count(charted + waiting)})` : ''}. A point’s value is its lost over its accounts.`,
+      `${capitalised(view.order)} they are cut into ${sum}${request.view !== 'calendar' && chart.subgroupSize !== null ? `, and ${count(waiting)} wait for the next one (${count(found)} × ${count(chart.subgroupSize)} + ${count(waiting)} = ${count(charted + waiting)})` : ''}. A point’s value is its lost over its accounts.`,
     ],
     figures: { points: found, subgroupSize: chart.subgroupSize, charted, waiting, matured: old },
   };

@@ -1,13 +1,14 @@
 import type { ChartKind } from '../../../charts/types.ts';
-import { dayInWords } from '../../../days.ts';
 import type { PointDates } from '../../types.ts';
 import { capitalised, count, counted, percent } from '../../words/format.ts';
+import type { ViewWords } from '../../words/viewWords.ts';
 import { inCases } from '../chanceWords.ts';
 import type { Words } from '../target/words.ts';
 import type { SpreadReading } from './reading.ts';
 
 export interface SpreadContext {
   readonly tenure: string;
+  readonly view: ViewWords;
   readonly dates: readonly PointDates[];
   /** points on the chart */
   readonly points: number;
@@ -30,7 +31,10 @@ export function spreadWords(reading: SpreadReading, context: SpreadContext): Wor
   };
 }
 
-function headline({ outcome, dispersion, rate, stretch }: SpreadReading, { tenure, whose }: SpreadContext): string {
+function headline(
+  { outcome, dispersion, rate, stretch }: SpreadReading,
+  { tenure, whose, view }: SpreadContext,
+): string {
   const times = (dispersion?.ratio ?? 1).toFixed(1);
   switch (outcome) {
     case 'chance':
@@ -44,7 +48,7 @@ function headline({ outcome, dispersion, rate, stretch }: SpreadReading, { tenur
     case 'one-point':
       return `Cannot say how much the points vary${whose}: there is only one.`;
     case 'no-level':
-      return `Cannot say how much the points vary${whose}: ${rate >= 1 || stretch.pooled.lost > 0 ? 'everybody was' : 'nobody was'} lost within ${tenure}, so they are all the same.`;
+      return `Cannot say how much the points vary${whose}: ${rate >= 1 || stretch.pooled.lost > 0 ? view.everybodyLost(tenure) : view.nobodyLost(tenure)}, so they are all the same.`;
   }
 }
 
@@ -52,12 +56,12 @@ function evidence(reading: SpreadReading, context: SpreadContext): string[] {
   const { stretch, rate, dispersion, deviation, sigmaZ, size, histogram } = reading;
   const { pooled, counts } = stretch;
   const rows = [
-    `${capitalised(whichPoints(reading, context))}: ${count(pooled.lost)} of ${counted(pooled.accounts, 'account')} lost within ${context.tenure}; usual level ${percent(rate)}.`,
+    `${capitalised(whichPoints(reading, context))}: ${count(pooled.lost)} of ${counted(pooled.accounts, context.view.pooledOne)} lost; usual level ${percent(rate)}.`,
   ];
-  if (histogram?.of === 'lost') rows.push(usualCounts(reading));
+  if (histogram?.of === 'lost') rows.push(usualCounts(reading, context.view.one));
   if (dispersion && deviation) {
     rows.push(
-      `From chance alone, a point${counts.every((one) => one.accounts === size) ? ` of ${counted(size, 'account')}` : ''} strays from the level by ${percent(deviation.predicted)} of its accounts (standard deviation); these stray by ${percent(deviation.seen)}.`,
+      `From chance alone, a point${counts.every((one) => one.accounts === size) ? ` of ${counted(size, context.view.one)}` : ''} strays from the level by ${percent(deviation.predicted)} of its ${context.view.one}s (standard deviation); these stray by ${percent(deviation.seen)}.`,
       `Dispersion test: chi-square ${dispersion.chiSquare.toFixed(1)} on ${count(dispersion.degreesOfFreedom)} degrees of freedom, ratio ${dispersion.ratio.toFixed(2)}. Chance alone varies at least so much ${inCases(dispersion.pValue)} such charts.`,
     );
   }
@@ -70,7 +74,7 @@ function evidence(reading: SpreadReading, context: SpreadContext): string[] {
 }
 
 /** "Chance alone makes a point of 85 lose 2 to 10 (…)": what to expect of a single point. */
-function usualCounts({ histogram, size, stretch }: SpreadReading): string {
+function usualCounts({ histogram, size, stretch }: SpreadReading, unit: string): string {
   const bins = histogram!.bins;
   const total = bins.reduce((sum, bin) => sum + bin.expected, 0);
   let left = 0;
@@ -81,7 +85,7 @@ function usualCounts({ histogram, size, stretch }: SpreadReading): string {
   while (high > low && right + bins[high]!.expected <= total * 0.025) right += bins[high--]!.expected;
   const [from, to] = [bins[low]!.from, bins[high]!.to];
   const outside = stretch.counts.filter(({ lost }) => lost < from || lost > to).length;
-  return `By chance alone about 19 of 20 points of ${counted(size, 'account')} lose ${count(from)} to ${count(to)}; of these ${counted(stretch.counts.length, 'point')}, ${count(outside)} lost fewer or more (about ${(left + right).toFixed(1)} expected).`;
+  return `By chance alone about 19 of 20 points of ${counted(size, unit)} lose ${count(from)} to ${count(to)}; of these ${counted(stretch.counts.length, 'point')}, ${count(outside)} lost fewer or more (about ${(left + right).toFixed(1)} expected).`;
 }
 
 function widening({ limits, sigmaZ, outcome }: SpreadReading, kind: ChartKind): string[] {
@@ -103,12 +107,12 @@ function widening({ limits, sigmaZ, outcome }: SpreadReading, kind: ChartKind): 
   ];
 }
 
-function furthest({ furthest: far, stretch }: SpreadReading, { dates }: SpreadContext): string[] {
+function furthest({ furthest: far, stretch }: SpreadReading, { dates, view }: SpreadContext): string[] {
   const told = far.filter(({ z }) => Math.abs(z) > 0);
   if (told.length === 0) return [];
   const words = told.map(({ index, lost, accounts, z, expected }) => {
     const from = dates[index - 1]?.firstStart ?? null;
-    const when = from === null ? '' : ` (accounts starting from ${dayInWords(from)})`;
+    const when = from === null ? '' : ` (from ${view.day(from)})`;
     return `point ${index}${when}, ${count(lost)} of ${count(accounts)} lost, ${Math.abs(z).toFixed(1)} standard deviations ${z > 0 ? 'above' : 'below'}, where chance makes ${expectedWords(expected)} of ${count(stretch.counts.length)} points so ${z > 0 ? 'high' : 'low'}`;
   });
   return [`Furthest out: ${words.join('; ')}.`];
@@ -118,12 +122,11 @@ function expectedWords(expected: number): string {
   return expected < 0.01 ? 'fewer than 0.01' : `about ${expected.toFixed(expected < 1 ? 2 : 1)}`;
 }
 
-function whichPoints({ stretch }: SpreadReading, { dates, points }: SpreadContext): string {
+function whichPoints({ stretch }: SpreadReading, { dates, points, view }: SpreadContext): string {
   const { from, to, reason } = stretch;
   const first = dates[from - 1]?.firstStart ?? null;
   const last = dates[to - 1]?.lastStart ?? null;
-  const when =
-    first === null || last === null ? '' : `, accounts that started ${dayInWords(first)} to ${dayInWords(last)}`;
+  const when = first === null || last === null ? '' : `, ${view.span(view.day(first), view.day(last))}`;
   if (reason === 'all') return points === 1 ? `the only point${when}` : `all ${count(points)} points${when}`;
   const why = reason === 'moved' ? ', those before the figure moved' : ', those that should set the usual level';
   return `${from === to ? `point ${from}` : `points ${from} to ${to}`}${when}${why}`;

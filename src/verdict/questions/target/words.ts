@@ -1,12 +1,13 @@
-import { dayInWords } from '../../../days.ts';
 import type { PointDates } from '../../types.ts';
 import { capitalised, count, counted, numberWord, percent } from '../../words/format.ts';
+import type { ViewWords } from '../../words/viewWords.ts';
 import { chancePercent, inCases } from '../chanceWords.ts';
 import type { TargetReading } from './reading.ts';
 
 export interface TargetContext {
   /** "3 months" */
   readonly tenure: string;
+  readonly view: ViewWords;
   readonly dates: readonly PointDates[];
   /** points on the chart */
   readonly points: number;
@@ -41,12 +42,18 @@ export function targetWords(reading: TargetReading, context: TargetContext): Wor
   };
 }
 
-function targetHeadline(reading: TargetReading, { tenure, whose }: TargetContext): string {
+/** Rates with as many decimals as tell them from each other: two where an interval spans less than half a point. */
+function finely({ low, high }: TargetReading['interval']): (rate: number) => string {
+  return (rate) => (high - low < 0.005 && rate > 0 && rate < 1 ? `${(rate * 100).toFixed(2)} %` : percent(rate));
+}
+
+function targetHeadline(reading: TargetReading, { tenure, whose, view }: TargetContext): string {
   const { outcome, interval, stretch } = reading;
   const { lost, accounts } = stretch.pooled;
   const target = targetPercent(reading.target);
-  const level = `${percent(interval.estimate)} are lost within ${tenure}`;
-  const range = `${percent(interval.low)} to ${percent(interval.high)}`;
+  const fine = finely(interval);
+  const level = `${fine(interval.estimate)} ${view.areLost(tenure)}`;
+  const range = `${fine(interval.low)} to ${fine(interval.high)}`;
   switch (outcome) {
     case 'met':
       return `The target of ${target} is met${whose}, beyond chance: ${level}, and the true level lies within ${range}.`;
@@ -56,8 +63,8 @@ function targetHeadline(reading: TargetReading, { tenure, whose }: TargetContext
       return `Cannot say whether the target of ${target} is met${whose}: ${level}, but the true level can lie anywhere within ${range}.`;
     case 'nobody':
       return lost > 0
-        ? `A target of 0 % is missed${whose}: it is met only while nobody at all is lost, and ${count(lost)} of ${counted(accounts, 'account')} were.`
-        : `Cannot say whether a target of 0 % is met${whose}: nobody of ${counted(accounts, 'account')} was lost, but no count can show that nobody ever will be.`;
+        ? `A target of 0 % is missed${whose}: it is met only while nobody at all is lost, and ${count(lost)} of ${counted(accounts, view.pooledOne)} were.`
+        : `Cannot say whether a target of 0 % is met${whose}: nobody of ${counted(accounts, view.pooledOne)} was lost, but no count can show that nobody ever will be.`;
     case 'everybody':
       return `A target of 100 % cannot be missed${whose}: even if every account were lost, it would be met.`;
   }
@@ -66,8 +73,9 @@ function targetHeadline(reading: TargetReading, { tenure, whose }: TargetContext
 function evidence(reading: TargetReading, context: TargetContext): string[] {
   const { stretch, interval, outcome, soFew, soMany, target } = reading;
   const { pooled, counts } = stretch;
+  const fine = finely(interval);
   const rows = [
-    `${capitalised(whichPoints(reading, context))}: ${count(pooled.lost)} of ${counted(pooled.accounts, 'account')} lost, ${percent(interval.estimate)} (95 % interval ${percent(interval.low)} to ${percent(interval.high)}).`,
+    `${capitalised(whichPoints(reading, context))}: ${count(pooled.lost)} of ${counted(pooled.accounts, context.view.pooledOne)} lost, ${fine(interval.estimate)} (95 % interval ${fine(interval.low)} to ${fine(interval.high)}).`,
   ];
   if (outcome === 'nobody' || outcome === 'everybody') return rows;
   const below = interval.estimate <= target;
@@ -81,29 +89,28 @@ function evidence(reading: TargetReading, context: TargetContext): string[] {
   );
   rows.push(
     `${reading.pointsMet === 0 ? 'None' : capitalised(numberWord(reading.pointsMet))} of its ${counted(counts.length, 'point')} met the target by ${reading.pointsMet === 1 ? 'itself' : 'themselves'}; a single point says little, since chance moves it.`,
-    ...outlookWords(reading),
+    ...outlookWords(reading, context.view.one),
   );
   return rows;
 }
 
 /** What the next points will do with nothing changed. */
-function outlookWords({ next, nextRange, nextSize }: TargetReading): string[] {
+function outlookWords({ next, nextRange, nextSize }: TargetReading, unit: string): string[] {
   const [one, ...more] = next;
   if (!one) return [];
   const means = more.map(({ points, chance }) => `${points} points with ${chancePercent(chance)}`);
   return [
-    `With nothing changed, the next point of ${counted(nextSize, 'account')} meets the target (at most ${count(one.mostLost)} lost) with ${chancePercent(one.chance)} chance, and 9 of 10 such points lie between ${percent(nextRange.low)} and ${percent(nextRange.high)}.`,
+    `With nothing changed, the next point of ${counted(nextSize, unit)} meets the target (at most ${count(one.mostLost)} lost) with ${chancePercent(one.chance)} chance, and 9 of 10 such points lie between ${percent(nextRange.low)} and ${percent(nextRange.high)}.`,
     `The mean of the next ${means.slice(0, -1).join(', of ')}${means.length > 1 ? ' and of ' : ''}${means.at(-1)}.`,
   ];
 }
 
 /** "points 31 to 57 (accounts that started …), the stretch since churn moved". */
-function whichPoints({ stretch }: TargetReading, { dates, points, fewPoints }: TargetContext): string {
+function whichPoints({ stretch }: TargetReading, { dates, points, fewPoints, view }: TargetContext): string {
   const { from, to, reason } = stretch;
   const first = dates[from - 1]?.firstStart ?? null;
   const last = dates[to - 1]?.lastStart ?? null;
-  const when =
-    first === null || last === null ? '' : `, accounts that started ${dayInWords(first)} to ${dayInWords(last)}`;
+  const when = first === null || last === null ? '' : `, ${view.span(view.day(first), view.day(last))}`;
   if (reason === 'all')
     return points === 1
       ? `the only point${when}`
@@ -143,7 +150,7 @@ function cautions(reading: TargetReading, context: TargetContext): string[] {
   return list;
 }
 
-function next(reading: TargetReading, { inflowPerWeek }: TargetContext): string[] {
+function next(reading: TargetReading, { inflowPerWeek, view }: TargetContext): string[] {
   const { outcome, accountsToTell, stretch, nextSize } = reading;
   if (outcome === 'nobody' || outcome === 'everybody')
     return ['Name a target between the two, such as "target 5 %", to have it tested.'];
@@ -155,6 +162,6 @@ function next(reading: TargetReading, { inflowPerWeek }: TargetContext): string[
   const weeks =
     inflowPerWeek > 0 ? `, at the recent pace about ${counted(Math.ceil(more / inflowPerWeek), 'week')}` : '';
   return [
-    `If the level stays where it is, about ${count(more)} more accounts (${counted(Math.ceil(more / nextSize), 'point')}${weeks}) would tell it from the target.`,
+    `If the level stays where it is, about ${count(more)} more ${view.pooledOne}s (${counted(Math.ceil(more / nextSize), 'point')}${weeks}) would tell it from the target.`,
   ];
 }
