@@ -101,9 +101,9 @@ describe('early', () => {
     const fall = await cli.ask(path, 'early', 'for', 'a', 'fall', 'by', '30', '%', ...AT);
     expect(fall.json.early.fall.to).toBeCloseTo(0.7 * usual.usual.rate, 9);
     expect(fall.json.early.rise).toEqual(usual.rise);
-    const named = await cli.ask(path, 'early,', 'rise', 'to', '12', '%', ...AT);
+    const named = await cli.ask(path, 'early', 'rise', 'to', '12', '%', ...AT);
     expect(named.json.early.rise.to).toBeCloseTo(0.12, 9);
-    const near = await cli.ask(path, 'early,', 'rise', 'to', '7', '%', ...AT);
+    const near = await cli.ask(path, 'early', 'rise', 'to', '7', '%', ...AT);
     expect(near.json.error).toMatchObject({ code: 'OPTION_INVALID' });
     const tiny = await cli.ask(path, 'early', 'for', 'a', 'rise', 'by', '2', '%', ...AT);
     expect(tiny.code).toBe(2);
