@@ -1,10 +1,10 @@
 import type { ChartKind, ShiftTest, SubgroupCount } from '../charts/types.ts';
-import { drawPicture } from '../picture/picture.ts';
 import { chartAndJudge, isSubgroupKind } from '../verdict/chartAndJudge.ts';
 import type { PointDates } from '../verdict/types.ts';
 import { writeVerdict } from '../verdict/verdict.ts';
 import { chosenTests } from '../verdict/words/testWords.ts';
 import { drawnFrom } from './drawnFrom.ts';
+import { finishAnswer } from './finishAnswer.ts';
 import type { Answer } from './types.ts';
 
 export interface CountsQuestion {
@@ -54,40 +54,26 @@ export async function answerCounts(question: CountsQuestion): Promise<Answer> {
     howChosen: question.tests ? [chosenTests(question.tests)] : [],
     readCautions: [],
   });
-  const chartDone = clock();
-  const picture = question.picture
-    ? await drawPicture({
+  return finishAnswer(
+    {
+      verdict,
+      chart,
+      dates,
+      signals: judgement.signals,
+      trust: judgement.trust,
+      judgement,
+      census: null,
+      plan: null,
+      drawn: {
         ...drawnFrom(judgement),
-        chart,
-        dates,
-        signals: judgement.signals,
-        verdict,
         waiting: null,
         immature: 0,
         measure: 'share lost',
         subject: 'ready counts',
         asOf: null,
-      })
-    : null;
-  const done = clock();
-  return {
-    verdict,
-    chart,
-    dates,
-    signals: judgement.signals,
-    trust: judgement.trust,
-    judgement,
-    report: null,
-    census: null,
-    plan: null,
-    tenure: null,
-    picture,
-    timing: {
-      readMs: 0,
-      censusMs: 0,
-      chartMs: chartDone - begun,
-      pictureMs: done - chartDone,
-      totalMs: done - begun,
+      },
+      countedAt: begun,
     },
-  };
+    { picture: question.picture, clock, begun, readMs: 0, report: null },
+  );
 }

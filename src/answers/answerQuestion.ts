@@ -1,9 +1,9 @@
 import type { AccountTable } from '../accounts/types.ts';
-import { drawPicture } from '../picture/picture.ts';
 import type { Question } from '../requests/types.ts';
 import { chooseWay } from './ask/chooseWay.ts';
 import { resolvePlan, resolveScope } from './ask/scope.ts';
-import type { AskContext, Reached } from './ask/types.ts';
+import type { AskContext } from './ask/types.ts';
+import { finishAnswer } from './finishAnswer.ts';
 import type { Answer } from './types.ts';
 
 export interface AnswerOptions {
@@ -32,39 +32,6 @@ export async function answerQuestion(table: AccountTable, question: Question, op
     clock: options.clock,
   };
   const way = await chooseWay(context);
-  return finished(table, await way(context), options, begun);
-}
-
-/** Draws the picture and adds up the times. */
-async function finished(
-  table: AccountTable,
-  reached: Reached,
-  { picture, clock, readMs }: AnswerOptions,
-  begun: number,
-): Promise<Answer> {
-  const { verdict, chart, dates, signals, trust, judgement, census, plan, drawn, countedAt } = reached;
-  const charted = clock();
-  const draw = reached.draw ?? (() => drawPicture({ ...drawn, chart, dates, signals, verdict }));
-  const drawing = picture ? await draw() : null;
-  const done = clock();
-  return {
-    verdict,
-    chart,
-    dates,
-    signals,
-    trust,
-    judgement,
-    report: table.report,
-    census,
-    plan,
-    tenure: plan.tenure,
-    picture: drawing,
-    timing: {
-      readMs,
-      censusMs: countedAt - begun,
-      chartMs: charted - countedAt,
-      pictureMs: done - charted,
-      totalMs: readMs + done - begun,
-    },
-  };
+  const { picture, clock, readMs } = options;
+  return finishAnswer(await way(context), { picture, clock, begun, readMs, report: table.report });
 }

@@ -1,11 +1,11 @@
 import type { ShiftTest } from '../charts/types.ts';
-import { drawPicture } from '../picture/picture.ts';
 import { writeGapVerdict } from '../verdict/gaps/gapVerdict.ts';
 import { judgeGaps } from '../verdict/gaps/judgeGaps.ts';
 import type { GapContext } from '../verdict/gaps/types.ts';
 import type { PictureInput, PointDates } from '../verdict/types.ts';
 import { judgeValues } from '../verdict/values/judgeValues.ts';
 import { writeValuesVerdict } from '../verdict/values/valuesVerdict.ts';
+import { finishAnswer } from './finishAnswer.ts';
 import { gapsDrawn } from './gapsDrawn.ts';
 import type { Answer } from './types.ts';
 
@@ -24,31 +24,11 @@ export interface ValuesQuestion {
 export async function answerValues(question: ValuesQuestion): Promise<Answer> {
   const { clock } = question;
   const begun = clock();
-  const { verdict, chart, signals, trust, drawn } = answered(question);
   const dates: PointDates[] = question.values.map(() => ({ firstStart: null, lastStart: null, asOf: null }));
-  const chartDone = clock();
-  const picture = question.picture ? await drawPicture({ ...drawn, chart, dates, signals, verdict }) : null;
-  const done = clock();
-  return {
-    verdict,
-    chart,
-    dates,
-    signals,
-    trust,
-    judgement: null,
-    report: null,
-    census: null,
-    plan: null,
-    tenure: null,
-    picture,
-    timing: {
-      readMs: 0,
-      censusMs: 0,
-      chartMs: chartDone - begun,
-      pictureMs: done - chartDone,
-      totalMs: done - begun,
-    },
-  };
+  return finishAnswer(
+    { ...answered(question), dates, judgement: null, census: null, plan: null, countedAt: begun },
+    { picture: question.picture, clock, begun, readMs: 0, report: null },
+  );
 }
 
 type Answered = Pick<Answer, 'verdict' | 'chart' | 'signals' | 'trust'> & {
