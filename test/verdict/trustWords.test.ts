@@ -45,8 +45,9 @@ describe('how soon a flag comes and what the level rests on', () => {
       `a halving, to ${(100 * fall!.rate).toFixed(1)} %, after about ${Math.round(fall!.points!)} points`,
     );
     expect(soon).toContain(`about ${Math.round(rise!.weeks!)} weeks)`);
-    const { low, high } = judgement.trust.estimated!;
+    const { low, high, falseAlarmEvery } = judgement.trust.estimated!;
     expect(level).toContain('A usual level from 25 points');
+    expect(level).toContain(`about once in ${Math.round(falseAlarmEvery!)} points`);
     expect(level).toContain(`${Math.round(low)} to ${Math.round(high!)} points`);
   });
 
