@@ -149,6 +149,9 @@ export function judge(chart: Chart, options: JudgeOptions = {}): Judgement {
   const calibrated = standingThreshold(design, chart.center);
   const threshold = stepProven ? { ...calibrated, ratio: LEAST_RATIO } : calibrated;
   const side = standing.above.score >= standing.below.score ? 'above' : 'below';
+  // Where no flag lies in either block, the one that differs more is told.
+  const unscored = standing.above.score === 0 && standing.below.score === 0;
+  const toldSide = unscored && standing.below.block.ratio > standing.above.block.ratio ? 'below' : side;
   const moved = standing[side].score / shrink > threshold.ratio ? side : null;
   // On trial limits the moved block lies in the baseline itself; the level is what lies before it.
   const blockFirst = trial && moved ? standing[moved].block.first : newest + 1;
@@ -180,7 +183,7 @@ export function judge(chart: Chart, options: JudgeOptions = {}): Judgement {
     dispersion: spread,
     neighbours: autocorrelation(level.map((count) => count.lost / count.accounts)),
     standingChance: chanceOfScore(calibrated, standing[side].score / shrink),
-    lastBlock: readLastBlock(standing[side], side, prime ? Math.max(1, spread?.ratio ?? 1) : shrink, shrink, {
+    lastBlock: readLastBlock(standing[toldSide], toldSide, prime ? Math.max(1, spread?.ratio ?? 1) : shrink, shrink, {
       threshold: threshold.ratio,
       ...(design.correlation === undefined ? {} : { correlation: design.correlation }),
     }),

@@ -69,13 +69,17 @@ export function explainScene(input: ExplainPictureInput): Scene {
       ...(moved && verdict.since
         ? [
             {
-              words: `tinted: points ${verdict.since.candidates[0]} to ${verdict.since.candidates[1]}, where the move can have begun`,
+              words: `tinted: ${pointRange(verdict.since.candidates)}, where the move can have begun`,
               sign: { area: EMBER_TINT },
             },
           ]
         : []),
     ],
   );
+}
+
+function pointRange([from, to]: readonly [number, number]): string {
+  return from === to ? `point ${from}` : `points ${from} to ${to}`;
 }
 
 function blockNote({ score, threshold, first }: LastBlockReading, moved: boolean): { words: string; color: string } {
@@ -161,12 +165,15 @@ function endsOf(chart: Chart): EndWords[] {
         : String(Math.round(value));
   const limit = (value: number, beside: number): string =>
     (chart.scale ?? 'rate') === 'rate' ? limitPercent(value, beside) : of(value);
-  const center = { y: chart.center, lines: ['usual level', of(chart.center)], color: LEVEL };
+  const lines = chart.scale === 'score' ? ['zero'] : ['usual level', of(chart.center)];
+  const center = { y: chart.center, lines, color: LEVEL };
   if (!last || !(last.upper > last.lower)) return [center];
   return [
     center,
     { y: last.upper, lines: ['limit', limit(last.upper, last.lower)] },
-    ...(last.lower > 0 ? [{ y: last.lower, lines: ['limit', limit(last.lower, last.upper)] }] : []),
+    ...(last.lower > 0 || chart.scale === 'score'
+      ? [{ y: last.lower, lines: ['limit', limit(last.lower, last.upper)] }]
+      : []),
   ];
 }
 

@@ -79,15 +79,14 @@ function sigmaAndLimits(chart: Chart): Step {
   const last = points.at(-1)!;
   const [low, high] = [p - 3 * last.sigma, p + 3 * last.sigma];
   const wide = chart.kind === 'p-prime' ? ` × ${sigmaZ.toFixed(2)}` : '';
-  const cut = low < 0 || high > 1 ? ', cut at what a share can be' : '';
+  const cut =
+    low < 0 || high > 1 ? `, cut at what a share can be: ${percent(last.lower)} to ${percent(last.upper)}` : '';
   const where =
-    subgroupSize === null
-      ? ` at the newest point, of ${counted(last.accounts, 'account')}; other sizes have their own`
-      : '';
+    subgroupSize === null ? ` at the newest point, of n = ${count(last.accounts)}; other sizes have their own` : '';
   return {
     title: 'Sigma and limits',
     sentences: [
-      `Sigma = sqrt(p (1 − p) / n)${wide} = sqrt(${p.toFixed(4)} × ${(1 - p).toFixed(4)} / ${count(last.accounts)})${wide} = ${last.sigma.toFixed(4)}, that is ${percent(last.sigma)}${where}. Limits = ${percent(p)} ± 3 × ${percent(last.sigma)} = ${valueWords(chart, low)} to ${percent(high)}${cut}: ${percent(last.lower)} to ${percent(last.upper)}.`,
+      `Sigma = sqrt(p (1 − p) / n)${wide} = sqrt(${p.toFixed(4)} × ${(1 - p).toFixed(4)} / ${count(last.accounts)})${wide} = ${last.sigma.toFixed(4)}, that is ${percent(last.sigma)}${where}. Limits = ${percent(p)} ± 3 × ${percent(last.sigma)} = ${valueWords(chart, low)} to ${percent(high)}${cut}.`,
     ],
     figures: { sigma: last.sigma, lower: last.lower, upper: last.upper, accounts: last.accounts },
   };
