@@ -5,6 +5,9 @@ const VERDICT = /^Churn has fallen|^Churn is|^Cannot say|^Too early/;
 
 /** Every question around the verdict, as typed, and how its headline must begin. */
 const QUESTIONS: readonly (readonly [string, RegExp])[] = [
+  // The sample names no amounts.
+  ['has revenue churn moved?', /^Cannot say whether revenue churn has moved: no column of the export holds amounts/],
+  ['where does 14.2 % come from?', /^None of \d+ figures gives 14\.2 %; the nearest is |^14\.2 % is what /],
   ['where did churn move?', /^Churn has moved in all three groups of “plan”: /],
 ];
 
