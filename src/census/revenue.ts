@@ -44,10 +44,7 @@ export async function takeRevenue(table: AccountTable, request: CensusRequest): 
   const maturedUntil = lastMaturedStart(request.asOf, request.tenure, request.settleDays);
   const rows = await rowsOf(connection, revenueSql(table.table, request, table.report.firstStart, maturedUntil));
   const currencies = await rowsOf(connection, currenciesSql(table.table, request, maturedUntil));
-  const amounts = await rowsOf(
-    connection,
-    amountGroupsSql(table.table, request, maturedUntil, table.report.accounts),
-  );
+  const amounts = await rowsOf(connection, amountGroupsSql(table.table, request, maturedUntil, table.report.accounts));
   const subgroups = rows.map((row, at): RevenueSubgroup => {
     const number = (name: string): number => Number(row[name] ?? 0);
     const last = number('last_start');
