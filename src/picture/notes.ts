@@ -3,8 +3,9 @@ import type { PictureInput } from '../verdict/types.ts';
 import { viewWords } from '../verdict/words/viewWords.ts';
 import { exactLimitsNote } from './exactLimits.ts';
 import { count, countOf, heldDate, heldPoint, shortPoint } from './figures.ts';
+import { flaggedPoints } from './flaggedPoints.ts';
 import { EMBER, INK, LINE, MARGIN, QUIET, TEXT_SIZE, WIDTH } from './palette.ts';
-import { EXCLUDED_MARK, GHOST_MARK, PASSED_MARK, WATCHING_MARK } from './pointMarks.ts';
+import { EXCLUDED_MARK, GHOST_MARK, OPEN_MARK, PASSED_MARK, WATCHING_MARK } from './pointMarks.ts';
 import type { MarkStyle, PlacedMark, PlacedText, Stroke } from './scene.ts';
 import type { Stretch } from './stretches.ts';
 import { drawable } from './textWidth.ts';
@@ -101,6 +102,13 @@ function planNotes(input: PictureInput, unlabelled: readonly Stretch[], floor: s
     notes.push({
       text: `the scale starts at ${floor}, not at zero`,
       color: QUIET,
+    });
+  const open = input.chart?.points.find((point) => point.open);
+  if (open)
+    notes.push({
+      text: `the last point is unfinished: ${valueScale(input.chart).words(open.value)} so far since the last loss`,
+      color: INK,
+      ...(flaggedPoints(input).has(open.index) ? {} : { mark: OPEN_MARK }),
     });
   if (valueScale(input.chart).of === 'gaps')
     notes.push({

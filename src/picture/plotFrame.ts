@@ -69,24 +69,32 @@ function stretchedDomains(
   return { x: [0.4, slots + 0.6], y: [base, base + (span - base) / (1 - HEADROOM / PLOT_HEIGHT)], ticks };
 }
 
+/** Differences below this are none: ready values are told with four digits. */
+const TINY = 1e-12;
+const TOLD_DIGITS = 1e-6;
+
 /** The ranges of numbers of any size and sign: from zero where that wastes less than half of the height. */
 function numberDomains(
   slots: number,
   values: readonly number[],
 ): { x: [number, number]; y: [number, number]; ticks: number[] } {
-  const highest = values.reduce((a, b) => Math.max(a, b), Number.NEGATIVE_INFINITY);
-  const lowest = values.reduce((a, b) => Math.min(a, b), Number.POSITIVE_INFINITY);
+  const top = values.reduce((a, b) => Math.max(a, b), Number.NEGATIVE_INFINITY);
+  const bottom = values.reduce((a, b) => Math.min(a, b), Number.POSITIVE_INFINITY);
+  // Values that are all equal, as far as can be told, still need a height to be drawn in.
+  const size = Math.max(Math.abs(top), Math.abs(bottom));
+  const widen = top - bottom > Math.max(TINY, size * TOLD_DIGITS) ? 0 : size > TINY ? size / 4 : 1;
+  const highest = top + widen;
+  const lowest = bottom - widen;
   const low = lowest > 0 && lowest < highest / 2 ? 0 : lowest;
-  // Values that are all equal still need a height to be drawn in.
-  const span = highest - low || Math.abs(highest) || 1;
+  const span = highest - low;
   const power = 10 ** Math.floor(Math.log10(span / 4));
   const step = power * ([1, 2, 2.5, 5, 10].find((one) => one * power >= (span / 4) * 0.999) ?? 10);
   const ticks: number[] = [];
   for (let i = Math.ceil(low / step - 1e-9); i * step <= highest + span * 0.05; i++)
     ticks.push(Number((i * step).toPrecision(12)));
   const base = low - span * 0.06;
-  const top = highest + span * 0.05;
-  return { x: [0.4, slots + 0.6], y: [base, base + (top - base) / (1 - HEADROOM / PLOT_HEIGHT)], ticks };
+  const end = highest + span * 0.05;
+  return { x: [0.4, slots + 0.6], y: [base, base + (end - base) / (1 - HEADROOM / PLOT_HEIGHT)], ticks };
 }
 
 /** Words for the ticks, with as many decimals as the step needs. */

@@ -41,6 +41,14 @@ export const GHOST_MARK: MarkStyle = {
   stroke: GHOST,
   strokeWidth: 2.4,
 };
+/** The unfinished gap: it can only grow. */
+export const OPEN_MARK: MarkStyle = {
+  shape: 'triangle-up',
+  area: 150,
+  fill: PAPER,
+  stroke: INK,
+  strokeWidth: 2.4,
+};
 const BASELINE_MARK: MarkStyle = {
   shape: 'circle',
   area: 62,
@@ -75,11 +83,13 @@ export function pointMarks(
     const within = point.index >= baseline.first && point.index <= baseline.last;
     const style = flagged
       ? BY_STATE[flagged]
-      : baseline.excluded.includes(point.index)
-        ? EXCLUDED_MARK
-        : within
-          ? BASELINE_MARK
-          : JUDGED_MARK;
+      : point.open
+        ? OPEN_MARK
+        : baseline.excluded.includes(point.index)
+          ? EXCLUDED_MARK
+          : within
+            ? BASELINE_MARK
+            : JUDGED_MARK;
     const shrink = flagged ? Math.max(crowd, 0.22) : crowd;
     return {
       ...style,
