@@ -10,7 +10,7 @@ import { groupPaces } from '../../verdict/questions/groupPaces.ts';
 import { planFigures, planWords } from '../../verdict/questions/plan.ts';
 import type { PlanFindings } from '../../verdict/questions/planFindings.ts';
 import { sizeOffers } from '../../verdict/questions/sizeOffers.ts';
-import { measuredMonths, tenureMonths } from '../../verdict/questions/tenureMonths.ts';
+import { measuredMonths, medianMonth, tenureMonths } from '../../verdict/questions/tenureMonths.ts';
 import type { AnswerSide } from './types.ts';
 
 /** Sizes are recommended for a halving, unless another move is named. */
@@ -27,7 +27,8 @@ export const answerPlan: AnswerSide<'plan'> = async (context, request) => {
     ...(segment === undefined ? {} : { segment }),
   });
   const { usual, risky } = riskyMonths(counts);
-  const months = tenureMonths(measuredMonths(counts), new Set(risky.map(({ month }) => month)));
+  const measured = measuredMonths(counts);
+  const months = tenureMonths(measured, new Set(risky.map(({ month }) => month)));
   const groups = segment === undefined ? await departuresByGroup(table, asOf, settleDays) : [];
   const rate = assumedRate(plan.rate, census.matured);
   const move = request.move ?? USUAL_MOVE;
@@ -61,7 +62,7 @@ export const answerPlan: AnswerSide<'plan'> = async (context, request) => {
     }),
     months,
     usualHazard: usual,
-    medianMonth: months.find(({ survival }) => survival <= 0.5)?.month ?? null,
+    medianMonth: medianMonth(measured),
     segmentColumn: table.report.columns.segment ?? null,
     ...(groups.length > 1
       ? groupPaces(groups, longestDays(plan.tenure))

@@ -9,22 +9,22 @@ import { commonMonths, eraOf, type MonthlyAmount } from '../../verdict/questions
 import { oneCurrency } from '../../verdict/questions/revenue/currencies.ts';
 import { worthFigures, worthWords } from '../../verdict/questions/worth.ts';
 import type { AmountFindings, WorthFindings } from '../../verdict/questions/worthFindings.ts';
-import type { Verdict } from '../../verdict/types.ts';
+import type { Answer } from '../types.ts';
 import type { AnswerSide, SideContext } from './types.ts';
 
 /** What an account is worth: lifetimes at a constant hazard and from measured ones, now and before a move, with values when amounts are there. */
 export const answerWorth: AnswerSide<'worth'> = async (context, request) => {
   const { table, scope, subject } = context;
   const { asOf, settleDays, segment } = scope;
-  const plan = await context.plan();
-  const census = await context.census();
-  const verdict = await verdictOf(context);
+  const answer = await answerOf(context);
+  const verdict = answer?.verdict ?? null;
   const ofGroup = segment === undefined ? {} : { segment };
   // In another order than that of the starts, the day of a move divides renewals and not accounts.
-  const since =
-    (request.view === undefined || request.view === 'start') && verdict?.before && verdict.after
-      ? (verdict.since?.start ?? null)
-      : null;
+  const byStart = request.view === undefined || request.view === 'start';
+  const since = byStart && verdict?.before && verdict.after ? (verdict.since?.start ?? null) : null;
+  // What the verdict has counted need not be counted again.
+  const plan = (byStart ? answer?.plan : null) ?? (await context.plan());
+  const census = (byStart ? answer?.census : null) ?? (await context.census());
 
   const { amount, monthly } = await amounts(context, ofGroup);
   const tenureMonths = tenureMonthsOf(plan.tenure);
@@ -60,9 +60,9 @@ export const answerWorth: AnswerSide<'worth'> = async (context, request) => {
 };
 
 /** The verdict says where to split; where no chart fits, lifetimes are given all the same, for all accounts together. */
-async function verdictOf({ ask }: SideContext): Promise<Verdict | null> {
+async function answerOf({ ask }: SideContext): Promise<Answer | null> {
   try {
-    return (await ask()).verdict;
+    return await ask();
   } catch (error) {
     if (error instanceof EbbError && error.code === 'OPTION_INVALID') return null;
     throw error;

@@ -1,10 +1,13 @@
 import { wilsonInterval, Z_95 } from '../intervals/wilson.ts';
 import type { Interval, SubgroupCount } from '../types.ts';
 import { compounded } from './compounding.ts';
+import { geometricLifetime } from './geometricLifetime.ts';
 
 export interface ConstantLifetime {
   /** hazard per period that compounds to the share lost */
   readonly hazard: Interval;
+  /** first period by which half would have left; null when nobody was lost */
+  readonly median: number | null;
   /** mean lifetime in periods begun: 1/hazard; null without an upper limit because nobody was lost */
   readonly mean: { readonly estimate: number | null; readonly low: number; readonly high: number | null };
 }
@@ -26,10 +29,11 @@ export function constantLifetime(counts: SubgroupCount, periods: number, z = Z_9
   };
   return {
     hazard,
+    median: hazard.estimate > 0 ? geometricLifetime(hazard.estimate).median : null,
     mean: {
-      estimate: hazard.estimate > 0 ? 1 / hazard.estimate : null,
-      low: 1 / hazard.high,
-      high: hazard.low > 0 ? 1 / hazard.low : null,
+      estimate: hazard.estimate > 0 ? geometricLifetime(hazard.estimate).mean : null,
+      low: geometricLifetime(hazard.high).mean,
+      high: hazard.low > 0 ? geometricLifetime(hazard.low).mean : null,
     },
   };
 }

@@ -1,5 +1,5 @@
 import { type Day, dayInWords } from '../../days.ts';
-import type { PlanFindings, SizeOffer, TenureMonth } from '../../verdict/questions/planFindings.ts';
+import type { PlanFindings, SizeReason, TenureMonth } from '../../verdict/questions/planFindings.ts';
 import { moveNoun, weeksInWords } from '../../verdict/questions/waits.ts';
 import { count, counted, listed, percent } from '../../verdict/words/format.ts';
 import { EMBER, INK, LEVEL, QUIET, SAND, WATER_EDGE } from '../palette.ts';
@@ -21,7 +21,7 @@ export function planScene(findings: PlanFindings, subject: string, asOf: Day): S
   return plate(
     {
       title: `Count at ${tenure}, ${count(chosen?.subgroupSize ?? findings.subgroupSize)} accounts a point`,
-      counted: [subject, `data to ${dayInWords(asOf)}`],
+      counted: ['How to count churn', subject, `data to ${dayInWords(asOf)}`],
     },
     [
       ...(months.length > 0
@@ -181,7 +181,7 @@ function delayPart(findings: PlanFindings): Part {
             .map(({ subgroupSize, delay, offer }) => ({
               x: subgroupSize,
               y: delay,
-              words: `${count(subgroupSize)}: ${SHORT[offer.reason](findings)}`,
+              words: `${count(subgroupSize)}: ${offer.reasons.map((reason) => SHORT[reason](findings)).join('; ')}`,
               color: offer.chosen ? LEVEL : INK,
               bold: offer.chosen,
               most: 240,
@@ -194,7 +194,7 @@ function delayPart(findings: PlanFindings): Part {
   };
 }
 
-const SHORT: Record<SizeOffer['reason'], (findings: PlanFindings) => string> = {
+const SHORT: Record<SizeReason, (findings: PlanFindings) => string> = {
   'five-losses': () => 'five losses each',
   'positive-lower-limit': () => 'one low point can stand out',
   'sees-move': ({ within }) => `flagged within ${within} points, 4 in 5`,

@@ -1,3 +1,4 @@
+import { geometricSurvival } from '../../charts/lifetimes/geometricLifetime.ts';
 import { type Day, dayInWords } from '../../days.ts';
 import { money, monthsFigure, monthsWords } from '../../verdict/questions/worth.ts';
 import type { Era, WorthFindings } from '../../verdict/questions/worthFindings.ts';
@@ -65,7 +66,7 @@ function curvePart(findings: WorthFindings): Part {
       if (hazard === undefined) return {};
       const places = Array.from({ length: 61 }, (_, i) => ({
         x: (last * i) / 60,
-        y: (1 - hazard) ** ((last * i) / 60),
+        y: geometricSurvival(hazard, (last * i) / 60),
       }));
       return line(plot, places, { color, width: 2.4, dash: [8, 6] });
     };

@@ -1,6 +1,7 @@
 import type { GroupDepartures } from '../../census/departures.ts';
 import { kaplanMeier } from '../../charts/survival/kaplanMeier.ts';
 import { type LogRank, logRank } from '../../charts/survival/logRank.ts';
+import { restrictedMean } from '../../charts/survival/restrictedMean.ts';
 import { riskSets } from '../../charts/survival/riskSets.ts';
 import { survivalInterval } from '../../charts/survival/survivalInterval.ts';
 import type { GroupPace } from './planFindings.ts';
@@ -17,9 +18,9 @@ export function groupPaces(
   const test = logRank(lists);
   return {
     groups: groups.map(({ segment, accounts, lost, departures }, i) => {
-      const last = kaplanMeier(riskSets(departures))
-        .filter(({ time }) => time <= days)
-        .at(-1);
+      const steps = kaplanMeier(riskSets(departures));
+      const last = steps.filter(({ time }) => time <= days).at(-1);
+      const stay = restrictedMean(steps, days);
       const limits = last === undefined ? null : survivalInterval(last);
       return {
         segment,
@@ -29,6 +30,8 @@ export function groupPaces(
         survival: last?.survival ?? 1,
         low: limits?.low ?? null,
         high: limits?.high ?? null,
+        meanDays: stay.mean,
+        meanDaysError: stay.standardError,
       };
     }),
     logRank: test,

@@ -1,6 +1,6 @@
 import { LEAST_POINTS } from '../judgement.ts';
 import { capitalised, count, counted, listed, numberWord, percent } from '../words/format.ts';
-import type { GroupPace, PlanFindings, SizeOffer, TenureMonth } from './planFindings.ts';
+import type { GroupPace, PlanFindings, SizeOffer, SizeReason, TenureMonth } from './planFindings.ts';
 import { LEAST_AT_RISK } from './tenureMonths.ts';
 import { chanceWords, moveNoun, weeksInWords } from './waits.ts';
 
@@ -95,9 +95,9 @@ function stillThere({ months, tenureMonths, medianMonth }: PlanFindings): string
       `${percent(survival)} after ${counted(month, 'month')}${low === null || high === null ? '' : ` (95 % interval ${percent(low)} to ${percent(high)})`}`,
   );
   const half =
-    medianMonth === null
+    medianMonth.time === null
       ? `fewer than half have left by month ${last.month}, the last that can be measured`
-      : `half have left by month ${medianMonth}`;
+      : `half have left by month ${medianMonth.time}`;
   return [
     `Still there: ${listed(shares)}; ${half}. Each month counts only accounts observed through it (a Kaplan-Meier estimate).`,
   ];
@@ -105,7 +105,7 @@ function stillThere({ months, tenureMonths, medianMonth }: PlanFindings): string
 
 function offerWords(offer: SizeOffer, findings: PlanFindings): string {
   const { within, move, movedRate } = findings;
-  const reasons: Record<SizeOffer['reason'], string> = {
+  const because: Record<SizeReason, string> = {
     'five-losses': 'about five losses each, the least that can be judged (common practice, no source)',
     'positive-lower-limit': 'the least at which a single very low point can stand out',
     'sees-move': `${moveNoun(move)} would be flagged within ${counted(within, 'point')} in four of five cases`,
@@ -132,7 +132,7 @@ function offerWords(offer: SizeOffer, findings: PlanFindings): string {
     offer.falseAlarmEvery === null
       ? ''
       : `; with nothing changed a flag about once in ${counted(offer.falseAlarmEvery, 'point')}`;
-  return `${counted(offer.subgroupSize, 'account')} a point${offer.chosen ? ' (used)' : ''}, ${reasons[offer.reason]}: ${counted(offer.pointsNow, 'point')} so far, ${verdict}${pace}${delay}${alarms}.`;
+  return `${counted(offer.subgroupSize, 'account')} a point${offer.chosen ? ' (used)' : ''}, ${offer.reasons.map((reason) => because[reason]).join(', and ')}: ${counted(offer.pointsNow, 'point')} so far, ${verdict}${pace}${delay}${alarms}.`;
 }
 
 const oneDigit = (value: number): string => (value >= 99.5 ? count(value) : value.toFixed(1));

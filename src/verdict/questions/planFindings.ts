@@ -1,4 +1,5 @@
 import type { LogRank } from '../../charts/survival/logRank.ts';
+import type { SurvivalQuantile } from '../../charts/survival/survivalQuantile.ts';
 import type { Interval } from '../../charts/types.ts';
 
 /** Hazard of one month of tenure, and the share still there at its end. */
@@ -13,13 +14,18 @@ export interface TenureMonth {
   readonly standardError: number | null;
   readonly low: number | null;
   readonly high: number | null;
+  /** Nelson-Aalen: the hazards up to this month, added up */
+  readonly cumulativeHazard: number;
   /** stands out from the usual month */
   readonly risky: boolean;
 }
 
+export type SizeReason = 'five-losses' | 'positive-lower-limit' | 'sees-move' | 'asked' | 'recommended';
+
 /** One subgroup size and what it costs in waiting. Weeks are null when no accounts come in. */
 export interface SizeOffer {
-  readonly reason: 'five-losses' | 'positive-lower-limit' | 'sees-move' | 'asked' | 'recommended';
+  /** why this size; two reasons may come to the same one */
+  readonly reasons: readonly SizeReason[];
   readonly subgroupSize: number;
   readonly chosen: boolean;
   readonly pointsNow: number;
@@ -45,6 +51,9 @@ export interface GroupPace {
   readonly survival: number;
   readonly low: number | null;
   readonly high: number | null;
+  /** mean days stayed of those up to the tenure point, and its standard error */
+  readonly meanDays: number;
+  readonly meanDaysError: number;
 }
 
 /** All that the plan rests on: finished numbers, no words but those that "has it moved?" uses for its choice. */
@@ -77,8 +86,8 @@ export interface PlanFindings {
   readonly months: readonly TenureMonth[];
   /** hazard of the usual month; null when too few can be looked at */
   readonly usualHazard: number | null;
-  /** month by which half have left; null when they have not */
-  readonly medianMonth: number | null;
+  /** month by which half have left, with its 95 % limits; null where they have not */
+  readonly medianMonth: SurvivalQuantile;
   readonly segmentColumn: string | null;
   readonly groups: readonly GroupPace[];
   readonly logRank: LogRank | null;

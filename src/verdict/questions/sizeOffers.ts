@@ -1,6 +1,6 @@
 import { flagDelay, sizeThatSees } from '../../charts/runLength/flagDelay.ts';
 import { LEAST_POINTS } from '../judgement.ts';
-import type { PlanFindings, SizeOffer } from './planFindings.ts';
+import type { PlanFindings, SizeOffer, SizeReason } from './planFindings.ts';
 
 /** The chance with which a move is wanted to be flagged within the stated points. */
 export const WANTED_CHANCE = 0.8;
@@ -38,11 +38,11 @@ export function sizeOffers(
         ? sizes.seesHalving
         : sizeThatSees(rate, movedRate, within, WANTED_CHANCE, sizes.fiveLosses, question.rounded);
 
-  const offer = (reason: SizeOffer['reason'], size: number): SizeOffer => {
+  const offer = (size: number, reasons: readonly SizeReason[]): SizeOffer => {
     const delay = movedRate === null ? null : flagDelay(size, rate, movedRate);
     const delayPoints = delay?.mean ?? null;
     return {
-      reason,
+      reasons,
       subgroupSize: size,
       chosen: size === subgroupSize,
       pointsNow: Math.floor(matured / size),
@@ -55,12 +55,15 @@ export function sizeOffers(
       chanceWithin: delay?.within(within) ?? 0,
     };
   };
-  const offers = [
-    offer('five-losses', sizes.fiveLosses),
-    offer('positive-lower-limit', sizes.positiveLowerLimit),
-    ...(sizeForMove === null ? [] : [offer('sees-move', sizeForMove)]),
-  ];
-  if (!offers.some(({ chosen }) => chosen)) offers.push(offer(question.asked ? 'asked' : 'recommended', subgroupSize));
+  const reasons = new Map<number, SizeReason[]>();
+  const add = (size: number, reason: SizeReason): void => {
+    reasons.set(size, [...(reasons.get(size) ?? []), reason]);
+  };
+  add(sizes.fiveLosses, 'five-losses');
+  add(sizes.positiveLowerLimit, 'positive-lower-limit');
+  if (sizeForMove !== null) add(sizeForMove, 'sees-move');
+  if (!reasons.has(subgroupSize)) add(subgroupSize, question.asked ? 'asked' : 'recommended');
+  const offers = [...reasons].map(([size, why]) => offer(size, why));
   offers.sort((a, b) => a.subgroupSize - b.subgroupSize);
   return { movedRate, sizeForMove, offers, curve: movedRate === null ? [] : delayCurve(question, movedRate, offers) };
 }

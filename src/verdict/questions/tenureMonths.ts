@@ -1,7 +1,9 @@
 import type { TenureCounts } from '../../census/hazard.ts';
 import { wilsonInterval } from '../../charts/intervals/wilson.ts';
 import { kaplanMeier } from '../../charts/survival/kaplanMeier.ts';
+import { nelsonAalen } from '../../charts/survival/nelsonAalen.ts';
 import { survivalInterval } from '../../charts/survival/survivalInterval.ts';
+import { type SurvivalQuantile, survivalQuantile } from '../../charts/survival/survivalQuantile.ts';
 import type { RiskSet } from '../../charts/survival/types.ts';
 import type { TenureMonth } from './planFindings.ts';
 
@@ -18,7 +20,8 @@ export function measuredMonths(counts: Pick<TenureCounts, 'months'>): RiskSet[] 
 
 /** Hazard and survival by month of tenure, with their limits. */
 export function tenureMonths(sets: readonly RiskSet[], risky: ReadonlySet<number>): TenureMonth[] {
-  return kaplanMeier(sets).map((step) => {
+  const cumulative = nelsonAalen(sets);
+  return kaplanMeier(sets).map((step, i) => {
     const limits = survivalInterval(step);
     return {
       month: step.time,
@@ -29,7 +32,13 @@ export function tenureMonths(sets: readonly RiskSet[], risky: ReadonlySet<number
       standardError: step.standardError,
       low: limits?.low ?? null,
       high: limits?.high ?? null,
+      cumulativeHazard: cumulative[i]?.hazard ?? 0,
       risky: risky.has(step.time),
     };
   });
+}
+
+/** The month by which half have left, with its limits; null where the curve does not come down so far. */
+export function medianMonth(sets: readonly RiskSet[]): SurvivalQuantile {
+  return survivalQuantile(kaplanMeier(sets), 0.5);
 }

@@ -1,3 +1,4 @@
+import { geometricRestrictedMean } from '../../charts/lifetimes/geometricLifetime.ts';
 import type { Interval } from '../../charts/types.ts';
 import { dayInWords, isoDay } from '../../days.ts';
 import { count, counted, listed, percent } from '../words/format.ts';
@@ -297,6 +298,9 @@ function eraFigures(era: Era, { tenure }: WorthFindings): Record<string, unknown
       assumption: `every month loses the share that compounds to the loss within ${tenure}, for ever`,
       monthlyHazard: constant.hazard,
       months: constant.mean,
+      medianMonth: constant.median,
+      // Over the months that were measured, to be held against the restricted mean.
+      restrictedMonths: measured && geometricRestrictedMean(constant.hazard.estimate, measured.horizon),
     },
     restricted: measured && { assumption: null, horizonMonths: measured.horizon, months: measured.restricted },
     measured: measured && {

@@ -4,6 +4,7 @@ import { join } from 'node:path';
 import { afterAll, beforeAll, expect } from 'vitest';
 import { runCli } from '../../../src/cli/runCli.ts';
 import { type Day, isoDay } from '../../../src/days.ts';
+import { warmPicture } from '../../../src/picture/picture.ts';
 
 /** One account of an export made up for a test. */
 export interface Row {
@@ -24,7 +25,9 @@ export interface Told {
 export function asker() {
   let folder: string;
   let files = 0;
-  beforeAll(() => {
+  beforeAll(async () => {
+    // The first picture loads fonts and libraries: that time belongs to no test.
+    await warmPicture();
     folder = mkdtempSync(join(tmpdir(), 'ebbline-asked-'));
   });
   afterAll(() => rmSync(folder, { recursive: true, force: true }));

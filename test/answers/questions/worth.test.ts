@@ -26,7 +26,7 @@ const constantLife =
     return Math.max(1, Math.ceil((Math.log(u) / Math.log1p(-perMonth)) * 30.4375));
   };
 
-describe('worth', () => {
+describe('worth', { timeout: 180_000 }, () => {
   it('a constant hazard: both ways give 1/p', async () => {
     const told = await cli.ask(cli.file(rows(6000, constantLife(0.05), () => '10')), 'worth', '--as-of', '2024-09-27');
     expectSound(told);

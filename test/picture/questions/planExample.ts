@@ -51,7 +51,7 @@ export function planExample(
     }),
     months: tenureMonths(sets, new Set([3, 12])),
     usualHazard: 0.012,
-    medianMonth: null,
+    medianMonth: { time: null, low: null, high: null },
     segmentColumn: 'plan',
     groups: [],
     logRank: null,
