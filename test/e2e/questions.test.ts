@@ -5,6 +5,10 @@ const VERDICT = /^Churn has fallen|^Churn is|^Cannot say|^Too early/;
 
 /** Every question around the verdict, as typed, and how its headline must begin. */
 const QUESTIONS: readonly (readonly [string, RegExp])[] = [
+  ['any early warning?', /^The early watch has raised an alarm: .*This is an early watch, not the verdict\./],
+  ['early for a doubling', /^The early watch has raised an alarm: /],
+  ['has churn moved, account by account?', /^Churn has fallen: about /],
+  ['has churn moved on a smoothed chart?', /^Churn has fallen: about /],
   // The sample names no amounts.
   ['has revenue churn moved?', /^Cannot say whether revenue churn has moved: no column of the export holds amounts/],
   ['where does 14.2 % come from?', /^None of \d+ figures gives 14\.2 %; the nearest is |^14\.2 % is what /],

@@ -2,8 +2,8 @@ import { describe, expect, test } from 'vitest';
 import { cusumLimitFor, cusumRunLength, twoSidedCusumRunLength } from '../../src/charts/runLength/cusumRunLength.ts';
 import { ewmaRunLength } from '../../src/charts/runLength/ewmaRunLength.ts';
 import { likelihoodSteps, movedRateFor, nearFraction } from '../../src/charts/sums/bernoulliSteps.ts';
-import { tabularCusum } from '../../src/charts/sums/tabularCusum.ts';
 import { accountsToAlarm, watchSteps } from '../../src/charts/sums/watchSum.ts';
+import { tabularCusum } from '../support/tabularCusum.ts';
 import { checkValue, checkValues } from './checkValues.ts';
 
 describe('average run length of an EWMA of normal values', () => {

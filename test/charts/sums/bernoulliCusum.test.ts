@@ -1,8 +1,8 @@
 import * as fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { type Alarm, bernoulliCusum } from '../../../src/charts/sums/bernoulliCusum.ts';
-import { tabularCusum } from '../../../src/charts/sums/tabularCusum.ts';
 import { type WatchSum, watchSteps } from '../../../src/charts/sums/watchSum.ts';
+import { tabularCusum } from '../../support/tabularCusum.ts';
 
 /** One account at a time. */
 function plainly(sum: WatchSum, outcomes: readonly boolean[]) {

@@ -21,7 +21,8 @@ export interface TabularCusum {
 }
 
 /**
- * Two-sided tabular CUSUM of measured values.
+ * Two-sided tabular CUSUM of measured values, the plain way: checked on the published series, and what the account-by-account sums are
+ * compared with.
  * @param values     finite values in time order
  * @param center     the level they are judged against, in their unit
  * @param sigma      standard deviation of one value, in their unit, > 0
