@@ -1,4 +1,3 @@
-import { capitalised } from '../figures.ts';
 import { EMBER, INK, LEAD_SIZE, LINE, MARGIN, QUIET, TEXT_SIZE, TITLE_SIZE, WIDTH } from '../palette.ts';
 import { type Box, EMPTY_SCENE, type MarkStyle, type Scene } from '../scene.ts';
 import { drawable, textWidth } from '../textWidth.ts';
@@ -46,7 +45,7 @@ export interface PlateHead {
   readonly moved?: boolean;
   /** the finding in a sentence */
   readonly lead?: string;
-  /** what is counted, of whom, up to when: joined by dots */
+  /** what is counted, with a capital, of whom, up to when: joined by dots; names of files stay as they are */
   readonly counted?: readonly string[];
   /** what is drawn how */
   readonly keys?: readonly { readonly words: string; readonly sign: KeySign }[];
@@ -148,7 +147,7 @@ function headPart(head: PlateHead): Part {
   const parts = [
     words(head.title, { size: TITLE_SIZE, bold: true, color: head.moved ? EMBER : INK, role: 'title' }),
     words(head.lead ?? '', { size: LEAD_SIZE, role: 'headline' }),
-    words(capitalised((head.counted ?? []).filter((part) => part.trim() !== '').join('\u00a0· ')), {
+    words((head.counted ?? []).filter((part) => part.trim() !== '').join('\u00a0· '), {
       color: QUIET,
       role: 'counted',
     }),

@@ -52,7 +52,7 @@ export function earlyScene(drawing: EarlyDrawing): Scene {
       moved: verdict ? verdict.outcome === 'risen' || verdict.outcome === 'fallen' : mood === 'alarm',
       ...(verdict ? { lead: leadOf(verdict.headline) } : {}),
       counted: [
-        `lost within ${found.tenure} of starting, account by account`,
+        `Lost within ${found.tenure} of starting, account by account`,
         subject,
         `usual level ${percent(found.usual.rate)}`,
         `data to ${dayInWords(asOf)}`,

@@ -38,7 +38,7 @@ export function whereScene(readings: readonly GroupReading[], about: WhereAbout)
       title: titleOf(readings),
       moved: moved.length > 0,
       counted: [
-        `lost within ${about.tenure} of starting, by “${about.column}”`,
+        `Lost within ${about.tenure} of starting, by “${about.column}”`,
         about.subject,
         `data through ${dayInWords(about.asOf)}`,
         ...(drawn.length > 0 ? ['a point is placed by the day its accounts started'] : []),
