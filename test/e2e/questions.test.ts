@@ -12,6 +12,13 @@ const QUESTIONS: readonly (readonly [string, RegExp])[] = [
   // The sample names no amounts.
   ['has revenue churn moved?', /^Cannot say whether revenue churn has moved: no column of the export holds amounts/],
   ['where does 14.2 % come from?', /^None of \d+ figures gives 14\.2 %; the nearest is |^14\.2 % is what /],
+  ['plan', /^Count churn at 3 months, in points of 135 accounts/],
+  ['what is an account worth?', /^An account that started since 1 February 2025 stays about 84 months/],
+  ['is the target of 5 % met?', /^The target of 5 % is met, beyond chance: 3\.4 % are lost within 3 months/],
+  ['spread', /^The points vary as much as chance alone would have them/],
+  ['has churn moved by calendar month?', /^Cannot say whether churn has moved/],
+  ['has churn moved by renewal date at 12 months?', /^(Churn|Cannot say|Too early)/],
+  ['has churn moved with a g chart?', /^Churn has fallen: about /],
   ['where did churn move?', /^Churn has moved in all three groups of “plan”: /],
 ];
 
@@ -28,9 +35,28 @@ describe('the questions around the verdict, in the channel', () => {
     const asked = bot.service.as('tamsin').say('#retention', `@ebbline ${text}`);
     const reply = await heard(bot, asked.ts, headline);
     const words = JSON.stringify(reply.blocks);
-    expect(words).toContain('I understood: ');
     expect(words).not.toMatch(/NaN|Infinity|undefined|\[object/);
+    expect(words).toContain('I understood: ');
     const image = imageOf(reply);
     expect(image?.alt_text.length).toBeGreaterThan(60);
+  });
+
+  it('a bare “explain” is about the last verdict of its thread, else of the channel', async () => {
+    const asked = bot.service.as('tamsin').say('#retention', '@ebbline has churn moved for Orchard?');
+    await heard(bot, asked.ts, VERDICT);
+    const plain = bot.service.as('wren').say('#retention', '@ebbline explain');
+    const reply = await heard(bot, plain.ts, /^How this was reached, in \d+ steps/);
+    expect(JSON.stringify(reply.blocks)).toContain('I understood: explain the verdict for “Orchard”');
+    const other = bot.service.as('wren').say('#retention', '@ebbline has churn moved at 6 months?');
+    await heard(bot, other.ts, VERDICT);
+    bot.service.as('tamsin').say('#retention', '@ebbline explain', { threadTs: asked.ts });
+    const inThread = await heard(bot, asked.ts, /^How this was reached, in \d+ steps/);
+    expect(JSON.stringify(inThread.blocks)).toContain('I understood: explain the verdict for “Orchard”');
+  });
+
+  it('a newer export is compared with the one before it', async () => {
+    const post = bot.service.as('wren').drop('#retention', [{ path: SAMPLE }], { text: 'the same again' });
+    const read = await heard(bot, post.ts, 'Read: marrowby-recipe-cards.csv');
+    expect(read.text).toContain('it says the same as marrowby-recipe-cards.csv, about all 8,005 accounts');
   });
 });

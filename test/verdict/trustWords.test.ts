@@ -46,8 +46,13 @@ describe('how soon a flag comes and what the level rests on', () => {
     );
     expect(soon).toContain(`about ${Math.round(rise!.weeks!)} weeks)`);
     const { low, high, falseAlarmEvery } = judgement.trust.estimated!;
-    expect(level).toContain('A usual level from 25 points');
-    expect(level).toContain(`about once in ${Math.round(falseAlarmEvery!)} points`);
+    const main = evidence.find((line) => line.startsWith('With nothing changed'))!;
+    expect(main).toContain(
+      `once in ${Math.round(falseAlarmEvery!)} points, counting that its usual level rests on 25 points only`,
+    );
+    expect(main).toContain(
+      `(about once in ${Math.round(judgement.trust.falseAlarmEvery!)} points if the level were known exactly)`,
+    );
     expect(level).toContain(`${Math.round(low)} to ${Math.round(high!)} points`);
   });
 
@@ -76,14 +81,14 @@ describe('how soon a flag comes and what the level rests on', () => {
     ]);
     const wide = { points: 12, falseAlarmEvery: null, low: 40.2, high: null };
     expect(told({ delay: { rise: null, fall: null }, estimated: wide })).toEqual([
-      'A usual level from 12 points is itself a little off: in 8 of 10 charts like this one a false flag comes once in 40 points or more.',
+      'The usual level is itself a little off: in 8 of 10 charts like this one a false flag comes once in 40 points or more.',
     ]);
   });
 });
 
 test('a false flag rarer than any figure means is told as such', () => {
   const { chart, judgement } = steady();
-  const rare = { ...judgement, trust: { ...judgement.trust, falseAlarmEvery: 3e9 } };
+  const rare = { ...judgement, trust: { ...judgement.trust, falseAlarmEvery: 3e9, estimated: null } };
   expect(writeVerdict(chart, rare, context).evidence.join(' ')).toContain(
     'a false flag less than once in 100,000 points',
   );

@@ -11,7 +11,8 @@ import type { AskContext } from './types.ts';
 export async function rareLosses({ table, question, scope, resolved }: AskContext): Promise<string | null> {
   const { plan } = resolved;
   // Whoever fixes how many accounts make a point wants them counted per point; and where nobody was lost there is no gap either.
-  if (question.subgroupSize !== undefined || plan.rate <= 0) return null;
+  // Where most are lost it is those who stay that are rare, and gaps between losses say nothing.
+  if (question.subgroupSize !== undefined || plan.rate <= 0 || plan.rate > 0.5) return null;
   const wanted = plan.sizes.fiveLosses;
   const until = lastMaturedStart(scope.asOf, plan.tenure, scope.settleDays);
   const year = await yearlyInflow(table, until, scope.segment);

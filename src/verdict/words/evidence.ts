@@ -80,7 +80,14 @@ export function trustSentences(judgement: Judgement, context: VerdictContext, qu
       trust.falseVerdictChance === null
         ? ''
         : `, and a chart of this length reads as moved in about ${Math.max(1, Math.round(trust.falseVerdictChance * 100))} of 100 cases`;
-    sentences.push(`With nothing changed, this chart raises a false flag ${onceIn(trust.falseAlarmEvery)}${chance}.`);
+    const { estimated } = trust;
+    const every = estimated?.falseAlarmEvery ?? null;
+    // The figure that such charts really keep: a level that is itself estimated flags more often than one that is known.
+    sentences.push(
+      estimated && every !== null && every <= RAREST_TOLD
+        ? `With nothing changed, a chart like this raises a false flag ${onceIn(every)}, counting that its usual level rests on ${counted(estimated.points, 'point')} only (${onceIn(trust.falseAlarmEvery)} if the level were known exactly)${chance}.`
+        : `With nothing changed, this chart raises a false flag ${onceIn(trust.falseAlarmEvery)}${chance}.`,
+    );
   }
   return sentences;
 }

@@ -13,15 +13,8 @@ export function furtherTrustSentences(judgement: Judgement, unit: string): strin
   ].filter((move) => move !== null);
   const sentences = moves.length > 0 ? [`How soon a first flag would come, on average: ${moves.join('; ')}.`] : [];
   if (estimated && falseAlarmEvery !== null && falseAlarmEvery <= RAREST_TOLD) {
-    const { points, falseAlarmEvery: every } = estimated;
-    // Averaged over all the levels it might have been: that is how often such charts really flag.
-    const rarely = every === null || every > RAREST_TOLD;
     sentences.push(
-      `A usual level from ${counted(points, 'point')} is itself a little off: ${
-        rarely
-          ? 'in 8 of 10 charts like this one a false flag comes once in'
-          : `counting that, a false flag comes about once in ${count(every)} points, and in 8 of 10 charts like this one once in`
-      } ${range(estimated)}.`,
+      `The usual level is itself a little off: in 8 of 10 charts like this one a false flag comes once in ${range(estimated)}.`,
     );
   }
   return sentences;

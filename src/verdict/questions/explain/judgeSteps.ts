@@ -47,11 +47,15 @@ const STATES = { standing: 'stands', watching: 'new, does not stand yet', passed
 
 function flagSentence(chart: Chart, signal: Signal): string {
   const [from] = signal.members;
-  const z = scores(chart, from, signal.until).filter((one) => one !== null);
-  const values = z.slice(-VALUES_TOLD).map((one) => one.toFixed(1).replace('-', '−'));
+  // Gaps are skewed: how many sigmas one lies from the level says nothing about how unlikely it is.
+  const gaps = chart.scale === 'accounts' || chart.scale === 'days';
+  const z = gaps
+    ? chart.points.slice(from - 1, signal.until).map(({ value }) => value)
+    : scores(chart, from, signal.until).filter((one) => one !== null);
+  const values = z.slice(-VALUES_TOLD).map((one) => (gaps ? count(one) : one.toFixed(1).replace('-', '−')));
+  const unit = gaps ? `gaps in ${chart.scale}` : 'in sigmas from the level';
   const which = from === signal.until ? `point ${from}` : `points ${from} to ${signal.until}`;
-  const sigmas =
-    values.length === 0 ? '' : `, in sigmas from the level: ${z.length > VALUES_TOLD ? '… ' : ''}${values.join(', ')}`;
+  const sigmas = values.length === 0 ? '' : `, ${unit}: ${z.length > VALUES_TOLD ? '… ' : ''}${values.join(', ')}`;
   return `${capitalised(signal.words)} (${which}${sigmas}): ${STATES[signal.state]}.`;
 }
 
