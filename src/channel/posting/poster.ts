@@ -1,3 +1,4 @@
+import { setTimeout as pause } from 'node:timers/promises';
 import type { WebClient } from '@slack/web-api';
 import type { WorkspaceStore } from '../../store/types.ts';
 import type { Message } from '../messages/blocks.ts';
@@ -32,6 +33,8 @@ const NOT_REPLACEABLE = new Set([
 
 /** How far back in a place it is looked for what an attempt that was cut off may have posted. */
 const LOOKED_BACK = 200;
+/** Waits between tries of one post; the queue tries again later. */
+const SEND_WAITS_MS = [250, 1000] as const;
 const EVENT_TYPE = 'ebbline_post';
 
 /**
@@ -81,29 +84,34 @@ export function poster(
       await remember(step, already);
       return already;
     }
-    const ts = await postOnce(step, message);
+    const ts = await send(step, message);
     await remember(step, ts);
     return ts;
   };
 
-  const postOnce = async (step: string, message: Message): Promise<string> => {
-    try {
-      const sent = await posting.chat.postMessage({
-        channel: place.channel,
-        ...(place.threadTs === null ? {} : { thread_ts: place.threadTs }),
-        text: message.text,
-        blocks: message.blocks,
-        metadata: { event_type: EVENT_TYPE, event_payload: { mark: markOf(step) } },
-        unfurl_links: false,
-        unfurl_media: false,
-      });
-      return sent.ts ?? '';
-    } catch (error) {
-      // The service may have taken the message and only its answer was lost.
-      const ts = mayPass(error) ? await found(step) : undefined;
-      if (ts === undefined) throw error;
-      return ts;
+  const send = async (step: string, message: Message): Promise<string> => {
+    for (const wait of [...SEND_WAITS_MS, null]) {
+      try {
+        const sent = await posting.chat.postMessage({
+          channel: place.channel,
+          ...(place.threadTs === null ? {} : { thread_ts: place.threadTs }),
+          text: message.text,
+          blocks: message.blocks,
+          metadata: { event_type: EVENT_TYPE, event_payload: { mark: markOf(step) } },
+          unfurl_links: false,
+          unfurl_media: false,
+        });
+        return sent.ts ?? '';
+      } catch (error) {
+        if (!mayPass(error)) throw error;
+        // The service may have taken the message and only its answer was lost.
+        const ts = await found(step);
+        if (ts !== undefined) return ts;
+        if (wait === null) throw error;
+        await pause(wait);
+      }
     }
+    throw new Error('not reached: the last try returns or throws');
   };
 
   return {
