@@ -5,7 +5,7 @@ import { xoroshiro128plus } from 'pure-rand/generator/xoroshiro128plus';
 const DAY_MS = 86_400_000;
 const iso = (day) => new Date(day * DAY_MS).toISOString().slice(0, 10);
 
-export function writeExportRows(path, rows, seed = 7) {
+export function writeExportRows(path, rows, seed = 7, meanDays = 1400) {
   const generator = xoroshiro128plus(seed);
   const uniform = () => ((generator.next() >>> 0) + 0.5) / 4294967296;
   const file = openSync(path, 'w');
@@ -14,7 +14,7 @@ export function writeExportRows(path, rows, seed = 7) {
   let text = 'account_id,plan,start_date,end_date,monthly_price\n';
   for (let i = 0; i < rows; i++) {
     const start = first + Math.floor((i * days) / rows);
-    const end = start + Math.ceil(-Math.log(uniform()) * 1400);
+    const end = start + Math.ceil(-Math.log(uniform()) * meanDays);
     const plan = ['Windowsill', 'Allotment', 'Orchard'][Math.floor(uniform() * 3)];
     text += `mrb-${(i * 7919) % rows},${plan},${iso(start)},${end < first + days ? iso(end) : ''},${(12 + uniform() * 40).toFixed(2)}\n`;
     if (text.length > 1_000_000) {
