@@ -1,8 +1,8 @@
+import { stat } from 'node:fs/promises';
 import { basename } from 'node:path';
 import { openEngine } from '../accounts/engine.ts';
 import { readExport } from '../accounts/readExport.ts';
 import type { ReadReport } from '../accounts/types.ts';
-import { answerQuestion } from '../answers/answerQuestion.ts';
 import { EbbError } from '../errors.ts';
 import { isAnswerable } from '../requests/answerable.ts';
 import type { Question, Request, SideQuestion, Understanding } from '../requests/types.ts';
@@ -13,7 +13,6 @@ import type { CliOptions, FileCommand } from './arguments.ts';
 import { contractJson, pointsCsv } from './contractJson.ts';
 import { HELP } from './help.ts';
 import { progressBar } from './progressBar.ts';
-import { sideCommand } from './sideCommand.ts';
 import type { CliSurroundings } from './types.ts';
 import { writeOutput } from './writeOutput.ts';
 
@@ -35,12 +34,14 @@ export async function askCommand(command: FileCommand, options: CliOptions, arou
   const engine = await openEngine();
   try {
     const bar = await progressBar(around, file);
-    const table = await readExport(engine, file, {
+    const reading = readExport(engine, file, {
       ...(options.columns ? { columns: options.columns } : {}),
       ...(options.dates ? { dates: options.dates } : {}),
       ...(options.asOf === undefined ? {} : { asOf: options.asOf }),
       ...(bar ? { onProgress: bar.update } : {}),
     }).finally(() => bar?.stop());
+    const answering = loadAnswering(file);
+    const table = await reading;
     const readMs = around.clock() - begun;
     const asked = command === 'ask' ? words : [command, ...words];
     const understanding = asked.length > 0 ? await understandWords(asked.join(' '), table.report) : null;
@@ -62,6 +63,7 @@ export async function askCommand(command: FileCommand, options: CliOptions, arou
       else around.stdout(read ? `${read.join('\n')}\n` : [...notUsedLines(notUnderstood), HELP].join('\n'));
       return;
     }
+    const { answerQuestion, sideCommand } = await answering;
     const how = { subject: name, picture: options.picture !== undefined, clock: around.clock, readMs };
     if (request.kind !== 'ask') {
       await sideCommand(table, withOptions(request, options), understanding!, how, options, around);
@@ -78,6 +80,14 @@ export async function askCommand(command: FileCommand, options: CliOptions, arou
   } finally {
     await engine.close(around.leaving);
   }
+}
+
+/** Loads what answers, beside the reading; for a long read it is also set going. A failure shows when it is used. */
+async function loadAnswering(file: string): Promise<typeof import('./answering.ts')> {
+  const answering = await import('./answering.ts');
+  const { size } = await stat(file).catch(() => ({ size: 0 }));
+  if (size >= answering.LONG_READ_BYTES) answering.warmJudge();
+  return answering;
 }
 
 const EXAMPLE: Partial<Record<FileCommand, string>> = {
