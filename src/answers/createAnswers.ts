@@ -7,7 +7,7 @@ import { EbbError } from '../errors.ts';
 import type { Dataset, WorkspaceStore } from '../store/types.ts';
 import { answerQuestion } from './answerQuestion.ts';
 import { answerSide } from './questions/answerSide.ts';
-import type { Answers, Ingested } from './types.ts';
+import type { Answers, Ingested } from './useCases.ts';
 
 type Engine = Awaited<ReturnType<typeof openEngine>>;
 

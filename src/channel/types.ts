@@ -1,5 +1,5 @@
 import type { Logger } from 'pino';
-import type { Answers } from '../answers/types.ts';
+import type { Answers } from '../answers/useCases.ts';
 import type { Store } from '../store/types.ts';
 
 /*

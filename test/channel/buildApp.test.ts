@@ -1,6 +1,6 @@
 import { pino } from 'pino';
 import { afterAll, beforeAll, expect, it } from 'vitest';
-import type { Answers } from '../../src/answers/types.ts';
+import type { Answers } from '../../src/answers/useCases.ts';
 import { buildApp } from '../../src/channel/buildApp.ts';
 import { type PracticeService, startPracticeService } from '../../src/practice/service.ts';
 import type { Store } from '../../src/store/types.ts';

@@ -7,7 +7,7 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { pino } from 'pino';
 import { createAnswers } from '../../src/answers/createAnswers.ts';
-import type { Answers } from '../../src/answers/types.ts';
+import type { Answers } from '../../src/answers/useCases.ts';
 import { buildApp, type ChannelApp } from '../../src/channel/buildApp.ts';
 import type { SeenMessage } from '../../src/practice/reader.ts';
 import { type PracticeService, startPracticeService } from '../../src/practice/service.ts';

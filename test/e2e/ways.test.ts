@@ -1,6 +1,6 @@
 /** Ways in and out that are less common: fewer rights, slow files, lost sockets, channels without the bot. */
 import { afterEach, describe, expect, it } from 'vitest';
-import type { Answers } from '../../src/answers/types.ts';
+import type { Answers } from '../../src/answers/useCases.ts';
 import { type Bot, heard, SAMPLE, saidIn, startBot } from './support.ts';
 
 const VERDICT = /^Churn has fallen/;

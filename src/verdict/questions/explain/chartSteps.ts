@@ -1,7 +1,7 @@
 import type { Chart } from '../../../charts/types.ts';
 import { count, counted, listed, percent } from '../../words/format.ts';
 import { inCases } from '../chanceWords.ts';
-import type { Explained, Step } from './steps.ts';
+import type { Explained, Step } from './types.ts';
 
 /** A value of the chart in its own unit. */
 export function valueWords(chart: Chart, value: number): string {

@@ -4,7 +4,7 @@ import type { LastBlockReading } from '../../judgement.ts';
 import type { PooledRate, Signal } from '../../types.ts';
 import { capitalised, count, counted, percent, percentagePoints } from '../../words/format.ts';
 import { inCases } from '../chanceWords.ts';
-import type { Explained, Step } from './steps.ts';
+import type { Explained, Step } from './types.ts';
 
 /** From the flags to the verdict and how far to trust it. */
 export function judgeSteps(from: Explained): Step[] {

@@ -1,7 +1,7 @@
 import { dayInWords, isoDay } from '../../../days.ts';
 import { capitalised, count, counted, listed } from '../../words/format.ts';
 import { viewWords } from '../../words/viewWords.ts';
-import type { Explained, Step } from './steps.ts';
+import type { Explained, Step } from './types.ts';
 
 /** From the rows of the file to the points. */
 export function readSteps(from: Explained): Step[] {
