@@ -14,6 +14,11 @@ const MANY_RETURNED = 0.005;
 /** What reading the file leaves the reader of the verdict to know. */
 export function readCautions(report: ReadReport, asOf: Day): string[] {
   const cautions: string[] = [];
+  if (report.firstStart === report.lastStart && report.accounts > 1) {
+    cautions.push(
+      `All accounts started on one day, ${dayInWords(report.firstStart)}: there is no order in which they started, so nothing here can tell a change over time.`,
+    );
+  }
   if (asOf > report.inferredAsOf + SILENT_DAYS) {
     cautions.push(
       `You said that the data is complete through ${dayInWords(asOf)}, but nothing in it happens after ${dayInWords(report.inferredAsOf)}. If that is not so, young accounts look settled and churn seems to fall.`,

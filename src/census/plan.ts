@@ -43,7 +43,9 @@ export async function planCensus(table: AccountTable, partial: PlanRequest): Pro
   const sizes = subgroupSizes(assumedRate(rate, matured));
   const size = partial.subgroupSize
     ? { subgroupSize: partial.subgroupSize, why: `${count(partial.subgroupSize)} accounts a point, as asked` }
-    : recommendSize(matured, sizes);
+    : matured > 0 && (lost === 0 || lost === matured)
+      ? sizeOfOneKind(matured, lost)
+      : recommendSize(matured, sizes);
   const waits =
     perWeek > 0
       ? `; at about ${oneDigit(perWeek)} new accounts a week a point takes ${weeks(size.subgroupSize / perWeek)}`
@@ -55,6 +57,15 @@ export async function planCensus(table: AccountTable, partial: PlanRequest): Pro
     sizeWhy: `${size.why}${waits}`,
     sizes,
     rate,
+  };
+}
+
+/** With nobody or everybody lost there is no rate to size by: points enough to look at, and none of them very small. */
+function sizeOfOneKind(matured: number, lost: number): { subgroupSize: number; why: string } {
+  const size = Math.max(20, rounded(Math.ceil(matured / WANTED_POINTS)));
+  return {
+    subgroupSize: size,
+    why: `${count(size)} accounts a point: ${lost === 0 ? 'nobody' : 'everybody'} was lost so far, so there is no rate to choose a size by`,
   };
 }
 

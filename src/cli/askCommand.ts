@@ -27,10 +27,11 @@ export async function askCommand(command: FileCommand, options: CliOptions, arou
     );
   const begun = around.clock();
   // The drawing parts load while the engine reads: together they take as long as the slower of the two.
-  if (options.picture !== undefined) {
-    // A failure shows when the picture is drawn.
-    import('../picture/picture.ts').then(({ warmPicture }) => warmPicture()).catch(() => undefined);
-  }
+  // A failure shows when the picture is drawn.
+  const warming =
+    options.picture === undefined
+      ? undefined
+      : import('../picture/picture.ts').then(({ warmPicture }) => warmPicture()).catch(() => undefined);
   const engine = await openEngine();
   try {
     const bar = await progressBar(around, file);
@@ -78,6 +79,8 @@ export async function askCommand(command: FileCommand, options: CliOptions, arou
       );
     else around.stdout(answerText(answer, name, understanding ? understoodLines(understanding) : []));
   } finally {
+    // What is still loading would complain that its files are gone.
+    await warming;
     await engine.close(around.leaving);
   }
 }

@@ -26,7 +26,8 @@ export function isValuesKind(kind: ChartKind | 'auto' | undefined): kind is Valu
  * @throws EbbError COUNTS_INVALID naming the entry
  */
 export function readyValues(text: string, kind: ValuesKind, most: number): number[] {
-  const parts = text.split(/[,;\s]+/).filter((part) => part !== '');
+  // A comma or semicolon with nothing before or after it is a value that is missing, not one to pass over.
+  const parts = text.trim() === '' ? [] : text.trim().split(/\s*[,;]\s*|\s+/);
   if (parts.length === 0)
     throw new EbbError('COUNTS_INVALID', '--values is empty', 'For example: ebb chart --chart g --values "4,12,30,7"');
   if (parts.length > most)

@@ -29,9 +29,8 @@ export async function sideCommand(
     );
   const { reply, asOf, timing } = await answerSide(table, request, how);
   if (options.picture !== undefined) {
-    if (!reply.picture)
-      throw new EbbError('PICTURE_UNWRITABLE', 'there is nothing to draw in this answer', 'Leave --picture out.');
-    await writeOutput('--picture', options.picture, reply.picture.png);
+    if (reply.picture) await writeOutput('--picture', options.picture, reply.picture.png);
+    else around.stderr(`There is nothing to draw in this answer, so ${options.picture} was not written.\n`);
   }
   if (options.json) {
     const { kind, headline, evidence, cautions, next, figures } = reply;

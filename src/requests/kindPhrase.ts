@@ -125,6 +125,8 @@ function kindOf(list: readonly Token[], column: string | undefined, sentence: st
   if (reconcile >= 0) return { name: 'reconcile', at: [reconcile] };
   const target = anywhere('target', 'threshold', 'goal');
   if (target >= 0) return { name: 'target', at: [target] };
+  const bound = phrase('below|under|above|over');
+  if (bound >= 0 && percentAt(sentence, list)?.at === bound + 1) return { name: 'target', at: [bound] };
   if (phrase('where|how', 'does|do|did|is') >= 0 && percentAt(sentence, list) && anywhere('come', 'calculated') >= 0)
     return { name: 'reconcile', at: run(phrase('where|how', 'does|do|did|is'), 2) };
 

@@ -124,7 +124,8 @@ describe('planCensus', () => {
       planCensus(table, { settleDays: 0, asOf }),
     );
     expect(plan.rate).toBe(0);
-    expect(plan.subgroupSize).toBeGreaterThan(30);
+    expect(plan.subgroupSize).toBe(20);
+    expect(plan.sizeWhy).toMatch(/nobody was lost so far/);
     expect(Number.isFinite(plan.sizes.positiveLowerLimit)).toBe(true);
   });
 });

@@ -15,7 +15,7 @@ const QUESTIONS: readonly (readonly [string, RegExp])[] = [
   ['plan', /^Count churn at 3 months, in points of 135 accounts/],
   ['what is an account worth?', /^An account that started since 1 February 2025 stays about 84 months/],
   ['is the target of 5 % met?', /^The target of 5 % is met, beyond chance: 3\.4 % are lost within 3 months/],
-  ['spread', /^The points vary as much as chance alone would have them/],
+  ['spread', /^Nothing says that the points vary otherwise than by chance alone/],
   ['has churn moved by calendar month?', /^Cannot say whether churn has moved/],
   ['has churn moved by renewal date at 12 months?', /^(Churn|Cannot say|Too early)/],
   ['has churn moved with a g chart?', /^Churn has fallen: about /],

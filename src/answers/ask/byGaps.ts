@@ -13,6 +13,7 @@ import type { PointDates } from '../../verdict/types.ts';
 import { capitalised, count, counted } from '../../verdict/words/format.ts';
 import { gapsDrawn } from '../gapsDrawn.ts';
 import { readCautions } from '../readCautions.ts';
+import { rareLosses } from './rareLosses.ts';
 import type { AskContext, Reached, Way } from './types.ts';
 
 /** More gaps than this are no rare losses, and cannot be told apart in a picture. Our choice, no source. */
@@ -86,6 +87,12 @@ async function reachedFrom(context: AskContext, kind: 'g' | 't', found: Gaps, wh
   const counts = await takeCensus(table, { tenure, subgroupSize: plan.subgroupSize, view: 'start', ...scope });
   const countedAt = context.clock();
   const { baseline, caution } = chooseBaseline(context, found);
+  const common =
+    why === undefined && question.subgroupSize === undefined && plan.rate > 0 && (await rareLosses(context)) === null
+      ? [
+          'Losses are not rare here. This chart takes its usual level from the first few dozen of them, a short stretch of time, and jumps about; a p chart, which is drawn when no kind is named, rests on far more accounts. Where the two differ, go by that one.',
+        ]
+      : [];
   const judgement = judgeGaps({
     kind,
     gaps: found.gaps,
@@ -115,7 +122,7 @@ async function reachedFrom(context: AskContext, kind: 'g' | 't', found: Gaps, wh
             ? `Read at ${tenureInWords(tenureOfAll)}, the age taken for all accounts.`
             : `${capitalised(plan.tenureWhy)}.`,
         ],
-    readCautions: [...caution, ...readCautions(report, scope.asOf)],
+    readCautions: [...common, ...caution, ...readCautions(report, scope.asOf)],
   };
   const verdict = writeGapVerdict(judgement, gapContext);
   return {

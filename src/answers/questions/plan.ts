@@ -9,7 +9,7 @@ import { putIntoWords } from '../../requests/putIntoWords.ts';
 import { groupPaces } from '../../verdict/questions/groupPaces.ts';
 import { planFigures, planWords } from '../../verdict/questions/plan.ts';
 import type { PlanFindings } from '../../verdict/questions/planFindings.ts';
-import { sizeOffers } from '../../verdict/questions/sizeOffers.ts';
+import { type SizeQuestion, sizeOffers } from '../../verdict/questions/sizeOffers.ts';
 import { measuredMonths, medianMonth, tenureMonths } from '../../verdict/questions/tenureMonths.ts';
 import type { AnswerSide } from './types.ts';
 
@@ -48,7 +48,7 @@ export const answerPlan: AnswerSide<'plan'> = async (context, request) => {
     move,
     moveAsked: request.move !== undefined || request.within !== undefined,
     within,
-    ...sizeOffers({
+    ...offersFor(plan.rate, {
       rate,
       matured: census.matured,
       inflowPerWeek: census.inflowPerWeek,
@@ -81,3 +81,9 @@ export const answerPlan: AnswerSide<'plan'> = async (context, request) => {
     picture: context.picture ? await drawPlate(planScene(findings, subject, asOf), planAltText(findings)) : null,
   };
 };
+
+/** With nobody or everybody lost there is no rate that other sizes could be worked out for: only the one in use is told. */
+function offersFor(rate: number, question: SizeQuestion): ReturnType<typeof sizeOffers> {
+  const found = sizeOffers(question);
+  return rate > 0 && rate < 1 ? found : { ...found, offers: found.offers.filter(({ chosen }) => chosen) };
+}

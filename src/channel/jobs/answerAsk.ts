@@ -37,7 +37,7 @@ export async function answerAsk(job: Job, poster: Poster, text: string, user: st
     case 'weekly-set':
     case 'weekly-show':
     case 'weekly-stop':
-      return workWeeklyRequest(job, poster, words.request, user);
+      return workWeeklyRequest(job, poster, words.request, words.notUnderstood, user);
     default:
       if (!dataset) await poster.post('no-data', noDataMessage(deps.practice));
       else await answerRequest(job, poster, dataset, words.request, words);

@@ -1,6 +1,7 @@
 import { dueAfter, isZone, momentInWords } from '../../answers/weekly/dueTimes.ts';
 import { putIntoWords } from '../../requests/putIntoWords.ts';
-import type { WeeklyRequest, WeeklyTime } from '../../requests/types.ts';
+import type { Understanding, WeeklyRequest, WeeklyTime } from '../../requests/types.ts';
+import { notUsedLines } from '../../requests/understoodLines.ts';
 import { weeklyInWords } from '../../requests/weeklyPhrase.ts';
 import type { Follow } from '../../store/types.ts';
 import { linesMessage } from '../messages/weeklyMessage.ts';
@@ -9,7 +10,13 @@ import { refusal } from '../posting/webClient.ts';
 import type { Job } from './context.ts';
 
 /** Sets, shows and stops the posts a channel gets by itself. */
-export async function workWeeklyRequest(job: Job, poster: Poster, request: WeeklyRequest, user: string): Promise<void> {
+export async function workWeeklyRequest(
+  job: Job,
+  poster: Poster,
+  request: WeeklyRequest,
+  notUnderstood: Understanding['notUnderstood'],
+  user: string,
+): Promise<void> {
   const { deps, workspace } = job;
   const { channel } = poster.place;
   const say = (lines: readonly string[]): Promise<string> => poster.post('weekly', linesMessage(lines));
@@ -52,6 +59,7 @@ export async function workWeeklyRequest(job: Job, poster: Poster, request: Weekl
         `${known ? 'Changed' : 'Set'}: ${weeklyInWords(time)} I answer here by myself: ${question}`,
         `The first time is ${momentInWords(nextDue, zone)}. I say what is new since the post before; without anything new it is one line.`,
         'To end it, say “stop the weekly post”.',
+        ...notUsedLines(notUnderstood),
       ]);
     }
   }

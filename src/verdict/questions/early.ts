@@ -71,7 +71,8 @@ function stateSentence(state: WatchState): string {
   if (state.alarm !== null)
     return `${aim}: in alarm since an account that started on ${dayInWords(state.alarm.start)} and was read on ${dayInWords(state.alarm.readOn)}; ${since}.${passed}`;
   const often =
-    state.likeThisEvery === null
+    // Of a sum near zero the figure means nothing to anybody.
+    state.likeThisEvery === null || state.share < 0.25
       ? ''
       : `; with nothing changed it gets this far about once in ${counted(Math.max(1, state.likeThisEvery), 'account')}`;
   const climb = moodOf(state) === 'climbing' ? ` ${capitalised(since)}.` : '';

@@ -23,6 +23,20 @@ function everybodyLost({ tenure, view }: VerdictContext): string {
   return tenure === null ? 'everybody was lost' : viewWords(view).everybodyLost(tenure);
 }
 
+/** A start that is known no better than to this many days is told as a range. Our choice, no source. */
+const VAGUE_DAYS = 120;
+
+/** From when on: one date where it is known well, else the dates between which it lies. */
+function sinceWords(since: Since | null, context: VerdictContext): string {
+  if (since === null) return '';
+  if (since.start === null) return ` since about point ${since.point}`;
+  const words = viewWords(context.view);
+  const [first, last] = since.candidates.map((point) => context.dates[point - 1]?.firstStart ?? null);
+  return first != null && last != null && last - first > VAGUE_DAYS
+    ? ` ${words.sinceWithin(words.day(first), words.day(last))}`
+    : ` ${words.since(words.day(since.start))}`;
+}
+
 /** The verdict in one sentence, for someone who has never seen a control chart. */
 export function headline(
   judgement: Judgement,
@@ -35,12 +49,7 @@ export function headline(
   },
 ): string {
   const words = viewWords(context.view);
-  const since =
-    facts.since === null
-      ? ''
-      : facts.since.start === null
-        ? ` since about point ${facts.since.point}`
-        : ` ${words.since(words.day(facts.since.start))}`;
+  const since = sinceWords(facts.since, context);
   switch (judgement.finding) {
     case 'risen':
     case 'fallen':

@@ -15,6 +15,8 @@ export interface ViewWords {
   readonly span: (from: string, to: string) => string;
   /** "among accounts that started from about 12 March 2025" */
   readonly since: (day: string) => string;
+  /** the same, where the day is known only to lie within a range */
+  readonly sinceWithin: (first: string, last: string) => string;
   /** "among accounts starting from 12 March 2025 on" */
   readonly from: (day: string) => string;
   /** "for accounts starting around 12 March 2025" */
@@ -36,6 +38,7 @@ const START: ViewWords = {
   day: dayInWords,
   span: (from, to) => `accounts that started ${from} to ${to}`,
   since: (day) => `among accounts that started from about ${day}`,
+  sinceWithin: (first, last) => `among the newest accounts, since some time between ${first} and ${last}`,
   from: (day) => `among accounts starting from ${day} on`,
   around: (day) => `for accounts starting around ${day}`,
   began: 'accounts starting then',
@@ -52,6 +55,7 @@ const RENEWAL: ViewWords = {
   day: dayInWords,
   span: (from, to) => `renewals due ${from} to ${to}`,
   since: (day) => `since about ${day}`,
+  sinceWithin: (first, last) => `since some time between ${first} and ${last}`,
   from: (day) => `at renewals from ${day} on`,
   around: (day) => `for renewals around ${day}`,
   began: 'renewals due then',
@@ -68,6 +72,7 @@ const CALENDAR: ViewWords = {
   day: (day) => dayInWords(day).replace(/^\S+ /, ''),
   span: (from, to) => (from === to ? from : `${from} to ${to}`),
   since: (day) => `since about ${day}`,
+  sinceWithin: (first, last) => `since some time between ${first} and ${last}`,
   from: (day) => `from ${day} on`,
   around: (day) => `around ${day}`,
   began: '',

@@ -59,7 +59,7 @@ function headline(findings: ReconcileFindings, { segment }: ReconcileContext): s
   const giving = mainGiving(findings);
   const [first] = giving;
   if (first && giving.length === 1)
-    return `${figure}${whose} is what one common calculation gives${about}: ${wayWords(first)}${outOf(first)}.`;
+    return `${figure}${whose} is what one of ${counted(candidates.length, 'figure')} that were tried comes to${about}: ${wayWords(first)}${outOf(first)}. A fit is a hint, not a proof.`;
   if (first)
     return `${figure}${whose} is what ${giving.length} of ${candidates.length} figures come to${about}, so it alone does not tell which was meant; one is ${wayWords(first)}${outOf(first)}.`;
   const elsewhere = matched.giving[0];

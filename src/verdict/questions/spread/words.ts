@@ -38,7 +38,7 @@ function headline(
   const times = (dispersion?.ratio ?? 1).toFixed(1);
   switch (outcome) {
     case 'chance':
-      return `The points vary as much as chance alone would have them${whose}: ${times} times as much, and 1.0 is what chance makes.`;
+      return `Nothing says that the points vary otherwise than by chance alone${whose}: ${times} times as much as chance makes on average${dispersion ? `, and chance itself gives ${dispersion.ratio >= 1 ? 'at least' : 'at most'} that ${inCases(dispersion.ratio >= 1 ? dispersion.pValue : 1 - dispersion.pValue)} such charts` : ''}.`;
     case 'maybe':
       return `The points vary a little more than chance alone would have them${whose}, about ${times} times as much; that much happens by chance now and then.`;
     case 'wider':

@@ -56,9 +56,9 @@ function targetHeadline(reading: TargetReading, { tenure, whose, view }: TargetC
   const range = `${fine(interval.low)} to ${fine(interval.high)}`;
   switch (outcome) {
     case 'met':
-      return `The target of ${target} is met${whose}, beyond chance: ${level}, and the true level lies within ${range}.`;
+      return `The target of ${target} is met${whose}, beyond chance: ${level}, and the true level lies, with 95 % confidence, within ${range}.`;
     case 'missed':
-      return `The target of ${target} is missed${whose}, beyond chance: ${level}, and the true level lies within ${range}.`;
+      return `The target of ${target} is missed${whose}, beyond chance: ${level}, and the true level lies, with 95 % confidence, within ${range}.`;
     case 'unclear':
       return `Cannot say whether the target of ${target} is met${whose}: ${level}, but the true level can lie anywhere within ${range}.`;
     case 'nobody':
