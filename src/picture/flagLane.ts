@@ -1,4 +1,5 @@
 import type { PictureInput } from '../verdict/types.ts';
+import { vagueStart } from '../verdict/words/vagueStart.ts';
 import { viewWords } from '../verdict/words/viewWords.ts';
 import { heldPoint } from './figures.ts';
 import { EMBER, INK, MARGIN, QUIET, TEXT_SIZE, WIDTH } from './palette.ts';
@@ -35,7 +36,9 @@ export function beganWords(input: PictureInput): string {
   const began = input.chart?.scale === 'days' ? '' : viewWords(input.view).began;
   return since.start === null
     ? `began about point ${since.point}`
-    : `began about ${heldPoint(input, since.start)}${began === '' ? '' : ` – ${began}`}`;
+    : vagueStart(since, input.dates)
+      ? 'began some time in the tinted stretch'
+      : `began about ${heldPoint(input, since.start)}${began === '' ? '' : ` – ${began}`}`;
 }
 
 /** The words over a marked stretch: the state in bold, then the flag in words. */

@@ -3,6 +3,7 @@ import type { Judgement } from '../judgement.ts';
 import { LEAST_POINTS } from '../judgement.ts';
 import type { PooledRate, Since } from '../types.ts';
 import { count, counted, percent } from './format.ts';
+import { vagueStart } from './vagueStart.ts';
 import { viewWords } from './viewWords.ts';
 
 /** "among Orchard accounts" or nothing. */
@@ -23,17 +24,14 @@ function everybodyLost({ tenure, view }: VerdictContext): string {
   return tenure === null ? 'everybody was lost' : viewWords(view).everybodyLost(tenure);
 }
 
-/** A start that is known no better than to this many days is told as a range. Our choice, no source. */
-const VAGUE_DAYS = 120;
-
 /** From when on: one date where it is known well, else the dates between which it lies. */
 function sinceWords(since: Since | null, context: VerdictContext): string {
   if (since === null) return '';
   if (since.start === null) return ` since about point ${since.point}`;
   const words = viewWords(context.view);
-  const [first, last] = since.candidates.map((point) => context.dates[point - 1]?.firstStart ?? null);
-  return first != null && last != null && last - first > VAGUE_DAYS
-    ? ` ${words.sinceWithin(words.day(first), words.day(last))}`
+  const range = vagueStart(since, context.dates);
+  return range
+    ? ` ${words.sinceWithin(words.day(range[0]), words.day(range[1]))}`
     : ` ${words.since(words.day(since.start))}`;
 }
 
