@@ -41,7 +41,8 @@ export function addMonths(day: Day, months: number): Day {
   return Math.round(first.getTime() / DAY_MS) + Math.min(date.getUTCDate(), last) - 1;
 }
 
-const MONTHS = [
+/** Names of the months, January first. */
+export const MONTHS = [
   'January',
   'February',
   'March',
@@ -54,7 +55,7 @@ const MONTHS = [
   'October',
   'November',
   'December',
-];
+] as const;
 
 /** A day in words: "12 March 2025". The month is spelled out so that no reader takes the day for the month. */
 export function dayInWords(day: Day): string {

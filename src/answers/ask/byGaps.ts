@@ -10,9 +10,10 @@ import { judgeGaps } from '../../verdict/gaps/judgeGaps.ts';
 import type { GapContext } from '../../verdict/gaps/types.ts';
 import { LEAST_POINTS } from '../../verdict/judgement.ts';
 import type { PointDates } from '../../verdict/types.ts';
-import { capitalised, count, counted } from '../../verdict/words/format.ts';
+import { count, counted } from '../../verdict/words/format.ts';
 import { gapsDrawn } from '../gapsDrawn.ts';
 import { readCautions } from '../readCautions.ts';
+import { tenureChosen } from './howChosen.ts';
 import { rareLosses } from './rareLosses.ts';
 import type { AskContext, Reached, Way } from './types.ts';
 
@@ -81,7 +82,7 @@ function notRare(losses: number | null): EbbError {
 
 async function reachedFrom(context: AskContext, kind: 'g' | 't', found: Gaps, why?: string): Promise<Reached> {
   const { table, question, scope, resolved } = context;
-  const { plan, tenureOfAll } = resolved;
+  const { plan } = resolved;
   const { report } = table;
   const { tenure } = plan;
   const counts = await takeCensus(table, { tenure, subgroupSize: plan.subgroupSize, view: 'start', ...scope });
@@ -115,13 +116,7 @@ async function reachedFrom(context: AskContext, kind: 'g' | 't', found: Gaps, wh
     asOfInferred: question.asOf === undefined && report.asOfSource !== 'given',
     segment: scope.segment ?? null,
     whyThisChart: [why === undefined ? `As asked, ${EACH_POINT[kind]}.` : `${why} ${EACH_POINT[kind]}.`],
-    howChosen: question.tenure
-      ? []
-      : [
-          tenureOfAll
-            ? `Read at ${tenureInWords(tenureOfAll)}, the age taken for all accounts.`
-            : `${capitalised(plan.tenureWhy)}.`,
-        ],
+    howChosen: tenureChosen(question, resolved),
     readCautions: [...common, ...caution, ...readCautions(report, scope.asOf)],
   };
   const verdict = writeGapVerdict(judgement, gapContext);

@@ -8,12 +8,13 @@ import type { VerdictContext } from '../../verdict/context.ts';
 import { LEAST_POINTS } from '../../verdict/judgement.ts';
 import type { PictureInput, PointDates, Verdict } from '../../verdict/types.ts';
 import { writeVerdict } from '../../verdict/verdict.ts';
-import { capitalised, counted } from '../../verdict/words/format.ts';
+import { counted } from '../../verdict/words/format.ts';
 import { chosenTests } from '../../verdict/words/testWords.ts';
 import { type ViewWords, viewWords } from '../../verdict/words/viewWords.ts';
 import { drawnFrom } from '../drawnFrom.ts';
 import { emptyJudgement } from '../emptyJudgement.ts';
 import { readCautions } from '../readCautions.ts';
+import { howChosen } from './howChosen.ts';
 import type { AskContext, Reached } from './types.ts';
 
 /** With the usual smoothing, a weight of 0.1. */
@@ -30,22 +31,13 @@ export async function bySubgroups(context: AskContext): Promise<Reached> {
 
 /** The census in order of start, with what must be said about it. */
 export function inOrderOfStart({ question, resolved, clock }: AskContext, census: Census): Counted {
-  const { plan, tenureOfAll } = resolved;
+  const { plan } = resolved;
   return {
     census,
     plan,
     tenure: tenureInWords(plan.tenure),
     countedAt: clock(),
-    howChosen: [
-      ...(question.tenure
-        ? []
-        : [
-            tenureOfAll
-              ? `Read at ${tenureInWords(tenureOfAll)}, the age taken for all accounts.`
-              : `${capitalised(plan.tenureWhy)}.`,
-          ]),
-      ...(question.subgroupSize ? [] : [`${capitalised(plan.sizeWhy)}.`]),
-    ],
+    howChosen: howChosen(question, resolved),
     waiting: { accounts: census.waiting, of: plan.subgroupSize, on: census.nextPointOn },
   };
 }

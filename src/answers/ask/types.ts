@@ -1,10 +1,9 @@
 import type { AccountTable } from '../../accounts/types.ts';
-import type { Census, CensusPlan } from '../../census/types.ts';
-import type { Chart } from '../../charts/types.ts';
+import type { CensusPlan } from '../../census/types.ts';
 import type { Picture } from '../../picture/picture.ts';
 import type { Question } from '../../requests/types.ts';
-import type { Judgement } from '../../verdict/judgement.ts';
-import type { PictureInput, PointDates, Signal, Trust, Verdict } from '../../verdict/types.ts';
+import type { PictureInput } from '../../verdict/types.ts';
+import type { Answer } from '../types.ts';
 import type { ResolvedPlan, ResolvedScope } from './scope.ts';
 
 /** What one way of answering "has it moved?" is given. */
@@ -20,15 +19,8 @@ export interface AskContext {
 }
 
 /** A verdict reached, before its picture is drawn. */
-export interface Reached {
-  readonly verdict: Verdict;
-  readonly chart: Chart | null;
-  readonly dates: readonly PointDates[];
-  readonly signals: readonly Signal[];
-  readonly trust: Trust;
-  /** null for charts that are not judged by the binomial */
-  readonly judgement: Judgement | null;
-  readonly census: Census | null;
+export interface Reached
+  extends Pick<Answer, 'verdict' | 'chart' | 'dates' | 'signals' | 'trust' | 'judgement' | 'census'> {
   readonly plan: CensusPlan;
   /** all the picture needs beside the chart, its dates, its signals and the verdict */
   readonly drawn: Omit<PictureInput, 'chart' | 'dates' | 'signals' | 'verdict'>;

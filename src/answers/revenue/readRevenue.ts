@@ -10,8 +10,8 @@ import { judgeRevenue, type RevenueJudgement } from '../../verdict/questions/rev
 import { type RevenueRefusal, refuseRevenue } from '../../verdict/questions/revenue/refusal.ts';
 import { type RevenueVerdict, writeRevenue } from '../../verdict/questions/revenue/verdict.ts';
 import type { PointDates, Verdict } from '../../verdict/types.ts';
-import { capitalised } from '../../verdict/words/format.ts';
 import { chooseBaseline, maturedOn } from '../ask/bySubgroups.ts';
+import { howChosen } from '../ask/howChosen.ts';
 import type { ResolvedPlan, ResolvedScope } from '../ask/scope.ts';
 import { readCautions } from '../readCautions.ts';
 
@@ -52,7 +52,7 @@ export async function readRevenue(
   known?: Census,
 ): Promise<RevenueReading> {
   const { report } = table;
-  const { plan, tenureOfAll } = resolved;
+  const { plan } = resolved;
   const request = { tenure: plan.tenure, subgroupSize: plan.subgroupSize, view: 'start' as const, ...scope };
   const census = known ?? (await takeCensus(table, request));
   const revenue = await takeRevenue(table, request);
@@ -83,16 +83,7 @@ export async function readRevenue(
     segmentColumn: report.columns.segment ?? null,
     segment: scope.segment ?? null,
     segmentValues: [],
-    howChosen: [
-      ...(asked.tenure
-        ? []
-        : [
-            tenureOfAll
-              ? `Read at ${tenureInWords(tenureOfAll)}, the age taken for all accounts.`
-              : `${capitalised(plan.tenureWhy)}.`,
-          ]),
-      ...(asked.subgroupSize ? [] : [`${capitalised(plan.sizeWhy)}.`]),
-    ],
+    howChosen: howChosen(asked, resolved),
     readCautions: [...caution, ...cautions],
   };
   const total = (of: (subgroup: RevenueSubgroup) => number): number =>

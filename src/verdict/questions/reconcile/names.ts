@@ -1,21 +1,7 @@
 import type { Period } from '../../../charts/reconcile/ways.ts';
+import { MONTHS } from '../../../days.ts';
 import { count } from '../../words/format.ts';
 import type { Candidate } from './findings.ts';
-
-const MONTHS = [
-  'January',
-  'February',
-  'March',
-  'April',
-  'May',
-  'June',
-  'July',
-  'August',
-  'September',
-  'October',
-  'November',
-  'December',
-];
 
 /** "March 2025"; months are numbered from January of year 0. */
 export function monthWords(month: number): string {
